@@ -16,7 +16,7 @@ function naive(input: Float64Array): Float64Array {
 }
 
 describe('transform', () => {
-  for (const size of [2, 12, 64, 100, 192, 384, 625, 1536]) {
+  for (const size of [2, 6, 10, 12, 64, 90, 97, 100, 192, 384, 625, 640, 768, 1536, 3072]) {
     it(`of ${size} equals the definition and inverts`, () => {
       const input = Float64Array.from({ length: 2 * size }, (_, i) => Math.sin(1.7 * i * i + 0.3));
       const spectrum = new Float64Array(2 * size);

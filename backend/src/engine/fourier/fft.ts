@@ -1,4 +1,5 @@
 import FFT from 'fft.js';
+import { oddRadix } from './odd-radix.js';
 
 /**
  * The one place where a transform is computed. Double precision, any length.
@@ -21,9 +22,31 @@ export function transformOf(size: number): Transform {
   const planned = transforms.get(size);
   if (planned) return planned;
   if (!Number.isInteger(size) || size < 2) throw new RangeError(`a transform needs a whole length of at least 2, not ${size}`);
-  const made = isPowerOfTwo(size) ? powerOfTwo(size) : chirp(size);
+  const made = plan(size);
   transforms.set(size, made);
   return made;
+}
+
+function plan(size: number): Transform {
+  if (isPowerOfTwo(size)) return powerOfTwo(size);
+  for (const radix of [3, 5] as const) {
+    if (size % radix === 0 && isSmooth(size / radix)) return oddRadix(radix, transformOf(size / radix));
+  }
+  return chirp(size);
+}
+
+/** Made of 2, 3 and 5 only, and even: what the radix stages reach. */
+function isSmooth(size: number): boolean {
+  let rest = size;
+  for (const p of [3, 5]) while (rest % p === 0) rest /= p;
+  return rest > 1 && isPowerOfTwo(rest);
+}
+
+/** The least even length of at least `n` that has a fast transform (factors 2, 3 and 5). */
+export function nextFast(n: number): number {
+  let size = Math.max(2, Math.ceil(n));
+  while (!isSmooth(size)) size++;
+  return size;
 }
 
 export function isPowerOfTwo(n: number): boolean {
@@ -35,11 +58,11 @@ export function nextPowerOfTwo(n: number): number {
 }
 
 function powerOfTwo(size: number): Transform {
-  const plan = new FFT(size);
+  const fft = new FFT(size);
   return {
     size,
-    forward: (input, output) => plan.transform(output, input),
-    inverse: (input, output) => plan.inverseTransform(output, input),
+    forward: (input, output) => fft.transform(output, input),
+    inverse: (input, output) => fft.inverseTransform(output, input),
   };
 }
 
