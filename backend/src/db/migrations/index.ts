@@ -1,0 +1,18 @@
+import { up as people } from './0001-people.js';
+import { up as signIn } from './0002-sign-in.js';
+import { up as linksIssues } from './0003-links-issues.js';
+import { up as filesDecodes } from './0004-files-decodes.js';
+import { up as threadMoves } from './0005-thread-moves.js';
+import { up as outboxAudit } from './0006-outbox-audit.js';
+import { up as queue } from './0007-queue.js';
+
+/** Numbered and append-only: a migration that has landed is never edited, a later one corrects it. */
+export const MIGRATIONS: readonly { name: string; up: string }[] = [
+  { name: '0001-people', up: people },
+  { name: '0002-sign-in', up: signIn },
+  { name: '0003-links-issues', up: linksIssues },
+  { name: '0004-files-decodes', up: filesDecodes },
+  { name: '0005-thread-moves', up: threadMoves },
+  { name: '0006-outbox-audit', up: outboxAudit },
+  { name: '0007-queue', up: queue },
+];
