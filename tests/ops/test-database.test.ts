@@ -1,11 +1,11 @@
-import pg from 'pg';
+import { Client } from 'pg';
 import { afterAll, describe, expect, it } from 'vitest';
 import { createTestDatabase, type TestDatabase } from '../support/database.js';
 
 const made: TestDatabase[] = [];
 
 async function ask(url: string, sql: string): Promise<unknown> {
-  const client = new pg.Client({ connectionString: url });
+  const client = new Client({ connectionString: url });
   await client.connect();
   try {
     return Object.values((await client.query(sql)).rows[0] ?? {})[0];

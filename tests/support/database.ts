@@ -1,5 +1,5 @@
 import { randomBytes } from 'node:crypto';
-import pg from 'pg';
+import { Client } from 'pg';
 
 /** A database of its own for one test file, cloned from the migrated template. */
 export interface TestDatabase {
@@ -22,7 +22,7 @@ function clusterUrl(role: string): string {
 }
 
 async function asAdmin(sql: string): Promise<void> {
-  const client = new pg.Client({ connectionString: `${clusterUrl('ADMIN')}postgres` });
+  const client = new Client({ connectionString: `${clusterUrl('ADMIN')}postgres` });
   await client.connect();
   try {
     await client.query(sql);

@@ -14,8 +14,8 @@ const roles = {
 export const ROLE_NAMES = Object.keys(roles);
 
 async function withAdmin(url, work) {
-  const { default: pg } = await import('pg');
-  const client = new pg.Client({ connectionString: url });
+  const { Client } = await import('pg');
+  const client = new Client({ connectionString: url });
   await client.connect();
   try {
     return await work(client);
