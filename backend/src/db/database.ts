@@ -1,0 +1,62 @@
+import pg from 'pg';
+import { QueryTypes, Sequelize } from 'sequelize';
+import { carriedTransaction, carryTransactions } from './carried-transaction.js';
+
+carryTransactions();
+// Counts and sizes fit a double; as text they would be compared as text.
+pg.types.setTypeParser(pg.types.builtins.INT8, Number);
+// A calendar day has no zone: a Date would move it.
+pg.types.setTypeParser(pg.types.builtins.DATE, String);
+
+export type Bind = readonly unknown[];
+
+/**
+ * The application's database. Everything done for a person happens inside `asPerson`: one short
+ * transaction that names the person to the policies. A query outside of one sees no tenant row.
+ */
+export class Database {
+  readonly sequelize: Sequelize;
+
+  constructor(url: string, options: { pool?: number } = {}) {
+    this.sequelize = new Sequelize(url, {
+      dialect: 'postgres',
+      logging: false,
+      pool: { max: options.pool ?? 20, min: 0, acquire: 15_000, idle: 10_000 },
+      dialectOptions: { statement_timeout: 30_000, idle_in_transaction_session_timeout: 30_000, keepAlive: true },
+      define: { timestamps: false, underscored: true },
+    });
+  }
+
+  /** One short transaction that acts for a person; never hold it while bytes are received or sent. */
+  asPerson<T>(personId: string, work: () => Promise<T>): Promise<T> {
+    if (carriedTransaction()) throw new Error('a transaction for a person is open already; pass it on instead of opening another');
+    return this.sequelize.transaction(async () => {
+      await this.rows("select set_config('crosstie.person', $1, true)", [personId]);
+      return work();
+    });
+  }
+
+  /** The rows that a query answers, inside the carried transaction if there is one. */
+  async rows<T extends object>(sql: string, bind: Bind = []): Promise<T[]> {
+    return this.sequelize.query<T>(sql, { bind: [...bind], type: QueryTypes.SELECT });
+  }
+
+  async row<T extends object>(sql: string, bind: Bind = []): Promise<T | null> {
+    const rows = await this.rows<T>(sql, bind);
+    return rows[0] ?? null;
+  }
+
+  /** How many rows a change touched. */
+  async change(sql: string, bind: Bind = []): Promise<number> {
+    const [, result] = await this.sequelize.query(sql, { bind: [...bind] });
+    return (result as { rowCount?: number | null }).rowCount ?? 0;
+  }
+
+  /** The plain shape that sign-in needs: no person acts yet. */
+  readonly query = async (sql: string, params: readonly unknown[] = []): Promise<{ rows: Record<string, unknown>[] }> =>
+    ({ rows: await this.rows(sql, params) });
+
+  close(): Promise<void> {
+    return this.sequelize.close();
+  }
+}

@@ -1,0 +1,75 @@
+import type { Request, Response, Router } from 'express';
+import type { z } from 'zod';
+import { ENDPOINTS, type EndpointName } from '#shared/api/endpoints';
+import { writeRefusal } from '../access/audit.js';
+import type { Rule } from '../access/rules.js';
+import { asRefusal, signInFirst } from './problems.js';
+import type { Caller, Services } from './services.js';
+
+type Definition<N extends EndpointName> = (typeof ENDPOINTS)[N];
+type Parsed<N extends EndpointName, K extends 'query' | 'body'> = Definition<N> extends Record<K, infer S> ? (S extends z.ZodType ? z.infer<S> : undefined) : undefined;
+export type ReplyOf<N extends EndpointName> = Definition<N> extends { reply: infer S } ? (S extends z.ZodType ? z.input<S> : never) : never;
+
+/** What a handler gets: who asks, what for, and what the access rule found. */
+export interface Asked<N extends EndpointName, C> {
+  readonly services: Services;
+  readonly caller: Caller;
+  readonly params: Readonly<Record<string, string>>;
+  readonly query: Parsed<N, 'query'>;
+  readonly body: Parsed<N, 'body'>;
+  /** What the rule established: the membership, the issue, the file. */
+  readonly granted: C;
+}
+
+export interface Mounted {
+  readonly name: EndpointName;
+  mount(router: Router, services: Services): void;
+}
+
+/**
+ * An endpoint of the table: parse, authorise, call, reply. The rule is part of the signature, so
+ * an endpoint without one does not compile. Rule and handler run in one short transaction that
+ * acts for the caller.
+ */
+export function endpoint<N extends EndpointName, C>(name: N, rule: Rule<C>, handle: (asked: Asked<N, C>) => Promise<ReplyOf<N>>): Mounted {
+  const definition = ENDPOINTS[name];
+  const schema = <K extends string>(key: K) => (definition as unknown as Record<K, z.ZodType | undefined>)[key];
+
+  const answer = async (services: Services, request: Request, response: Response) => {
+    const caller = callerOf(request);
+    const query = schema('query')?.parse(request.query);
+    const body = schema('body')?.parse(request.body ?? {});
+    const params = request.params as Record<string, string>;
+    try {
+      const reply = await services.database.asPerson(caller.personId, async () => {
+        const granted = await rule({ services, caller, params });
+        return handle({ services, caller, params, granted, query: query as Parsed<N, 'query'>, body: body as Parsed<N, 'body'> });
+      });
+      if (reply === undefined) response.status(204).end();
+      else response.json(definition.reply.parse(reply));
+    } catch (error) {
+      // Written in a transaction of its own: the request's has been rolled back.
+      const refusal = asRefusal(error);
+      if (refusal && (refusal.status === 403 || refusal.status === 404)) await writeRefusal(services, caller, { action: name, path: request.path, status: refusal.status });
+      throw error;
+    }
+  };
+  return {
+    name,
+    mount(router, services) {
+      const method = definition.method.toLowerCase() as 'get' | 'post' | 'patch' | 'put' | 'delete';
+      router[method](definition.path, (request, response) => answer(services, request, response));
+    },
+  };
+}
+
+/** The caller that the session middleware found; without one the answer is 401 whatever the path. */
+export function callerOf(request: Request): Caller {
+  const { caller } = request as Request & { caller?: Caller };
+  if (!caller) throw signInFirst();
+  return caller;
+}
+
+export function setCaller(request: Request, caller: Caller): void {
+  (request as Request & { caller?: Caller }).caller = caller;
+}
