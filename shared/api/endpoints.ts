@@ -54,7 +54,10 @@ export const ENDPOINTS = {
   readDecode: { method: 'GET', path: '/api/decodes/:decodeId', reply: decodes.decode },
   judgeHint: { method: 'POST', path: '/api/hints/:hintId/verdicts', body: decodes.newHintVerdict, reply: nothing },
 
-  /** Multipart: the fields of `uploadFields`, then one part named `file`. */
+  /**
+   * `multipart` is the query string of an upload; the body is multipart with one part named `file`.
+   * What the file is for is in the address, so that it is decided before the first byte is taken.
+   */
   uploadCapture: { method: 'POST', path: '/api/captures', multipart: files.uploadFields, reply: files.storedFile },
   uploadSnapshot: { method: 'POST', path: '/api/snapshots', multipart: files.uploadFields, reply: files.storedFile },
   uploadGlossary: { method: 'POST', path: '/api/glossaries', multipart: files.uploadFields, reply: files.storedFile },

@@ -35,7 +35,7 @@ export type StoredFile = z.infer<typeof storedFile>;
 export const veiledFile = z.object({ kind: z.literal('snapshot'), side, owner: partyRef, reach: z.literal('compare-only'), veiled: z.literal(true) });
 export type VeiledFile = z.infer<typeof veiledFile>;
 
-/** Fields that travel with an upload, before the file part. */
+/** What an upload's address says of the file. */
 export const uploadFields = z.object({
   programme: z.string(), side: side.optional(), reach: z.enum(REACHES).optional(),
   /** The party whose equipment the file describes; the uploader's own where absent. */

@@ -143,9 +143,11 @@ alter table links enable row level security;
 alter table issues enable row level security;
 alter table shares enable row level security;
 
+-- A party that shares an issue sees the link on which it stands.
 create policy links_read on links for select to crosstie_app
   using (party_ids && (select access.my_parties())::uuid[]
-      or programme_id = any((select access.programmes_as('programme-manager'))::uuid[]));
+      or programme_id = any((select access.programmes_as('programme-manager'))::uuid[])
+      or exists (select 1 from issues i where i.link_id = links.id));
 create policy links_add on links for insert to crosstie_app
   with check (programme_id = any((select access.lab_programmes())::uuid[]) and party_ids && (select access.my_parties())::uuid[]
       and exists (select 1 from units u where u.id = links.unit_a_id and u.party_id = links.party_a_id)

@@ -128,6 +128,15 @@ create function access.find_issues(p_text text) returns setof uuid language sql 
     where f.issue_id in (select id from scope) and f.withdrawn_at is null and lower(s.raw) = asked.plain
       and (f.reach = 'everyone' or f.party_id = any(mine.parties) or f.uploader_party_id = any(mine.parties))
 $$;
+-- A free issue number at random: it answers one number and tells nothing of the others.
+create function access.free_number(p_programme uuid) returns text language plpgsql security definer set search_path = public, pg_temp as $$
+begin
+  if not p_programme = any(access.my_programmes()) then return null; end if;
+  perform pg_advisory_xact_lock(hashtext('crosstie.number'), hashtext(p_programme::text));
+  return (select lpad(n::text, 4, '0') from generate_series(0, 9999) n
+    where not exists (select 1 from issues i where i.programme_id = p_programme and i.number = lpad(n::text, 4, '0'))
+    order by random() limit 1);
+end $$;
 revoke execute on all functions in schema access from public;
 grant execute on all functions in schema access to crosstie_app, crosstie_worker;
 revoke execute on function access.meet(uuid[]), access.forget_derived(uuid) from crosstie_app, crosstie_worker;
