@@ -1,8 +1,9 @@
 import { addSymbol, type Canvas } from '../ofdm-symbol.js';
+import { nativeRate } from '../native-rate.js';
 import type { Emission } from '../signal.js';
 import { BlockSender } from './blocks.js';
 import { fillSymbol } from './data.js';
-import { nrNumerology, nativeRate, TC_PER_S, type NrNumerology } from './numerology.js';
+import { nrNumerology, TC_PER_S, type NrNumerology } from './numerology.js';
 import { blockSpacingHz } from './block-pattern.js';
 import type { NrSpec, TddPattern } from './spec.js';
 

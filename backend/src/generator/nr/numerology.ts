@@ -36,14 +36,3 @@ export function nrNumerology(spacingHz: number, prefix: NrPrefix = 'normal'): Nr
   }
   return { mu, spacingHz, symbolsPerSlot, symbolsPerSubframe, usefulTc, startTc, prefixTc };
 }
-
-/** True where useful part and prefixes are whole numbers of samples: the transform is a multiple of 128. */
-export function isNativeRate(rateHz: number, spacingHz: number): boolean {
-  return Number.isInteger(rateHz / spacingHz / 128);
-}
-
-/** The smallest power-of-two multiple of 128·`spacingHz` of at least `minimumHz`, or `minimumHz` itself if native. */
-export function nativeRate(minimumHz: number, spacingHz: number): number {
-  if (isNativeRate(minimumHz, spacingHz)) return minimumHz;
-  return 128 * spacingHz * 2 ** Math.max(0, Math.ceil(Math.log2(minimumHz / (128 * spacingHz))));
-}
