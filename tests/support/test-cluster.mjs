@@ -1,5 +1,5 @@
 /** A throwaway cluster for one test run, and the template database that every test file clones. */
-import { existsSync, mkdirSync, mkdtempSync, readdirSync, rmSync } from 'node:fs';
+import { mkdirSync, mkdtempSync, readdirSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { ADMIN, openCluster, stopLeftover } from '../../backend/bin/launch/cluster.mjs';
@@ -57,7 +57,6 @@ export async function openTestCluster({ guard, track, logFile }) {
 }
 
 async function migrateTemplate(ownerUrl, track) {
-  if (!existsSync(join(CLONE, 'backend/src/db/migrate.ts'))) return;
   const script = "import { migrate } from '#backend/db/migrate'; await migrate(process.env.OWNER_URL);";
   const args = ['--conditions', 'source', '--import', 'tsx', '--input-type=module', '-e', script];
   const env = { ...process.env, OWNER_URL: ownerUrl };
