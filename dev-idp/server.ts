@@ -1,6 +1,5 @@
 import { timingSafeEqual } from 'node:crypto';
-import { existsSync } from 'node:fs';
-import { fileURLToPath } from 'node:url';
+import { resolve } from 'node:path';
 import express, { type Express, type Request, type Response } from 'express';
 import type { Provider } from 'oidc-provider';
 import { plainPageFaces, plainPageStyle } from '#shared/plain-page';
@@ -8,12 +7,6 @@ import { accountByEmail, DEMO_PASSWORD } from './accounts.js';
 import { createProvider, pagePolicy } from './provider.js';
 import type { ProviderSettings } from './settings.js';
 import { errorPage, signInPage, signOutScript } from './views.js';
-
-/** Compiled, this file lies one folder deeper than in the sources. */
-function facesFolder(): string {
-  const places = ['../fonts', '../../fonts'].map((path) => fileURLToPath(new URL(path, import.meta.url)));
-  return places.find((place) => existsSync(place)) ?? places[0];
-}
 
 function isPassword(given: string, wanted: string): boolean {
   const [a, b] = [Buffer.from(given), Buffer.from(wanted)];
@@ -24,10 +17,11 @@ function field(value: unknown): string {
   return typeof value === 'string' ? value : '';
 }
 
-function serveLook(app: Express, facesFolder: string): void {
+function serveLook(app: Express): void {
   app.get('/look/page.css', (_request, response) => { response.type('css').send(plainPageStyle); });
   app.get('/look/sign-out.js', (_request, response) => { response.type('js').send(signOutScript); });
-  for (const face of plainPageFaces) app.get(`/look/${face}`, (_request, response) => response.sendFile(face, { root: facesFolder }));
+  // Every process of the product runs in the project's own folder.
+  for (const face of plainPageFaces) app.get(`/look/${face}`, (_request, response) => response.sendFile(resolve('fonts', face)));
 }
 
 function protect(settings: ProviderSettings) {
@@ -56,12 +50,12 @@ function serveSignIn(app: Express, provider: Provider, settings: ProviderSetting
 }
 
 /** The whole provider: sign-in page, look, and the protocol's own endpoints. */
-export function createProviderApp(settings: ProviderSettings, faces = facesFolder()): Express {
+export function createProviderApp(settings: ProviderSettings): Express {
   const provider = createProvider(settings);
   const app = express().disable('x-powered-by');
   app.get('/health', (_request, response) => { response.json({ status: 'up' }); });
   app.use(['/interaction', '/session', '/look'], protect(settings));
-  serveLook(app, faces);
+  serveLook(app);
   serveSignIn(app, provider, settings);
   app.use('/interaction', (_error: unknown, _request: Request, response: Response, _next: () => void) => {
     response.status(400).send(errorPage('This sign-in has expired or was begun in another browser. Begin again in Crosstie.', settings.publicUrl));
