@@ -31,7 +31,7 @@ export interface Mounted {
  * an endpoint without one does not compile. Rule and handler run in one short transaction that
  * acts for the caller.
  */
-export function endpoint<N extends EndpointName, C>(name: N, rule: Rule<C>, handle: (asked: Asked<N, C>) => Promise<ReplyOf<N>>): Mounted {
+export function endpoint<N extends EndpointName, C>(name: N, rule: Rule<C>, handle: (asked: Asked<N, C>) => Promise<undefined extends ReplyOf<N> ? void : ReplyOf<N>>): Mounted {
   const definition = ENDPOINTS[name];
   const schema = <K extends string>(key: K) => (definition as unknown as Record<K, z.ZodType | undefined>)[key];
 

@@ -84,10 +84,11 @@ create table decodes (
   started_at timestamptz,
   finished_at timestamptz,
   unique (programme_id, id),
-  -- Counted by reach, so that a gap cannot tell of a decode that one may not see.
-  unique (issue_id, reach, party_id, number),
   foreign key (programme_id, issue_id) references issues (programme_id, id)
 );
+-- Counted by reach, so that a gap cannot tell of a decode that one may not see.
+create unique index decodes_numbers on decodes (issue_id, number) where reach = 'everyone';
+create unique index decodes_own_numbers on decodes (issue_id, party_id, number) where reach = 'my-party';
 create index decodes_issue on decodes (issue_id, queued_at);
 create index decodes_open on decodes (state, leased_until) where state in ('queued', 'running');
 
