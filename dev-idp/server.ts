@@ -21,7 +21,7 @@ function serveLook(app: Express): void {
   app.get('/look/page.css', (_request, response) => { response.type('css').send(plainPageStyle); });
   app.get('/look/sign-out.js', (_request, response) => { response.type('js').send(signOutScript); });
   // Every process of the product runs in the project's own folder.
-  for (const face of plainPageFaces) app.get(`/look/${face}`, (_request, response) => response.sendFile(resolve('fonts', face)));
+  for (const face of plainPageFaces) app.get(`/look/${face}`, (_request, response) => response.sendFile(face, { root: resolve('fonts') }));
 }
 
 function protect(settings: ProviderSettings) {

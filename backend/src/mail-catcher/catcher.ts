@@ -31,7 +31,7 @@ export function createMailPage(kept: KeptMail): Express {
   app.get('/health', (_request, response) => { response.json({ status: 'up' }); });
   app.get('/look/page.css', (_request, response) => { response.type('css').send(plainPageStyle); });
   // Every process of the product runs in the project's own folder.
-  for (const face of plainPageFaces) app.get(`/look/${face}`, (_request, response) => response.sendFile(resolve('fonts', face)));
+  for (const face of plainPageFaces) app.get(`/look/${face}`, (_request, response) => response.sendFile(face, { root: resolve('fonts') }));
   app.get('/', async (_request, response) => { response.send(listPage(await kept.all())); });
   app.get('/messages.json', async (_request, response) => { response.json({ items: await kept.all() }); });
   app.get('/messages/:id', async (request, response) => {
