@@ -13,6 +13,8 @@ export interface PlacedSymbol {
   /** First sample of the prefix, in the transmitter's time. */
   readonly start: number;
   readonly prefix: number;
+  /** Samples after the prefix where not one transform long: training fields go on or stop early. */
+  readonly useful?: number;
   /** Common factor e^{jφ}, rad; counts at the first sample of the useful part. */
   readonly phase?: number;
   /** Frequency of the bins' zero, Hz; its phase is zero at the first sample of the useful part. */
@@ -32,7 +34,7 @@ export function addSymbol(canvas: Canvas, symbol: PlacedSymbol): void {
   inverseTransform(size).run(symbol.bins, useful);
   const count = canvas.iq.length / 2;
   const begin = symbol.start - canvas.first;
-  const length = symbol.prefix + size;
+  const length = symbol.prefix + (symbol.useful ?? size);
   const step = (2 * Math.PI * (symbol.offsetHz ?? 0)) / canvas.rateHz;
   const phase = symbol.phase ?? 0;
   const turning = step !== 0;
@@ -44,7 +46,7 @@ export function addSymbol(canvas: Canvas, symbol: PlacedSymbol): void {
       s = Math.sin(phase + step * (n - symbol.prefix));
     }
     const weight = taper === 0 ? 1 : edge(n, length, taper);
-    const from = 2 * ((n - symbol.prefix + 2 * size) % size);
+    const from = 2 * ((n - symbol.prefix + 4 * size) % size);
     const to = 2 * (begin + n);
     canvas.iq[to] += weight * (useful[from] * c - useful[from + 1] * s);
     canvas.iq[to + 1] += weight * (useful[from] * s + useful[from + 1] * c);
