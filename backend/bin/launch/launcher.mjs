@@ -83,6 +83,6 @@ export class Launcher {
   #watchNpm() {
     if (!process.env.npm_lifecycle_event) return;
     const parent = process.ppid;
-    setInterval(() => { if (process.ppid !== parent) this.#onSignal(); }, 1000).unref();
+    setInterval(() => { if (process.ppid !== parent) this.#onSignal(); }, 300).unref();
   }
 }
