@@ -32,7 +32,7 @@ export const DEMO_ACCOUNTS: readonly Account[] = [
 
 /** Known to the provider, in no programme: the second one's e-mail is not verified. */
 export const OUTSIDE_ACCOUNTS: readonly Account[] = [
-  account('sable-orrindale', ['sable.orrindale@outside.example', 'Sable Orrindale', 'nobody\'s', 'in no programme']),
+  account('sable-orrindale', ['sable.orrindale@outside.example', 'Sable Orrindale', 'no party', 'in no programme']),
   account('wen-callowhay', ['wen.callowhay@tarnbeck.example', 'Wen Callowhay', 'Tarnbeck Radio', 'in no programme, e-mail not verified'], false),
 ];
 

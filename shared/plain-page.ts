@@ -37,7 +37,7 @@ main { max-width: 760px; padding: 28px 24px 60px; margin: 0 auto; }
 h1 { font-size: 22px; font-weight: 600; margin: 0 0 6px; } h2 { font-size: 15px; font-weight: 600; margin: 32px 0 4px; }
 p { margin: 0 0 14px; max-width: 62ch; } .soft { color: var(--soft); } .refused { color: var(--broken-ink); font-weight: 600; }
 label { display: block; font-weight: 600; margin: 14px 0 4px; }
-input { width: 100%; max-width: 380px; font: inherit; padding: 8px 10px; color: var(--ink); background: var(--sheet); border: 1px solid var(--edge); border-radius: 0; }
+input { display: block; width: 100%; max-width: 380px; font: inherit; padding: 8px 10px; color: var(--ink); background: var(--sheet); border: 1px solid var(--edge); border-radius: 0; }
 button { font: inherit; font-weight: 600; padding: 8px 18px; margin: 18px 12px 0 0; color: var(--ground); background: var(--ink); border: 1px solid var(--ink); border-radius: 0; cursor: pointer; }
 button.plain { color: var(--ink); background: none; } :focus-visible { outline: 2px solid var(--ink); outline-offset: 2px; }
 table { border-collapse: collapse; width: 100%; background: var(--sheet); border: 1px solid var(--rule); margin-top: 10px; }
