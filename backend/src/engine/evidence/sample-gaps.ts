@@ -1,0 +1,150 @@
+import type { SymbolGrid, Window } from '../types.js';
+
+/** Where symbols lie in one stretch of the capture, against the grid. */
+interface Timing {
+  readonly atSample: number;
+  /** Samples by which symbols come later than the grid says. */
+  readonly shift: number;
+}
+
+export interface Gap {
+  readonly atSample: number;
+  readonly lostSamples: number;
+  readonly count: number;
+  readonly confidence: number;
+  readonly proof: string;
+}
+
+/** Correlation of prefix and symbol's end below which a stretch says nothing of its timing. */
+const LEAST_CORRELATION = 0.25;
+/** Stretches on each side of a jump that have to agree. */
+const WITNESSES = 3;
+
+/**
+ * Samples lost while recording: from one place on all symbols come earlier than the grid says.
+ * Each stretch of about half a millisecond (at least six symbols) is timed by its prefixes. Null
+ * where nothing jumps. A loss of whole symbols is not seen where all symbols are equal.
+ */
+export function findGap(window: Window, grid: SymbolGrid): Gap | null {
+  const timings = timingsOf(window, grid);
+  const symbol = grid.usefulSamples + grid.prefixSamples.at(-1)!;
+  let best: { at: number; step: number; doubt: number } | null = null;
+  for (let i = WITNESSES; i + WITNESSES <= timings.length; i += 1) {
+    const step = stepAt(timings, i, symbol);
+    if (step && (!best || Math.abs(step.step) - 4 * step.doubt > Math.abs(best.step) - 4 * best.doubt)) best = { at: timings[i]!.atSample, ...step };
+  }
+  if (!best) return null;
+  const lost = Math.round(best.step < 0 ? -best.step : symbol - best.step);
+  return {
+    atSample: Math.round(best.at), lostSamples: lost, count: 1,
+    confidence: Math.min(0.97, 0.7 + 0.03 * (Math.abs(best.step) / best.doubt)),
+    proof: `From there on every symbol begins ${Math.abs(best.step).toFixed(1)} samples ${best.step < 0 ? 'earlier' : 'later'} than the grid of the symbols before (scatter ${best.doubt.toFixed(2)} samples)`,
+  };
+}
+
+function stepAt(timings: readonly Timing[], i: number, symbol: number): { step: number; doubt: number } | null {
+  const before = timings.slice(Math.max(0, i - 2 * WITNESSES), i).map((t) => t.shift);
+  const after = timings.slice(i, i + 2 * WITNESSES).map((t) => around(t.shift, before[0]!, symbol));
+  const left = before.map((shift) => around(shift, before[0]!, symbol));
+  const step = around(median(after) - median(left), 0, symbol);
+  const doubt = Math.max(0.5, spread(left), spread(after));
+  return Math.abs(step) > Math.max(3, 6 * doubt) ? { step, doubt } : null;
+}
+
+/** The representative of `value` nearest to `centre`, modulo `period`. */
+function around(value: number, centre: number, period: number): number {
+  return value - period * Math.round((value - centre) / period);
+}
+
+function median(values: readonly number[]): number {
+  const sorted = [...values].sort((a, b) => a - b);
+  const middle = sorted.length >> 1;
+  return sorted.length % 2 === 1 ? sorted[middle]! : (sorted[middle - 1]! + sorted[middle]!) / 2;
+}
+
+/** Median distance from the median, as a standard deviation (1.48 for normal scatter). */
+function spread(values: readonly number[]): number {
+  const centre = median(values);
+  return 1.48 * median(values.map((value) => Math.abs(value - centre)));
+}
+
+function timingsOf(window: Window, grid: SymbolGrid): Timing[] {
+  const products = new PrefixProducts(window.iq, grid.usefulSamples);
+  const starts = symbolStarts(window, grid);
+  const perStretch = Math.max(6, Math.round((0.5e-3 * window.sampleRateHz) / (grid.usefulSamples + grid.prefixSamples.at(-1)!)));
+  const out: Timing[] = [];
+  for (let i = 0; i + perStretch <= starts.length; i += perStretch) {
+    const timing = timeStretch(products, starts.slice(i, i + perStretch), grid);
+    if (timing !== null) out.push({ atSample: window.startSample + starts[i]!.at, shift: timing });
+  }
+  return out;
+}
+
+interface Start { readonly at: number; readonly prefix: number }
+
+/** First samples of the prefixes inside the window, counted from its start. */
+function symbolStarts(window: Window, grid: SymbolGrid): Start[] {
+  const { prefixSamples: prefixes, usefulSamples } = grid;
+  const period = prefixes.reduce((sum, p) => sum + p + usefulSamples, 0);
+  const samples = window.iq.length >> 1;
+  const first = grid.startSample - window.startSample;
+  let at = first - period * Math.floor(first / period);
+  const out: Start[] = [];
+  for (let i = 0; at + usefulSamples + prefixes[i % prefixes.length]! < samples; i += 1) {
+    const prefix = prefixes[i % prefixes.length]!;
+    out.push({ at, prefix });
+    at += prefix + usefulSamples;
+  }
+  return out;
+}
+
+/** Where the prefixes of these symbols fit best, in samples against their stated starts; null where nothing fits. */
+function timeStretch(products: PrefixProducts, starts: readonly Start[], grid: SymbolGrid): number | null {
+  const reach = Math.floor((grid.usefulSamples + grid.prefixSamples.at(-1)!) / 2);
+  const coarse = Math.max(1, Math.floor(grid.prefixSamples.at(-1)! / 8));
+  let best = { shift: 0, fit: -1 };
+  const look = (shift: number): void => {
+    const fit = products.fit(starts, shift);
+    if (fit > best.fit) best = { shift, fit };
+  };
+  for (let shift = -reach; shift <= reach; shift += coarse) look(shift);
+  const centre = best.shift;
+  for (let shift = centre - coarse + 1; shift < centre + coarse; shift += 1) look(shift);
+  return best.fit < LEAST_CORRELATION ? null : best.shift;
+}
+
+/** Running sums of x(n)·x*(n+N) and of the power, so that any prefix is summed in one step. */
+class PrefixProducts {
+  private readonly re: Float64Array;
+  private readonly im: Float64Array;
+  private readonly power: Float64Array;
+
+  constructor(iq: Float32Array, usefulSamples: number) {
+    const lag = Math.round(usefulSamples);
+    const count = Math.max(0, (iq.length >> 1) - lag);
+    this.re = new Float64Array(count + 1);
+    this.im = new Float64Array(count + 1);
+    this.power = new Float64Array(count + 1);
+    for (let n = 0; n < count; n += 1) {
+      const a = iq[2 * n]!, b = iq[2 * n + 1]!, c = iq[2 * (n + lag)]!, d = iq[2 * (n + lag) + 1]!;
+      this.re[n + 1] = this.re[n]! + a * c + b * d;
+      this.im[n + 1] = this.im[n]! + b * c - a * d;
+      this.power[n + 1] = this.power[n]! + 0.5 * (a * a + b * b + c * c + d * d);
+    }
+  }
+
+  /** Correlation coefficient over the prefixes moved by `shift`, 0 to 1. */
+  fit(starts: readonly Start[], shift: number): number {
+    const last = this.re.length - 1;
+    let re = 0, im = 0, power = 0;
+    for (const { at, prefix } of starts) {
+      const from = Math.round(at) + shift;
+      const to = from + Math.floor(prefix);
+      if (from < 0 || to > last) continue;
+      re += this.re[to]! - this.re[from]!;
+      im += this.im[to]! - this.im[from]!;
+      power += this.power[to]! - this.power[from]!;
+    }
+    return power > 0 ? Math.hypot(re, im) / power : 0;
+  }
+}

@@ -1,0 +1,46 @@
+import type { ComparisonRow } from '#shared/decode';
+import { hintCodeFor, type ParameterName } from '#shared/parameters';
+import { impliedSpacing } from '../measurements/impliedSpacing.js';
+import { measure } from '../measurements/measure.js';
+import { judgeContradiction } from '../model.js';
+import type { Evidence, Finding, Rule } from '../types.js';
+import { basisOf, declaredBy } from './basis.js';
+
+/** Parameters with a rule of their own, or that are seen only through others. */
+const ELSEWHERE = new Set(['numerology', 'fftSize', 'sampleRate', 'carrierFrequency']);
+
+/** What agreeing snapshots, or the one that speaks, declare against what the air shows. */
+export const contradictions: Rule = (evidence) => [
+  ...evidence.comparison.rows.flatMap((row) => againstAir(row, evidence) ?? []),
+  ...impliedAgainstAir(evidence),
+];
+
+function againstAir(row: ComparisonRow, evidence: Evidence): Finding | null {
+  if (ELSEWHERE.has(row.parameter) || row.verdict === 'differ') return null;
+  const sides = declaredBy(row);
+  const measurement = measure(row.parameter, evidence);
+  if (!measurement || sides.length === 0) return null;
+  const declared = row[sides[0]!]!.value;
+  const verdict = judgeContradiction(declared, measurement, { sides, transmitter: evidence.transmitter });
+  if (!verdict) return null;
+  return {
+    code: hintCodeFor(row.parameter as ParameterName, 'air'),
+    side: verdict.side,
+    probability: verdict.probability,
+    basis: basisOf(row, evidence, { pattern: verdict.pattern, measurement }),
+    consequences: [],
+  };
+}
+
+/** Rate over transform size gives a spacing that the air does not show, on the sides that declare both. */
+function impliedAgainstAir(evidence: Evidence): Finding[] {
+  const row = evidence.comparison.rows.find((r) => r.parameter === 'fftSize');
+  const measurement = measure('subcarrierSpacing', evidence);
+  if (!row || !measurement || row.verdict === 'differ') return [];
+  const sides = (['a', 'b'] as const).filter((side) => impliedSpacing(evidence, side) !== null);
+  if (sides.length === 0) return [];
+  const verdict = judgeContradiction(impliedSpacing(evidence, sides[0]!), measurement, { sides, transmitter: evidence.transmitter });
+  if (!verdict) return [];
+  const basis = { ...basisOf(row, evidence, { pattern: verdict.pattern, measurement }), airParameter: 'subcarrierSpacing' };
+  return [{ code: 'fft-size', side: verdict.side, probability: verdict.probability, basis, consequences: [] }];
+}
