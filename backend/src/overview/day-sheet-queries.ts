@@ -1,0 +1,41 @@
+import type { DaySheet } from '#shared/api/overview';
+import type { Stage } from '#shared/vocabulary';
+import type { Services } from '../http/services.js';
+
+export async function lookedAt(services: Services): Promise<Date | null> {
+  const row = await services.database.row<{ at: Date | null }>('select day_sheet_looked_at as at from people where id = access.person()');
+  return row?.at ?? null;
+}
+
+/** What others did since I looked, newest first; without a look, the last week. */
+export async function changedSince(services: Services, since: Date | null): Promise<DaySheet['changed']> {
+  const rows = await services.database.rows<Omit<DaySheet['changed'][number], 'at'> & { at: Date }>(`
+    select e.at, g.code as programme, i.number, i.title, e.text, e.person_name as person
+    from events e join issues i on i.id = e.issue_id join programmes g on g.id = i.programme_id
+    where e.at > coalesce($1::timestamptz, now() - interval '7 days') and e.person_id is distinct from access.person()
+    order by e.at desc, e.id limit 50`, [since]);
+  return rows.map(({ at, ...row }) => ({ ...row, at: at.toISOString() }));
+}
+
+export function runningDecodes(services: Services): Promise<DaySheet['running']> {
+  return services.database.rows<DaySheet['running'][number]>(`
+    select g.code as programme, i.number, i.title, d.id as "decodeId", d.number as "decodeNumber", d.step, d.progress
+    from decodes d join issues i on i.id = d.issue_id join programmes g on g.id = i.programme_id
+    where d.state in ('queued', 'running') order by d.queued_at limit 50`);
+}
+
+export async function countsFor(services: Services): Promise<DaySheet['counts']> {
+  const row = await services.database.row<DaySheet['counts']>(`
+    select count(*)::integer as open, count(*) filter (where severity = 'critical')::integer as critical,
+      count(*) filter (where move_due < current_date)::integer as late, count(*) filter (where move_party_id = any(access.my_parties()))::integer as mine
+    from issues where open`);
+  return row ?? { open: 0, critical: 0, late: 0, mine: 0 };
+}
+
+/** Search answers identifiers inside the scope; the rows are read again under the policies. */
+export async function foundIssues(services: Services, text: string): Promise<{ programme: string; number: string; title: string; where: string; stage: Stage }[]> {
+  return services.database.rows(`
+    select g.code as programme, i.number, i.title, i.stage, l.name as where
+    from issues i join programmes g on g.id = i.programme_id join links l on l.id = i.link_id
+    where i.id in (select access.find_issues($1)) order by i.open desc, i.updated_at desc limit 20`, [text]);
+}

@@ -1,0 +1,32 @@
+import { registerQuery } from '#shared/api/issues';
+import { inProgramme, signedIn } from '../access/rules.js';
+import { endpoint, type Mounted } from '../http/endpoint.js';
+import { registerRows } from '../issues/register-repository.js';
+import { changedSince, countsFor, foundIssues, lookedAt, runningDecodes } from './day-sheet-queries.js';
+import { ages, byPair, bySeverityAndStage, flowByWeek, waitingByCause, waitingByParty } from './overview-queries.js';
+
+export const overviewEndpoints: Mounted[] = [
+  endpoint('readDaySheet', signedIn, async ({ services }) => {
+    const since = await lookedAt(services);
+    return {
+      waitingForParty: await registerRows(services, registerQuery.parse({ move: 'mine', sort: 'due', size: 100 })),
+      changed: await changedSince(services, since),
+      running: await runningDecodes(services),
+      lastLookedAt: since?.toISOString() ?? null,
+      counts: await countsFor(services),
+    };
+  }),
+  endpoint('markDaySheetRead', signedIn, async ({ services }) => {
+    await services.database.change('update people set day_sheet_looked_at = now() where id = access.person()');
+  }),
+  endpoint('readOverview', inProgramme('read-overview'), async ({ services, granted }) => ({
+    programme: granted.programmeCode,
+    bySeverityAndStage: await bySeverityAndStage(services, granted.programmeId),
+    byAge: await ages(services, granted.programmeId),
+    byPair: await byPair(services, granted.programmeId),
+    waitingByParty: await waitingByParty(services, granted.programmeId),
+    waitingByCause: await waitingByCause(services, granted.programmeId),
+    flow: await flowByWeek(services, granted.programmeId),
+  })),
+  endpoint('find', signedIn, async ({ services, query }) => ({ items: await foundIssues(services, query.q) })),
+];
