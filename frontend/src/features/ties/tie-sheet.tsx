@@ -1,0 +1,61 @@
+import { useState, type ReactNode } from 'react';
+import type { AirValue, ComparisonRow, Hint } from '#shared/decode';
+import { Section } from '../../components/ui/section.js';
+import { counted } from '../../lib/units.js';
+import { countOf, inOrder, type Tied } from './standing.js';
+import { TieRow } from './tie-row.js';
+
+/** Shown beside a value: the display name of the file that it stands in, where the reader may see it. */
+export interface SnapshotNames { a: string | null; b: string | null }
+const SHORT_ENOUGH = 4;
+
+function tally(ties: readonly Tied[]): string {
+  const off = countOf(ties, 'off-standard');
+  return [`${countOf(ties, 'broken')} broken`, off ? `${off} off standard` : '', counted(countOf(ties, 'hangs'), 'hangs', 'hang'), counted(countOf(ties, 'holds'), 'holds', 'hold')]
+    .filter(Boolean).join(' · ');
+}
+
+function Head() {
+  return (
+    <thead role="rowgroup">
+      <tr role="row">
+        <th role="columnheader" scope="col" className="tie-name">Parameter</th>
+        <th role="columnheader" scope="col" className="tie-a">A declares</th>
+        <th role="columnheader" scope="col" className="tie-air">On the air</th>
+        <th role="columnheader" scope="col" className="tie-b">B declares</th>
+        <th role="columnheader" scope="col" className="tie-clause">Clause</th>
+      </tr>
+    </thead>
+  );
+}
+
+/** Rail A, the air, rail B: one tie for each setting. What holds folds away once it would fill the sheet. */
+export function TieSheet({ rows, hints, air, files, note }: {
+  rows: readonly ComparisonRow[]; hints: readonly Hint[]; air: Record<string, AirValue>; files: SnapshotNames; note: ReactNode;
+}) {
+  const [unfolded, unfold] = useState(false);
+  const [places, showPlaces] = useState(false);
+  const ties = inOrder(rows, hints);
+  const holding = ties.filter((t) => t.standing.kind === 'holds');
+  const odd = ties.filter((t) => t.standing.kind !== 'holds');
+  const folds = holding.length > SHORT_ENOUGH;
+  const shown = unfolded || !folds ? ties : [...odd, ...holding.slice(0, odd.length ? 2 : SHORT_ENOUGH)];
+  const folded = ties.length - shown.length;
+  return (
+    <Section title="Tie sheet" aside={tally(ties)}
+      end={<button type="button" className="text-button" aria-pressed={places} onClick={() => showPlaces(!places)}>{places ? 'Hide where each value stood' : 'Show where each value stood'}</button>}>
+      <div className="sheet">
+        <table className="ties" role="table" aria-label="Tie sheet: what each side declares and what the air shows">
+          <Head />
+          <tbody role="rowgroup">
+            {shown.map(({ row, standing }) => <TieRow key={row.parameter} row={row} standing={standing} air={air} files={files} places={places} />)}
+          </tbody>
+        </table>
+        <div className="ties-foot">
+          {folds ? <button type="button" className="text-button no-print" aria-expanded={unfolded} onClick={() => unfold(!unfolded)}>{unfolded ? 'Fold what holds' : `${folded} more that hold`}</button> : <span />}
+          <span>{note}</span>
+        </div>
+      </div>
+    </Section>
+  );
+}
