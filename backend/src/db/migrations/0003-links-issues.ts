@@ -169,18 +169,25 @@ create policy builds_add on builds for insert to crosstie_app
 create policy issues_read on issues for select to crosstie_app
   using (party_ids && (select access.my_parties())::uuid[]
       or programme_id = any((select access.programmes_as('programme-manager'))::uuid[]));
+-- The link exists for the acting person and each build is one of the unit on its side. A function, because
+-- the links' own policy asks for issues and the two would call each other without end.
+create function access.fits_link(p_programme uuid, p_link uuid, p_build_a uuid, p_build_b uuid) returns boolean
+language sql stable security definer set search_path = public, pg_temp as $$
+  select exists (select 1 from links l where l.id = p_link and l.programme_id = p_programme
+    and (l.party_ids && access.my_parties() or l.programme_id = any(access.programmes_as('programme-manager'))
+      or exists (select 1 from issues i where i.link_id = l.id and i.party_ids && access.my_parties()))
+    and (p_build_a is null or exists (select 1 from builds b where b.id = p_build_a and b.unit_id = l.unit_a_id))
+    and (p_build_b is null or exists (select 1 from builds b where b.id = p_build_b and b.unit_id = l.unit_b_id)))
+$$;
 create policy issues_file on issues for insert to crosstie_app
   with check (raised_by = (select access.person())
       and raised_by_party_id = any((select access.my_parties())::uuid[])
       and party_ids && (select access.my_parties())::uuid[]
       and programme_id = any((select access.programmes_as('integration-engineer', 'vendor-engineer'))::uuid[])
-      and exists (select 1 from links l where l.id = issues.link_id and l.programme_id = issues.programme_id)
-      and (build_a_id is null or exists (select 1 from builds b where b.id = issues.build_a_id))
-      and (build_b_id is null or exists (select 1 from builds b where b.id = issues.build_b_id)));
+      and access.fits_link(programme_id, link_id, build_a_id, build_b_id));
 create policy issues_change on issues for update to crosstie_app
   using (programme_id = any((select access.programmes_as('integration-engineer', 'vendor-engineer', 'programme-manager'))::uuid[]))
-  with check ((build_a_id is null or exists (select 1 from builds b where b.id = issues.build_a_id))
-      and (build_b_id is null or exists (select 1 from builds b where b.id = issues.build_b_id)));
+  with check (access.fits_link(programme_id, link_id, build_a_id, build_b_id));
 create policy shares_read on shares for select to crosstie_app
   using (exists (select 1 from issues i where i.id = shares.issue_id));
 create policy shares_add on shares for insert to crosstie_app
