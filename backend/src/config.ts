@@ -19,7 +19,7 @@ const environment = z.object({
   PORT: port.default(4180),
   HOST: z.string().min(1).default('127.0.0.1'),
   PUBLIC_URL: siteUrl.optional(),
-  TRUST_PROXY: z.string().min(1).optional(),
+  TRUST_PROXY: z.string().transform((text) => (/^\d+$/.test(text) ? Number(text) : text)).optional(),
   DATABASE_URL: databaseUrl.optional(),
   DATABASE_WORKER_URL: databaseUrl.optional(),
   DATABASE_OWNER_URL: databaseUrl.optional(),
@@ -68,7 +68,8 @@ export interface Config {
   host: string;
   /** Where people reach Crosstie: no trailing slash. */
   publicUrl: string;
-  trustProxy: string | undefined;
+  /** Express's setting: how many proxies, or whose addresses. */
+  trustProxy: string | number | undefined;
   database: { app: string; worker: string; backup: string; owner: string };
   oidc: { issuer: string; clientId: string; clientSecret: string | undefined };
   session: { secret: string; idleHours: number; maxDays: number };

@@ -1,6 +1,6 @@
 /** Decides, from the environment, what this start runs itself and what stands elsewhere. */
-import { join } from 'node:path';
-import { LOCAL, localSecrets } from './paths.mjs';
+import { join, resolve } from 'node:path';
+import { CLONE, LOCAL, localSecrets } from './paths.mjs';
 import { PlainError } from './say.mjs';
 
 const DEFAULT_PORT = 4180;
@@ -66,7 +66,7 @@ function environment(env, { ports, local, publicUrl, secrets }) {
     PORT: String(ports.web),
     PUBLIC_URL: publicUrl,
     SESSION_SECRET: env.SESSION_SECRET?.trim() || secrets.session,
-    STORAGE_DIR: env.STORAGE_DIR?.trim() || join(LOCAL, 'storage'),
+    STORAGE_DIR: resolve(CLONE, env.STORAGE_DIR?.trim() || join(LOCAL, 'storage')),
     ...provider,
     ...mail,
   };

@@ -1,0 +1,3 @@
+import { maintain } from './launch/maintenance.mjs';
+
+await maintain('backup', { needs: 'DATABASE_BACKUP_URL' });
