@@ -63,6 +63,8 @@ export interface CompareOptions {
   readonly air?: Readonly<Record<string, AirValue>>;
   /** Settings that a unit broadcasts, by common parameter name. */
   readonly announced?: Readonly<Record<string, SettingValue>>;
+  /** Whose transmission the capture holds; the downlink unless stated. */
+  readonly direction?: 'downlink' | 'uplink';
   /** The capture's stated centre, Hz: with it the measured offset becomes a carrier frequency. */
   readonly centreFrequencyHz?: number | null;
 }
