@@ -8,17 +8,9 @@ import { claimClone } from './launch/only-one.mjs';
 import { ensurePackages } from './launch/packages.mjs';
 import { startLocalServices, startProduct } from './launch/parts.mjs';
 import { makeLocalFolders } from './launch/paths.mjs';
-import { refuseTakenPorts } from './launch/ports.mjs';
+import { portsToListen, refuseTakenPorts } from './launch/ports.mjs';
 import { prepareDatabase } from './launch/prepare.mjs';
 import { settle } from './launch/settle.mjs';
-
-function portsToListen({ ports, local }) {
-  return {
-    'Crosstie itself': [ports.web, 'PORT'],
-    ...(local.provider && { 'the demo\'s identity provider': [ports.provider, 'IDP_PORT'] }),
-    ...(local.mail && { 'the page of caught mail': [ports.mailPage, 'MAIL_PAGE_PORT'], 'caught mail': [ports.mailSmtp, 'MAIL_SMTP_PORT'] }),
-  };
-}
 
 async function begin(launcher) {
   const { track, guard } = launcher;

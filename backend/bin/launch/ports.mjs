@@ -23,3 +23,13 @@ export async function refuseTakenPorts(wanted) {
     throw new PlainError(`Port ${port} (${what}) is taken by another program. Stop that program, or choose another port: ${variable}=${port + 100} npm start`);
   }
 }
+
+/** What this start will listen on, with the variable that moves each port. */
+export function portsToListen({ ports, local }) {
+  return {
+    ...(ports.pages && { 'the pages': [ports.pages, 'PORT'] }),
+    'Crosstie itself': [ports.web, 'PORT'],
+    ...(local.provider && { 'the demo\'s identity provider': [ports.provider, 'IDP_PORT'] }),
+    ...(local.mail && { 'the page of caught mail': [ports.mailPage, 'MAIL_PAGE_PORT'], 'caught mail': [ports.mailSmtp, 'MAIL_SMTP_PORT'] }),
+  };
+}

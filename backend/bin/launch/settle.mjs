@@ -43,7 +43,8 @@ function refuseHalfAnInstallation(env, local, publicUrl) {
 
 /**
  * `local` says which of database, provider and mail this start runs; `ports`, `publicUrl` and `env`
- * (what the processes get, save the addresses of a local database) follow from it.
+ * (what the processes get, save the addresses of a local database) follow from it; `folder` takes logs and
+ * what the local services keep.
  */
 export function settle(env = process.env) {
   const ports = portsOf(env);
@@ -52,7 +53,7 @@ export function settle(env = process.env) {
   const publicUrl = (env.PUBLIC_URL?.trim() || `http://127.0.0.1:${ports.web}`).replace(/\/+$/, '');
   refuseHalfAnInstallation(env, local, publicUrl);
   const secrets = localSecrets();
-  return { ports, local, publicUrl, secrets, env: environment(env, { ports, local, publicUrl, secrets }) };
+  return { ports, local, publicUrl, secrets, folder: LOCAL, env: environment(env, { ports, local, publicUrl, secrets }) };
 }
 
 function environment(env, { ports, local, publicUrl, secrets }) {
