@@ -50,7 +50,7 @@ type Environment = z.infer<typeof environment>;
 /** What each process cannot do without; npm start sets all of it for a local instance. */
 const needs = {
   server: ['DATABASE_URL', 'OIDC_ISSUER', 'SESSION_SECRET', 'STORAGE_DIR'],
-  worker: ['DATABASE_WORKER_URL', 'STORAGE_DIR', 'SMTP_URL'],
+  worker: ['DATABASE_URL', 'DATABASE_WORKER_URL', 'STORAGE_DIR', 'SMTP_URL'],
 } as const satisfies Record<string, readonly (keyof Environment)[]>;
 export type Process = keyof typeof needs;
 

@@ -45,6 +45,8 @@ export const uploadFields = z.object({
   centreFrequencyHz: z.coerce.number().positive().optional(),
   /** A SigMF pair is sent as two files: the data first, then the metadata naming it. */
   dataFileId: id.optional(),
+  /** For a snapshot in a party's own words: its glossary, sent before it. */
+  glossaryFileId: id.optional(),
 });
 export type UploadFields = z.infer<typeof uploadFields>;
 export const changeFile = z.object({ reach: z.enum(REACHES) });

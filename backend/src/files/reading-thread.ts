@@ -11,7 +11,7 @@ import { snapshotReading } from './snapshot-reading.js';
 const NOTHING: Reading = { capture: null, snapshot: null, unreadable: null };
 
 function read(request: ReadingRequest): Reading {
-  if (request.kind === 'snapshot') return { ...NOTHING, snapshot: snapshotReading(readFileSync(request.path)) };
+  if (request.kind === 'snapshot') return { ...NOTHING, snapshot: snapshotReading(readFileSync(request.path), request.beside ? readGlossary(readFileSync(request.beside.path)) : null) };
   if (request.kind === 'glossary') {
     readGlossary(readFileSync(request.path));
     return NOTHING;

@@ -1,5 +1,6 @@
 import type { SnapshotReading } from '#shared/api/files';
 import { readSnapshot } from '../snapshots/read.js';
+import type { Glossary } from '../snapshots/types.js';
 
 /** What responders ask for in round two, by the parameters that would answer it. Common practice. */
 const ASKED_FOR: readonly { what: string; by: readonly string[] }[] = [
@@ -12,8 +13,8 @@ const ASKED_FOR: readonly { what: string; by: readonly string[] }[] = [
 ];
 const MOST_LINES = 500;
 
-export function snapshotReading(bytes: Uint8Array): SnapshotReading {
-  const reading = readSnapshot(bytes);
+export function snapshotReading(bytes: Uint8Array, glossary: Glossary | null): SnapshotReading {
+  const reading = readSnapshot(bytes, { glossary });
   const said = new Set<string>(reading.values.map(({ parameter }) => parameter));
   const isWifi = reading.values.some(({ parameter, value }) => parameter === 'technology' && (value === 'wifi' || value === 'ofdm'));
   return {

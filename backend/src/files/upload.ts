@@ -16,11 +16,12 @@ import { Storage, TooLarge, type Received } from './storage.js';
 import { storeReading } from './store-reading.js';
 
 const UPLOADS = [['uploadCapture', 'capture'], ['uploadSnapshot', 'snapshot'], ['uploadGlossary', 'glossary'], ['uploadAttachment', 'attachment']] as const satisfies readonly (readonly [EndpointName, FileKind])[];
-const DEFAULT_REACH: Record<FileKind, Reach> = { capture: 'everyone', snapshot: 'compare-only', glossary: 'my-party', attachment: 'everyone' };
+const DEFAULT_REACH: Record<FileKind, Reach> = { capture: 'everyone', snapshot: 'compare-only', glossary: 'compare-only', attachment: 'everyone' };
 /** Multipart boundaries and headers around the one file. */
 const WRAPPING_BYTES = 10_000;
 
-interface Admitted { caller: Caller; standing: Standing; kind: FileKind; fields: UploadFields; reach: Reach; ownerPartyId: string; limit: number; data: { id: string; storageId: string; name: string } | null }
+interface Admitted { caller: Caller; standing: Standing; kind: FileKind; fields: UploadFields; reach: Reach; ownerPartyId: string; limit: number; companion: Companion | null }
+interface Companion { id: string; storageId: string; name: string }
 
 /** Uploads: decided before the first byte is taken, streamed to disk, read, and answered with what was read. */
 export function uploadRouter(services: Services, storage: Storage): Router {
@@ -54,11 +55,11 @@ async function admit(services: Services, storage: Storage, { request, kind }: { 
     const standing = await standingIn(services, programme.id, 'upload-file');
     const ownerPartyId = await ownerOf(services, standing, fields);
     const reach = fields.reach ?? DEFAULT_REACH[kind];
-    if (reach === 'compare-only' && kind !== 'snapshot') throw invalid('reach', 'only a snapshot can be compare only');
+    if (reach === 'compare-only' && kind !== 'snapshot' && kind !== 'glossary') throw invalid('reach', 'only a snapshot and its glossary can be compare only');
     if (reach === 'my-party' && ownerPartyId !== standing.partyId) throw invalid('reach', 'a file for your party only must be your own party\'s');
     const used = await services.database.row<{ bytes: number }>('select coalesce(sum(size), 0)::float8 as bytes from files where uploader_party_id = $1 and withdrawn_at is null', [standing.partyId]);
     if ((used?.bytes ?? 0) + announced > limits.partyQuotaBytes) throw new Refusal(413, 'quota', 'Your party\'s room is used up', 'Withdraw files that are no longer needed, or ask your administrator for more room.');
-    return { caller, standing, kind, fields, reach, ownerPartyId, limit, data: await dataOf(services, fields) };
+    return { caller, standing, kind, fields, reach, ownerPartyId, limit, companion: await companionOf(services, fields, kind) };
   });
 }
 
@@ -69,11 +70,14 @@ async function ownerOf(services: Services, standing: Standing, fields: UploadFie
   return party.id;
 }
 
-async function dataOf(services: Services, fields: UploadFields): Promise<Admitted['data']> {
-  if (!fields.dataFileId) return null;
-  const data = await services.database.row<{ id: string; storageId: string; name: string }>('select id, storage_id as "storageId", name from files where id = $1 and kind = \'capture\' and issue_id is null', [fields.dataFileId]);
-  if (!data) throw notFound();
-  return data;
+/** The draft beside which this file is read: the data of a SigMF pair, the glossary of a snapshot. */
+async function companionOf(services: Services, fields: UploadFields, kind: FileKind): Promise<Companion | null> {
+  const wanted = kind === 'capture' ? fields.dataFileId : kind === 'snapshot' ? fields.glossaryFileId : undefined;
+  if (!wanted) return null;
+  const found = await services.database.row<Companion>(
+    'select id, storage_id as "storageId", name from files where id = $1 and kind = $2 and issue_id is null', [wanted, kind === 'capture' ? 'capture' : 'glossary']);
+  if (!found) throw notFound();
+  return found;
 }
 
 /** One file part, streamed; a request that breaks off leaves nothing. */
@@ -109,21 +113,21 @@ function tooLarge(limit: number): Refusal {
 }
 
 async function keep(services: Services, storage: Storage, { admitted, received, name }: { admitted: Admitted; received: Received; name: string }): Promise<StoredFile> {
-  const { caller, standing, kind, fields, data } = admitted;
+  const { caller, standing, kind, fields, companion } = admitted;
   if (received.size === 0) {
     await storage.remove(received.storageId);
     throw new Refusal(422, 'empty', 'Empty', `"${name}" has no bytes. Record or save it again.`);
   }
   const label = { datatype: fields.datatype, sampleRateHz: fields.sampleRateHz, centreFrequencyHz: fields.centreFrequencyHz };
-  const request: ReadingRequest = { kind, path: storage.path(received.storageId), name, beside: data ? { path: storage.path(data.storageId), name: data.name } : null, ...label };
+  const request: ReadingRequest = { kind, path: storage.path(received.storageId), name, beside: companion ? { path: storage.path(companion.storageId), name: companion.name } : null, ...label };
   try {
     const reading = await readUpload(request);
     return await services.database.asPerson(caller.personId, async () => {
       const fileId = crypto.randomUUID();
       await services.database.change(`
-        insert into files (id, programme_id, kind, side, name, size, sha256, storage_id, data_file_id, reach, party_id, uploader_party_id, uploaded_by, uploaded_by_name, options, unreadable_code, unreadable_message)
+        insert into files (id, programme_id, kind, side, name, size, sha256, storage_id, companion_id, reach, party_id, uploader_party_id, uploaded_by, uploaded_by_name, options, unreadable_code, unreadable_message)
         values ($1, $2, $3, $4, $5, $6, $7, $8, $9, $10, $11, $12, access.person(), $13, $14, $15, $16)`,
-      [fileId, standing.programmeId, kind, fields.side ?? null, name, received.size, received.sha256, received.storageId, data?.id ?? null, admitted.reach,
+      [fileId, standing.programmeId, kind, fields.side ?? null, name, received.size, received.sha256, received.storageId, companion?.id ?? null, admitted.reach,
         admitted.ownerPartyId, standing.partyId, caller.name, JSON.stringify(label), reading.unreadable?.code ?? null, reading.unreadable?.message ?? null]);
       await storeReading(services, { fileId, programmeId: standing.programmeId, reading });
       await writeAudit(services, caller, { programmeId: standing.programmeId, partyId: standing.partyId, action: 'upload', object: `${kind} of ${received.size} bytes` });

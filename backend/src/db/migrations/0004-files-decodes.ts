@@ -11,7 +11,8 @@ create table files (
   size bigint not null check (size >= 0),
   sha256 text not null check (sha256 ~ '^[0-9a-f]{64}$'),
   storage_id uuid not null unique,
-  data_file_id uuid references files,
+  -- What a file cannot be read without: the data of a SigMF pair, the glossary of a snapshot.
+  companion_id uuid references files,
   reach text not null check (reach in ('everyone', 'my-party', 'compare-only')),
   party_id uuid not null,
   uploader_party_id uuid not null,
@@ -22,7 +23,7 @@ create table files (
   options jsonb not null default '{}',
   unreadable_code text,
   unreadable_message text,
-  check (reach <> 'compare-only' or kind = 'snapshot'),
+  check (reach <> 'compare-only' or kind in ('snapshot', 'glossary')),
   check (reach <> 'my-party' or party_id = uploader_party_id),
   foreign key (programme_id, issue_id) references issues (programme_id, id),
   foreign key (programme_id, party_id) references parties (programme_id, id),

@@ -1,0 +1,129 @@
+import type { Pool, PoolClient } from 'pg';
+import type { DecodeResult } from '#shared/decode';
+import type { Side } from '#shared/vocabulary';
+import { audiencesOf, type SnapshotRights } from './audiences.js';
+import { redactResult } from '../hints/redact.js';
+import { DECODE_STEPS } from '#shared/vocabulary';
+
+/** The worker's reads and writes of decodes, under the worker's own role and policies. */
+export interface Claimed {
+  readonly id: string;
+  readonly attempt: number;
+  readonly number: number;
+  readonly issueId: string;
+  readonly programmeId: string;
+  readonly reach: 'everyone' | 'my-party';
+  readonly partyId: string;
+  readonly transmitter: Side | null;
+  readonly link: 'air' | 'wifi' | 'fronthaul';
+}
+
+export const LEASE_S = 30;
+
+/** Takes a decode that waits, or whose worker has gone silent. Null where there is nothing to do. */
+export async function claim(pool: Pool, decodeId: string): Promise<Claimed | null> {
+  const { rows } = await pool.query<Claimed>(`
+    update decodes d set state = 'running', attempt = attempt + 1, step = 'reading', progress = 0, started_at = now(), leased_until = now() + $2 * interval '1 second'
+    from issues i join links l on l.id = i.link_id
+    where d.id = $1 and i.id = d.issue_id and (d.state = 'queued' or (d.state = 'running' and d.leased_until < now()))
+    returning d.id, d.attempt, d.number, d.issue_id as "issueId", d.programme_id as "programmeId", d.reach, d.party_id as "partyId", d.transmitter, l.interface as link`,
+  [decodeId, LEASE_S]);
+  return rows[0] ?? null;
+}
+
+/** False where another worker has taken the decode over. */
+export async function renew(pool: Pool, { id, attempt }: Claimed): Promise<boolean> {
+  const { rowCount } = await pool.query(`update decodes set leased_until = now() + $3 * interval '1 second' where id = $1 and attempt = $2 and state = 'running'`, [id, attempt, LEASE_S]);
+  return rowCount === 1;
+}
+
+/** Decodes whose worker was killed: their lease has run out. */
+export async function abandoned(pool: Pool): Promise<string[]> {
+  const { rows } = await pool.query<{ id: string }>(`select id from decodes where state = 'running' and leased_until < now()`);
+  return rows.map(({ id }) => id);
+}
+
+export async function reportProgress(pool: Pool, claimed: Claimed, { step, fraction }: { step: string; fraction: number }): Promise<void> {
+  const known = (DECODE_STEPS as readonly string[]).includes(step) ? step : 'reading';
+  const { rowCount } = await pool.query(`update decodes set step = $3, progress = $4 where id = $1 and attempt = $2 and state = 'running'`, [claimed.id, claimed.attempt, known, Math.min(1, Math.max(0, fraction))]);
+  if (rowCount === 1) await announce(pool, claimed, { topic: 'decode', step: known, progress: fraction });
+}
+
+async function announce(client: Pool | PoolClient, claimed: Claimed, event: { topic: 'decode' | 'issue'; step: string; progress: number }): Promise<void> {
+  await client.query('insert into live_events (programme_id, issue_id, decode_id, party_id, topic, step, progress) values ($1, $2, $3, $4, $5, $6, $7)',
+    [claimed.programmeId, claimed.issueId, claimed.id, claimed.reach === 'my-party' ? claimed.partyId : null, event.topic, event.step, event.progress]);
+}
+
+/** Runs once: a result of an attempt that was taken over is dropped whole. */
+async function once(pool: Pool, claimed: Claimed, work: (client: PoolClient) => Promise<boolean>): Promise<boolean> {
+  const client = await pool.connect();
+  try {
+    await client.query('begin');
+    const done = await work(client);
+    if (done) await announce(client, claimed, { topic: 'issue', step: 'done', progress: 1 });
+    await client.query(done ? 'commit' : 'rollback');
+    return done;
+  } catch (error) {
+    await client.query('rollback');
+    throw error;
+  } finally {
+    client.release();
+  }
+}
+
+/** Stores the result once an audience, the hints, and what the register shows of them. */
+export function storeResult(pool: Pool, claimed: Claimed, result: DecodeResult): Promise<boolean> {
+  return once(pool, claimed, async (client) => {
+    const { rowCount } = await client.query(`
+      update decodes set state = 'done', step = 'done', progress = 1, finished_at = now(), leased_until = null, engine_version = $3
+      where id = $1 and attempt = $2 and state = 'running'`, [claimed.id, claimed.attempt, result.engine.version]);
+    if (rowCount !== 1) return false;
+    for (const { partyId, view } of audiencesOf(claimed, await rightsOf(client, claimed.id))) {
+      await client.query('insert into decode_results (decode_id, programme_id, attempt, audience_party_id, result) values ($1, $2, $3, $4, $5)',
+        [claimed.id, claimed.programmeId, claimed.attempt, partyId, JSON.stringify(redactResult(result, view))]);
+    }
+    for (const [rank, hint] of result.hints.entries()) {
+      await client.query('insert into hints (decode_id, programme_id, issue_id, rank, code, side, confidence) values ($1, $2, $3, $4, $5, $6, $7)',
+        [claimed.id, claimed.programmeId, claimed.issueId, rank, hint.code, hint.side, hint.confidence]);
+    }
+    const [best] = result.hints;
+    await remember(client, claimed, { state: best ? 'hint' : 'clean', code: best?.code ?? null, side: best?.side ?? null, confidence: best?.confidence ?? null });
+    const found = result.hints.length;
+    await history(client, claimed, found === 0 ? `decode ${claimed.number} found no mismatch` : `decode ${claimed.number} found ${found === 1 ? 'one likely mismatch' : `${found} likely mismatches`}`);
+    return true;
+  });
+}
+
+export function storeFailure(pool: Pool, claimed: Claimed, failure: { code: string; message: string }): Promise<boolean> {
+  return once(pool, claimed, async (client) => {
+    const { rowCount } = await client.query(`
+      update decodes set state = 'failed', finished_at = now(), leased_until = null, error_code = $3, error_message = $4
+      where id = $1 and attempt = $2 and state = 'running'`, [claimed.id, claimed.attempt, failure.code, failure.message]);
+    if (rowCount !== 1) return false;
+    await remember(client, claimed, { state: 'failed', code: null, side: null, confidence: null });
+    await history(client, claimed, `decode ${claimed.number} could not run`);
+    return true;
+  });
+}
+
+/** The register shows the latest decode that reaches everyone. */
+async function remember(client: PoolClient, claimed: Claimed, likely: { state: string; code: string | null; side: string | null; confidence: number | null }): Promise<void> {
+  if (claimed.reach !== 'everyone') return;
+  await client.query(`
+    update issues i set decode_state = $3, likely_code = $4, likely_side = $5, likely_confidence = $6, updated_at = now()
+    where i.id = $1 and not exists (select 1 from decodes d where d.issue_id = i.id and d.reach = 'everyone' and d.queued_at > (select queued_at from decodes where id = $2))`,
+  [claimed.issueId, claimed.id, likely.state, likely.code, likely.side, likely.confidence]);
+}
+
+async function history(client: PoolClient, claimed: Claimed, text: string): Promise<void> {
+  const own = claimed.reach === 'my-party';
+  await client.query(`insert into events (programme_id, issue_id, kind, text, reach, party_id) values ($1, $2, 'decode', $3, $4, $5)`, [claimed.programmeId, claimed.issueId, text, claimed.reach, own ? claimed.partyId : null]);
+}
+
+/** Read again in the transaction that stores: a reach may have been narrowed while the decode ran. */
+async function rightsOf(client: PoolClient, decodeId: string): Promise<SnapshotRights[]> {
+  const { rows } = await client.query<SnapshotRights>(`
+    select right(n.role, 1) as side, f.reach, array[f.party_id, f.uploader_party_id] as parties
+    from decode_inputs n join files f on f.id = n.file_id where n.decode_id = $1 and n.role in ('snapshot-a', 'snapshot-b')`, [decodeId]);
+  return rows;
+}
