@@ -107,7 +107,8 @@ export type Plots = z.infer<typeof plots>;
 export const decodeResult = z.object({
   contract: z.literal(1),
   engine: z.object({ name: z.string(), version: z.string() }),
-  inputs: z.array(z.object({ file: z.string(), sha256: z.string() })),
+  /** `of`: whose file it is; a side's own files are named to those alone who may see its snapshot. */
+  inputs: z.array(z.object({ file: z.string(), sha256: z.string(), of: z.enum(['capture', 'a', 'b']).optional() })),
   capture: captureFacts.nullable(),
   air: z.record(z.string(), airValue),
   comparison: z.array(comparisonRow),

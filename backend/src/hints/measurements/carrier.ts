@@ -10,6 +10,14 @@ import { airNumber, airWord } from './numbers.js';
  * only the residue modulo the spacing is known, and every whole number of spacings fits.
  */
 export function carrierFrequency(evidence: Evidence): Measurement | null {
+  return carrierWithClock(evidence, BEYOND_LIMITS);
+}
+
+/** Share of links whose clocks are beyond their limits. */
+const BEYOND_LIMITS = 0.03;
+
+/** The same for a stated share of clocks beyond their limits: 0 where the clock was excluded otherwise. */
+export function carrierWithClock(evidence: Evidence, share: number): Measurement | null {
   const offset = airNumber(evidence, 'carrierOffsetHz');
   const centre = evidence.capture?.centreFrequencyHz ?? null;
   if (!offset || centre === null) return null;
@@ -22,7 +30,7 @@ export function carrierFrequency(evidence: Evidence): Measurement | null {
   const fold = (setting: SettingValue): number => (spacing ? value + folded(Number(setting) - value, spacing) : Number(setting));
   return {
     value, method, otherLogLikelihood: Math.log(1 / range),
-    logLikelihood: (setting) => Math.log(0.97 * Math.exp(within.logLikelihood(fold(setting))) + 0.03 * Math.exp(beyond.logLikelihood(fold(setting)))),
+    logLikelihood: (setting) => Math.log((1 - share) * Math.exp(within.logLikelihood(fold(setting))) + share * Math.exp(beyond.logLikelihood(fold(setting)))),
   };
 }
 

@@ -1,4 +1,4 @@
-import { carrierFrequency, clockPpm, folded } from '../measurements/carrier.js';
+import { carrierFrequency, carrierWithClock, clockPpm, folded } from '../measurements/carrier.js';
 import { airNumber } from '../measurements/numbers.js';
 import { judgeContradiction } from '../model.js';
 import { CLOCK_BEYOND_PPM, SCATTER } from '../priors.js';
@@ -51,7 +51,7 @@ function clockShare(evidence: Evidence, shift: Shift): number {
 function wrongCarrier(evidence: Evidence, share: number): Finding[] {
   const row = evidence.comparison.rows.find((r) => r.parameter === 'carrierFrequency')!;
   if (row.verdict === 'differ') return [];
-  const measurement = carrierFrequency(evidence)!;
+  const measurement = carrierWithClock(evidence, 0)!;
   const sides = declaredBy(row);
   const verdict = judgeContradiction(row[sides[0]!]!.value, measurement, { sides, transmitter: evidence.transmitter });
   if (!verdict) return [];

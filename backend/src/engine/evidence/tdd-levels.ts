@@ -1,0 +1,122 @@
+import type { Window } from '../types.js';
+
+/** A downlink-uplink pattern of TS 38.213 clause 11.1, counted in slots of `referenceSpacingHz`. */
+export interface TddPattern {
+  readonly periodS: number;
+  readonly downlinkSlots: number;
+  readonly downlinkSymbols: number;
+  readonly uplinkSlots: number;
+  readonly uplinkSymbols: number;
+  readonly referenceSpacingHz: number;
+}
+
+/** Level of every symbol of a frame-timed capture: on or off, and where it stands. */
+export interface SymbolLevels {
+  readonly spacingHz: number;
+  /** Index of each symbol, counted from a frame's start; may begin after 0. */
+  readonly indices: readonly number[];
+  readonly on: readonly boolean[];
+  /** How far apart the two levels lie, dB; 0 where the signal never pauses. */
+  readonly contrastDb: number;
+}
+
+const SYMBOLS = 14;
+/** Less between the two levels is fading or load, not a pause. */
+const LEAST_CONTRAST_DB = 6;
+
+/** Splits the window into symbols from a frame's start on and decides which are on. */
+export function symbolLevels(window: Window, frame: { startSample: number; spacingHz: number }): SymbolLevels {
+  const symbolS = (15e3 / frame.spacingHz) * (1e-3 / SYMBOLS);
+  const first = Math.ceil((window.startSample - frame.startSample) / (symbolS * window.sampleRateHz));
+  const indices: number[] = [];
+  const levels: number[] = [];
+  for (let k = first; ; k += 1) {
+    const from = frame.startSample + (k + 0.15) * symbolS * window.sampleRateHz - window.startSample;
+    const to = from + 0.7 * symbolS * window.sampleRateHz;
+    if (2 * Math.ceil(to) >= window.iq.length) break;
+    if (from < 0) continue;
+    indices.push(k);
+    levels.push(power(window.iq, Math.floor(from), Math.floor(to)));
+  }
+  return { spacingHz: frame.spacingHz, indices, ...decided(levels) };
+}
+
+function power(iq: Float32Array, from: number, to: number): number {
+  let sum = 0;
+  for (let i = 2 * from; i < 2 * to; i += 1) sum += iq[i]! * iq[i]!;
+  return sum / Math.max(1, to - from);
+}
+
+/** Two levels by the widest step between sorted levels near the middle of the scale. */
+function decided(levels: readonly number[]): { on: boolean[]; contrastDb: number } {
+  const db = levels.map((level) => 10 * Math.log10(Math.max(level, 1e-20)));
+  const sorted = [...db].sort((a, b) => a - b);
+  const low = sorted[Math.floor(0.02 * sorted.length)] ?? 0;
+  const high = sorted[Math.floor(0.9 * sorted.length)] ?? 0;
+  const contrastDb = high - low;
+  if (contrastDb < LEAST_CONTRAST_DB) return { on: db.map(() => true), contrastDb: 0 };
+  // Energy counts where it stands clear of the pauses' own scatter.
+  const threshold = low + Math.max(3, contrastDb / 2.5);
+  return { on: db.map((level) => level > threshold), contrastDb };
+}
+
+export interface PatternVerdict {
+  /** Natural logarithm of the likelihood, 0 for a pattern that explains everything. */
+  readonly logLikelihood: number;
+  readonly reason: string;
+}
+
+/** One position in the period that speaks against a pattern, as a log likelihood. */
+const ENERGY_OUTSIDE = -4;
+const QUIET_INSIDE = -1.5;
+
+/**
+ * How well the levels fit a declared pattern. Energy in a symbol that is declared uplink refutes
+ * it; quiet in a declared downlink symbol counts only at the pattern's edge, where the rest of
+ * the downlink is filled and every period shows the same.
+ */
+export function patternLikelihood(levels: SymbolLevels, pattern: TddPattern): PatternVerdict {
+  const seen = byPosition(levels, pattern);
+  const outside = seen.filter((p) => p.kind === 'uplink' && p.onShare > 0.5);
+  const downlink = seen.filter((p) => p.kind === 'downlink');
+  const filled = downlink.filter((p) => p.onShare > 0.5).length / Math.max(1, downlink.length);
+  const quietEdge = levels.contrastDb > 0 && filled > 0.6 ? edgeRun(downlink) : 0;
+  const logLikelihood = Math.max(-40, ENERGY_OUTSIDE * outside.length + QUIET_INSIDE * quietEdge);
+  return { logLikelihood, reason: reasonOf(outside.length, quietEdge) };
+}
+
+function reasonOf(outside: number, quiet: number): string {
+  if (outside > 0) return `the transmitter sends in ${outside} symbol${outside > 1 ? 's' : ''} of the period that the pattern gives to the uplink`;
+  if (quiet > 0) return `${quiet} symbol${quiet > 1 ? 's' : ''} at the end of the pattern's downlink stay silent in every period`;
+  return 'the levels fit the pattern';
+}
+
+interface Position { readonly index: number; readonly kind: 'downlink' | 'uplink' | 'flexible'; readonly onShare: number; readonly count: number }
+
+function byPosition(levels: SymbolLevels, pattern: TddPattern): Position[] {
+  const perPeriod = Math.round((pattern.periodS / 1e-3) * (levels.spacingHz / 15e3) * SYMBOLS);
+  const on = new Float64Array(perPeriod);
+  const count = new Float64Array(perPeriod);
+  levels.indices.forEach((k, i) => {
+    const at = ((k % perPeriod) + perPeriod) % perPeriod;
+    count[at] += 1;
+    if (levels.on[i]) on[at] += 1;
+  });
+  return Array.from(count, (n, index) => ({ index, kind: kindAt(index, perPeriod, { pattern, levels }), onShare: n > 0 ? on[index]! / n : 0, count: n })).filter((p) => p.count > 0);
+}
+
+/** Downlink, uplink or left open, for a symbol of the carrier's spacing within the pattern's period. */
+function kindAt(index: number, perPeriod: number, { pattern, levels }: { pattern: TddPattern; levels: SymbolLevels }): Position['kind'] {
+  const ratio = levels.spacingHz / pattern.referenceSpacingHz;
+  const downlink = (pattern.downlinkSlots * SYMBOLS + pattern.downlinkSymbols) * ratio;
+  const uplink = (pattern.uplinkSlots * SYMBOLS + pattern.uplinkSymbols) * ratio;
+  if (index < downlink) return 'downlink';
+  return index >= perPeriod - uplink ? 'uplink' : 'flexible';
+}
+
+/** Silent symbols in a row at the end of the downlink, seen in at least two periods. */
+function edgeRun(downlink: readonly Position[]): number {
+  let run = 0;
+  for (let i = downlink.length - 1; i >= 0 && downlink[i]!.onShare < 0.1 && downlink[i]!.count >= 2; i -= 1) run += 1;
+  return run;
+}
