@@ -1,4 +1,4 @@
-import { createBrowserRouter, type RouteObject } from 'react-router-dom';
+import { createBrowserRouter, Navigate, type RouteObject } from 'react-router-dom';
 import { ErrorPage } from './error-page.js';
 import { Gate } from './gate.js';
 import { Missing } from './missing.js';
@@ -25,6 +25,7 @@ export const router = createBrowserRouter([
       page('/overview', async () => (await import('../routes/overview.js')).OverviewPage),
       page('/programme', async () => (await import('../routes/programme.js')).ProgrammePage),
       page('/account', async () => (await import('../routes/account.js')).AccountPage),
+      { path: '/sign-in', element: <Navigate to="/" replace /> },
       { path: '*', element: <Missing /> },
     ],
   },
