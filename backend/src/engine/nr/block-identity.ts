@@ -1,0 +1,111 @@
+import { BLOCK_SUBCARRIERS, broadcastLayout, SYNC_FIRST } from './block-layout.js';
+import { broadcastReference, primarySequence, secondarySequence, SYNC_LENGTH } from './sequences.js';
+
+const CELLS_PER_PRIMARY = 336;
+/** Subcarriers on each side over which the channel seen by the primary signal is averaged. */
+const SMOOTHING = 3;
+
+let secondaries: Float64Array[] | null = null;
+
+function secondaryOf(cellId: number): Float64Array {
+  secondaries ??= Array.from({ length: 3 * CELLS_PER_PRIMARY }, (_, id) => secondarySequence(id));
+  return secondaries[cellId];
+}
+
+export interface CellMatch {
+  readonly cellId: number;
+  /** 127 for a clean signal, about Exp(1) for a wrong cell. */
+  readonly statistic: number;
+}
+
+/**
+ * Statistics of the 336 cells that share a primary signal: the secondary signal against the
+ * channel that the primary one saw. A common phase between the two does not matter.
+ */
+export function matchCells(grid: readonly Float64Array[], nId2: number): CellMatch[] {
+  const { products, power } = secondaryProducts(grid, nId2);
+  return Array.from({ length: CELLS_PER_PRIMARY }, (_, nId1) => {
+    const cellId = 3 * nId1 + nId2;
+    const sequence = secondaryOf(cellId);
+    let re = 0;
+    let im = 0;
+    for (let n = 0; n < SYNC_LENGTH; n++) {
+      re += sequence[n] * products[2 * n];
+      im += sequence[n] * products[2 * n + 1];
+    }
+    return { cellId, statistic: power > 0 ? (re * re + im * im) / power : 0 };
+  });
+}
+
+/** Y(k)·ĥ*(k) of the secondary signal's symbol, and the sum of their powers. */
+function secondaryProducts(grid: readonly Float64Array[], nId2: number): { products: Float64Array; power: number } {
+  const chips = primarySequence(nId2);
+  const products = new Float64Array(2 * SYNC_LENGTH);
+  let power = 0;
+  for (let n = 0; n < SYNC_LENGTH; n++) {
+    let re = 0;
+    let im = 0;
+    for (let m = Math.max(0, n - SMOOTHING); m <= Math.min(SYNC_LENGTH - 1, n + SMOOTHING); m++) {
+      re += chips[m] * grid[0][2 * (SYNC_FIRST + m)];
+      im += chips[m] * grid[0][2 * (SYNC_FIRST + m) + 1];
+    }
+    const a = grid[2][2 * (SYNC_FIRST + n)];
+    const b = grid[2][2 * (SYNC_FIRST + n) + 1];
+    products[2 * n] = a * re + b * im;
+    products[2 * n + 1] = b * re - a * im;
+    power += products[2 * n] ** 2 + products[2 * n + 1] ** 2;
+  }
+  return { products, power };
+}
+
+export interface ReferenceMatch {
+  /** ī of TS 38.211 clause 7.4.1.4.1. */
+  readonly index: number;
+  /** Delay of the strongest path after the place assumed, in useful parts. */
+  readonly delay: number;
+  /** 144 for a clean signal with one path, about Gamma(3) at one delay without the signal. */
+  readonly statistic: number;
+}
+
+/** Delays tried: from −4 % to +8 % of the useful part, in steps of 1/256 (the block's resolution is 1/240). */
+const DELAYS = Array.from({ length: 31 }, (_, i) => (i - 10) / 256);
+
+/** How well the broadcast channel's reference signal of one index fits: the three symbols without their phases. */
+export function matchReference(grid: readonly Float64Array[], cellId: number, index: number): ReferenceMatch {
+  const pilots = broadcastLayout(cellId).reference;
+  const sent = broadcastReference(cellId, index);
+  const sums = DELAYS.map(() => new Float64Array(8));
+  const power = new Float64Array(4);
+  pilots.forEach(({ symbol, subcarrier }, i) => {
+    const a = grid[symbol][2 * subcarrier];
+    const b = grid[symbol][2 * subcarrier + 1];
+    const re = a * sent[2 * i] + b * sent[2 * i + 1];
+    const im = b * sent[2 * i] - a * sent[2 * i + 1];
+    power[symbol] += re * re + im * im;
+    DELAYS.forEach((delay, d) => {
+      const { cos, sin } = phasor(delay, subcarrier);
+      sums[d][2 * symbol] += re * cos - im * sin;
+      sums[d][2 * symbol + 1] += re * sin + im * cos;
+    });
+  });
+  let best: ReferenceMatch = { index, delay: 0, statistic: 0 };
+  DELAYS.forEach((delay, d) => {
+    let statistic = 0;
+    for (let symbol = 1; symbol < 4; symbol++) {
+      if (power[symbol] > 0) statistic += (sums[d][2 * symbol] ** 2 + sums[d][2 * symbol + 1] ** 2) / power[symbol];
+    }
+    if (statistic > best.statistic) best = { index, delay, statistic };
+  });
+  return best;
+}
+
+const phasors = new Map<number, Float64Array>();
+
+function phasor(delay: number, subcarrier: number): { cos: number; sin: number } {
+  let row = phasors.get(delay);
+  if (!row) {
+    row = Float64Array.from({ length: 2 * BLOCK_SUBCARRIERS }, (_, i) => (i % 2 === 0 ? Math.cos : Math.sin)(2 * Math.PI * delay * (i >> 1)));
+    phasors.set(delay, row);
+  }
+  return { cos: row[2 * subcarrier], sin: row[2 * subcarrier + 1] };
+}

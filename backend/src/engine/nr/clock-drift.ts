@@ -1,0 +1,71 @@
+import { BLOCK_SUBCARRIERS } from './block-layout.js';
+import type { Cell, KnownBlock } from './cell.js';
+
+/** The transmitter's sample clock against the capture's; positive: the transmitter's is faster. */
+export interface ClockDrift {
+  readonly ppm: number;
+  readonly sigmaPpm: number;
+}
+
+/** Delays tried against the first block, useful parts. */
+const REACH = 0.02;
+const STEP = 1 / 2048;
+
+/** Drift of the blocks' delays over the capture, or null with fewer than two blocks at different times. */
+export function clockDrift(cell: Cell): ClockDrift | null {
+  const [first, ...rest] = cell.blocks;
+  if (!first || rest.length === 0) return null;
+  const points = [{ timeS: 0, delayS: 0, sigmaS: sigmaOf(first, first, cell) }, ...rest.map((block) => ({
+    timeS: block.usefulS - first.usefulS,
+    delayS: delayBetween(first, block) / cell.spacingHz,
+    sigmaS: sigmaOf(first, block, cell),
+  }))];
+  const weights = points.map((p) => 1 / p.sigmaS ** 2);
+  const whole = weights.reduce((a, b) => a + b, 0);
+  const meanTime = points.reduce((sum, p, i) => sum + weights[i] * p.timeS, 0) / whole;
+  const spread = points.reduce((sum, p, i) => sum + weights[i] * (p.timeS - meanTime) ** 2, 0);
+  const slope = points.reduce((sum, p, i) => sum + weights[i] * (p.timeS - meanTime) * p.delayS, 0) / spread;
+  return { ppm: -slope * 1e6, sigmaPpm: 1e6 / Math.sqrt(spread) };
+}
+
+/** Delay of a block's channel against the first's, useful parts: the peak of their cross-correlation over delay. */
+function delayBetween(first: KnownBlock, block: KnownBlock): number {
+  const products = new Float64Array(2 * BLOCK_SUBCARRIERS);
+  const a = first.fit.gains;
+  const b = block.fit.gains;
+  for (let i = 0; i < products.length; i += 2) {
+    products[i] = b[i] * a[i] + b[i + 1] * a[i + 1];
+    products[i + 1] = b[i + 1] * a[i] - b[i] * a[i + 1];
+  }
+  const powers: number[] = [];
+  for (let delay = -REACH; delay <= REACH; delay += STEP) powers.push(powerAt(products, delay));
+  const at = powers.indexOf(Math.max(...powers));
+  const [left, top, right] = [powers[at - 1] ?? 0, powers[at], powers[at + 1] ?? 0];
+  const bend = left - 2 * top + right;
+  return -REACH + STEP * (at + (bend < 0 ? (0.5 * (left - right)) / bend : 0));
+}
+
+function powerAt(products: Float64Array, delay: number): number {
+  let re = 0;
+  let im = 0;
+  for (let k = 0; k < BLOCK_SUBCARRIERS; k++) {
+    const cos = Math.cos(2 * Math.PI * delay * k);
+    const sin = Math.sin(2 * Math.PI * delay * k);
+    re += products[2 * k] * cos - products[2 * k + 1] * sin;
+    im += products[2 * k] * sin + products[2 * k + 1] * cos;
+  }
+  return re * re + im * im;
+}
+
+/**
+ * Standard deviation of a delay between two blocks, s (Cramér–Rao: 240 gains of 3.5 elements
+ * each; their mean square distance from the middle is 240²/12), with a floor of 2e-5 useful
+ * parts for what the channel does meanwhile.
+ */
+function sigmaOf(first: KnownBlock, block: KnownBlock, cell: Cell): number {
+  const noise = (fit: KnownBlock['fit']) => fit.noisePower / fit.signalPower / 3.5;
+  const perGain = noise(first.fit) + noise(block.fit);
+  const rmsDistance = BLOCK_SUBCARRIERS / Math.sqrt(12);
+  const parts = Math.sqrt(perGain / (2 * BLOCK_SUBCARRIERS)) / (2 * Math.PI * rmsDistance);
+  return Math.hypot(parts, 2e-5) / cell.spacingHz;
+}

@@ -1,0 +1,81 @@
+import { numerologyOf, prefixTs, TS_HZ, usefulStartTs, usefulTs } from './numerology.js';
+import type { FrequencyEstimate } from './frequency-fit.js';
+import type { WorkSignal } from './work-signal.js';
+
+/** How well the prefixes of a numerology fit the slots that the block's timing gives. */
+export interface DataPrefix {
+  readonly spacingHz: number;
+  readonly extended: boolean;
+  /** |Σ r*(t)·r(t+T)| over the prefixes against the power in them, 0 to 1: S/(S+N) for the right one. */
+  readonly correlation: number;
+  /** The same of what chance gives: about 1/√samples. */
+  readonly chance: number;
+  /** Frequency of the band's middle modulo the spacing, Hz in the work signal. */
+  readonly residue: FrequencyEstimate;
+}
+
+/** Share of each prefix that is left out at its start, where the last symbol's echoes are. */
+const SKIPPED = 0.3;
+
+/** Prefix correlation of a numerology at known times; `subframeS` is the start of any subframe in the capture. */
+export function measurePrefix(work: WorkSignal, subframeS: number, { spacingHz, extended }: { spacingHz: number; extended: boolean }): DataPrefix {
+  const mu = numerologyOf(spacingHz)!;
+  const size = work.rateHz / spacingHz;
+  const perHalf = (extended ? 6 : 7) * 2 ** mu;
+  const samples = work.iq.length / 2;
+  const sums: { re: number; im: number }[] = [];
+  let power = 0;
+  let counted = 0;
+  const startS = subframeS - work.startS;
+  const firstHalf = Math.ceil(-startS / 0.0005);
+  for (let half = firstHalf; ; half++) {
+    if ((startS + (half + 1) * 0.0005) * work.rateHz + size > samples) break;
+    const sum = { re: 0, im: 0 };
+    for (let l = 0; l < perHalf; l++) {
+      const useful = (startS + half * 0.0005 + usefulStartTs(mu, l, extended) / TS_HZ) * work.rateHz;
+      const prefix = (prefixTs(mu, l, extended) / TS_HZ) * work.rateHz;
+      const from = Math.max(0, Math.ceil(useful - prefix * (1 - SKIPPED)));
+      for (let n = from; n < Math.floor(useful); n++) {
+        const a = work.iq[2 * n];
+        const b = work.iq[2 * n + 1];
+        const c = work.iq[2 * (n + size)];
+        const d = work.iq[2 * (n + size) + 1];
+        sum.re += a * c + b * d;
+        sum.im += a * d - b * c;
+        power += (a * a + b * b + c * c + d * d) / 2;
+        counted++;
+      }
+    }
+    sums.push(sum);
+  }
+  const re = sums.reduce((total, each) => total + each.re, 0);
+  const im = sums.reduce((total, each) => total + each.im, 0);
+  const strength = Math.hypot(re, im);
+  return {
+    spacingHz,
+    extended,
+    correlation: power > 0 ? strength / power : 0,
+    chance: counted > 0 ? 1 / Math.sqrt(counted) : 1,
+    residue: { hz: (Math.atan2(im, re) / (2 * Math.PI)) * spacingHz, sigmaHz: (scatter(sums, { re, im }) / (2 * Math.PI)) * spacingHz },
+  };
+}
+
+/** Standard deviation of the total's phase, from how the half-subframes differ. */
+function scatter(sums: readonly { re: number; im: number }[], { re, im }: { re: number; im: number }): number {
+  const strength = Math.hypot(re, im) + 1e-300;
+  let across = 0;
+  for (const sum of sums) across += ((sum.im * re - sum.re * im) / strength) ** 2;
+  return sums.length < 3 ? Math.PI : Math.sqrt(across) / strength;
+}
+
+/** Numerologies that data may have beside a block of a spacing (TS 38.331: FR1, FR2-1, FR2-2). */
+export function dataNumerologies(blockSpacingHz: number): { spacingHz: number; extended: boolean }[] {
+  const spacings = blockSpacingHz <= 30_000 ? [15_000, 30_000, 60_000] : blockSpacingHz <= 240_000 ? [60_000, 120_000] : [120_000, 480_000, 960_000];
+  const normal = spacings.map((spacingHz) => ({ spacingHz, extended: false }));
+  return spacings.includes(60_000) ? [...normal, { spacingHz: 60_000, extended: true }] : normal;
+}
+
+/** Length of a useful part, s. */
+export function usefulS(mu: number): number {
+  return usefulTs(mu) / TS_HZ;
+}

@@ -1,0 +1,48 @@
+import type { DetectionContext } from '../types.js';
+import { BlockReader } from './block-reader.js';
+import { BothSenses, searchBlock, type FoundBlock } from './block-search.js';
+import { blockSpacings } from './block-search-plan.js';
+import { PrimaryScan } from './primary-scan.js';
+import { planWindows } from './search-windows.js';
+import { planWork, readWork, type WorkSignal } from './work-signal.js';
+
+/** The default period of the blocks in cell search (TS 38.213 clause 4.1) and the length of the longest one. */
+const WINDOW_S = 0.0204;
+/** Longer windows than this are searched every half symbol. */
+const DENSE_S = 0.006;
+
+export interface BlockFinding {
+  readonly block: FoundBlock;
+  readonly reader: BlockReader;
+  /** The window of the capture in which it was found, upright. */
+  readonly work: WorkSignal;
+}
+
+/** The first synchronisation block that stands up to its three signals, at any spacing, frequency and sense. */
+export function findBlock(context: DetectionContext): BlockFinding | null {
+  const { source, blind } = context;
+  const whole = { lowHz: -source.sampleRateHz / 2, highHz: source.sampleRateHz / 2 };
+  const spacings = blockSpacings({ sampleRateHz: source.sampleRateHz, centreHz: source.centreFrequencyHz, blind });
+  for (const [i, spacingHz] of spacings.entries()) {
+    context.onProgress?.(`NR synchronisation block, ${spacingHz / 1000} kHz`, i / spacings.length);
+    const band = searchBand(context, spacingHz) ?? whole;
+    const plan = planWork(source.sampleRateHz, band, 256 * spacingHz);
+    const work = readWork(source, plan, { startS: 0, durationS: WINDOW_S });
+    const scan = new PrimaryScan(work, spacingHz, { lowHz: band.lowHz - plan.centreHz, highHz: band.highHz - plan.centreHz });
+    if (!scan.possible) continue;
+    const senses = new BothSenses(work);
+    const sparse = work.iq.length / 2 / work.rateHz > DENSE_S;
+    const block = searchBlock(senses, scan, planWindows(work, spacingHz, { blind, sparse, sampleRateHz: source.sampleRateHz }));
+    if (block) return { block, reader: new BlockReader(source, plan, senses, block.inverted), work: senses.in(block.inverted) };
+  }
+  return null;
+}
+
+/** The occupied band and some subcarriers more, no narrower than a block; null where nothing stands out. */
+function searchBand({ occupied, source }: DetectionContext, spacingHz: number): { lowHz: number; highHz: number } | null {
+  if (!occupied) return null;
+  const middle = (occupied.lowHz + occupied.highHz) / 2;
+  const half = Math.max((occupied.highHz - occupied.lowHz) / 2 + 8 * spacingHz, 124 * spacingHz);
+  const edge = source.sampleRateHz / 2;
+  return { lowHz: Math.max(-edge, middle - half), highHz: Math.min(edge, middle + half) };
+}

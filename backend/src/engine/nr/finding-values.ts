@@ -1,0 +1,63 @@
+import type { AirValue } from '#shared/decode';
+import type { Cell } from './cell.js';
+import type { ClockDrift } from './clock-drift.js';
+import type { CellMeasurements } from './measure-cell.js';
+import type { PhaseCompensation } from './phase-compensation.js';
+
+/** Standard deviation above which a clock difference is not reported, parts per million. */
+const LARGEST_CLOCK_SIGMA = 1;
+/** Unit points with random phases against known ones: √2 of their amplitude. */
+const RANDOM_EVM_PERCENT = 100 * Math.SQRT2;
+
+export function unknown(reason: string): AirValue {
+  return { value: null, reason };
+}
+
+/** Carrier offset, resource blocks and the data's numerology, each with how it was found. */
+export function carrierValues({ data, placement, placed, commonGrid, reference }: CellMeasurements): Record<string, AirValue> {
+  const sigmaHz = reference.estimate.sigmaHz;
+  const values: Record<string, AirValue> = {};
+  if (placement && placed) {
+    const method = `edges of the carrier's power on the grid of common resource blocks that k_SSB gives; ${reference.method}`;
+    values.carrierOffsetHz = { value: placement.referenceHz, confidence: placement.inTable ? 0.98 : 0.9, method, sigmaHz };
+    values.resourceBlocks = { value: placement.resourceBlocks, confidence: placement.inTable ? 0.98 : 0.85, method };
+    return values;
+  }
+  const spacingHz = data?.spacingHz ?? commonGrid?.spacingHz ?? null;
+  values.resourceBlocks = unknown(placement
+    ? `power stands on ${placement.resourceBlocks} blocks, which is no transmission bandwidth of TS 38.104 and not centred: it may be a part of the carrier`
+    : 'the carrier’s edges do not stand out in the capture');
+  values.carrierOffsetHz = spacingHz === null || (!commonGrid && !data)
+    ? unknown('the data’s spacing is not known')
+    : { value: residue(commonGrid ? commonGrid.edgeHz : data!.residue.hz, spacingHz), confidence: 0.97, method: `fractional: residue modulo ${spacingHz / 1000} kHz; ${reference.method}`, sigmaHz };
+  return values;
+}
+
+function residue(hz: number, spacingHz: number): number {
+  return hz - Math.round(hz / spacingHz) * spacingHz;
+}
+
+/** Error vector and signal-to-noise ratio against all elements of the decoded blocks. */
+export function qualityValues(cell: Cell): Record<string, AirValue> {
+  const noise = cell.blocks.reduce((sum, { fit }) => sum + fit.noisePower, 0);
+  const signal = cell.blocks.reduce((sum, { fit }) => sum + fit.signalPower, 0);
+  if (!(signal > 0)) return { evmPercent: unknown('no block lies wholly in the capture') };
+  const method = `${cell.blocks.length} synchronisation block${cell.blocks.length === 1 ? '' : 's'}, every element known after decoding`;
+  return {
+    evmPercent: { value: 100 * Math.sqrt(noise / signal), confidence: 0.95, method },
+    evmRandomPercent: { value: RANDOM_EVM_PERCENT, method: 'random phases against the same points' },
+    snrDb: { value: 10 * Math.log10(signal / noise), confidence: 0.9, method },
+  };
+}
+
+export function clockValue(clock: ClockDrift | null): AirValue {
+  if (!clock) return unknown('a single synchronisation block shows no drift');
+  if (clock.sigmaPpm > LARGEST_CLOCK_SIGMA) return unknown(`the blocks lie too close in time: standard deviation ${clock.sigmaPpm.toFixed(1)} ppm`);
+  return { value: clock.ppm, confidence: 0.95, method: 'drift of the synchronisation blocks’ delay', sigmaPpm: clock.sigmaPpm };
+}
+
+export function phaseValue(phases: PhaseCompensation, cell: Cell): AirValue {
+  if (phases.value === null) return unknown(phases.reason ?? 'the phases do not say');
+  const method = `phases of ${4 * cell.blocks.length} known symbols against both laws of TS 38.211 clause 5.4, ${phases.separation.toFixed(0)} standard deviations apart`;
+  return { value: phases.value, confidence: phases.confidence, method };
+}

@@ -1,0 +1,86 @@
+import type { DetectionContext } from '../types.js';
+import type { DecodedBroadcast } from './burst-decode.js';
+import { placeCarrier, type CarrierPlacement } from './carrier-placement.js';
+import type { Cell } from './cell.js';
+import { clockDrift, type ClockDrift } from './clock-drift.js';
+import type { DataPrefix } from './data-prefix.js';
+import { judgePhases, type PhaseCompensation } from './phase-compensation.js';
+import { lawsWithCompensation, lawsWithoutCompensation } from './phase-laws.js';
+import { dataNumerology, referenceFrequency, type ReferenceFrequency } from './reference-frequency.js';
+import type { WorkSignal } from './work-signal.js';
+
+/** Grid of common resource blocks: subcarrier 0 of one of them, against the capture's zero, and their spacing, Hz. */
+export interface CommonGrid {
+  readonly edgeHz: number;
+  readonly spacingHz: number;
+}
+
+/** What a decoded cell allows to measure. */
+export interface CellMeasurements {
+  readonly data: DataPrefix | null;
+  readonly reference: ReferenceFrequency;
+  /** Null where k_SSB only says that the block has no control resource set (TS 38.213 clause 13). */
+  readonly commonGrid: CommonGrid | null;
+  readonly placement: CarrierPlacement | null;
+  /** True where the placement is believed: a standard bandwidth, or a carrier around the tuner's centre. */
+  readonly placed: boolean;
+  readonly clock: ClockDrift | null;
+  readonly phases: PhaseCompensation;
+}
+
+/** An unlisted number of blocks is believed where its centre is the tuner's within this, parts per million. */
+const CENTRED_PPM = 5;
+
+export function measureCell(context: DetectionContext, { cell, work, decoded, inverted }: { cell: Cell; work: WorkSignal; decoded: DecodedBroadcast; inverted: boolean }): CellMeasurements {
+  const data = dataNumerology(work, cell, context.blind);
+  const reference = referenceFrequency(work, cell, data);
+  const commonGrid = commonGridOf(cell, reference.estimate.hz, decoded);
+  const placement = data && commonGrid && placeCarrier(work, {
+    spacingHz: data.spacingHz,
+    extended: data.extended,
+    subframeS: cell.frameStartS,
+    blockEdgeHz: commonGrid.edgeHz,
+    stepHz: 12 * Math.min(commonGrid.spacingHz, data.spacingHz),
+  });
+  const placed = placement !== null && (placement.inTable || isCentred(placement, context.source.centreFrequencyHz));
+  return {
+    data,
+    reference,
+    commonGrid,
+    placement,
+    placed,
+    clock: clockDrift(cell),
+    phases: judgePhases(cell, {
+      present: lawsWithCompensation({ referenceHz: reference.estimate.hz, centreHz: context.source.centreFrequencyHz, spacingHz: cell.spacingHz }),
+      absent: lawsWithoutCompensation(reference.estimate.hz, placed ? [placement.referenceHz] : possibleCarriers(context, { cell, commonGrid, inverted })),
+      reference: reference.estimate,
+    }),
+  };
+}
+
+/** k_SSB from the block down to the common grid: 15 kHz units in FR1, the common spacing's in FR2-1, the block's in FR2-2 (TS 38.211 clause 7.4.3.1). */
+function commonGridOf(cell: Cell, referenceHz: number, { information }: DecodedBroadcast): CommonGrid | null {
+  const wide = information.subCarrierSpacingCommon === 'scs30or120';
+  const lower = cell.spacingHz <= 30_000;
+  const spacingHz = cell.spacingHz >= 480_000 ? cell.spacingHz : lower ? (wide ? 30_000 : 15_000) : wide ? 120_000 : 60_000;
+  const unitHz = lower ? 15_000 : spacingHz;
+  if (information.kSsb > (lower ? 23 : 11)) return null;
+  return { edgeHz: referenceHz - 120 * cell.spacingHz - information.kSsb * unitHz, spacingHz };
+}
+
+function isCentred(placement: CarrierPlacement, centreHz: number | null): boolean {
+  return centreHz !== null && Math.abs(placement.referenceHz) < CENTRED_PPM * 1e-6 * centreHz;
+}
+
+/** Places on the common grid, half a block apart, that the RF reference may have where the edges do not say: about the middle of what is occupied. */
+function possibleCarriers(context: DetectionContext, { cell, commonGrid, inverted }: { cell: Cell; commonGrid: CommonGrid | null; inverted: boolean }): number[] {
+  const { occupied } = context;
+  if (!commonGrid || (!occupied && context.source.centreFrequencyHz === null)) return [];
+  // The edges were measured before an inverted spectrum was turned upright.
+  const middle = occupied ? ((occupied.lowHz + occupied.highHz) / 2) * (inverted ? -1 : 1) : 0;
+  const reach = occupied ? 0.1 * (occupied.highHz - occupied.lowHz) : 60 * cell.spacingHz;
+  const step = 6 * commonGrid.spacingHz;
+  const first = Math.ceil((middle - reach - commonGrid.edgeHz) / step);
+  const last = Math.floor((middle + reach - commonGrid.edgeHz) / step);
+  return Array.from({ length: Math.max(0, last - first + 1) }, (_, i) => commonGrid.edgeHz + (first + i) * step);
+}
