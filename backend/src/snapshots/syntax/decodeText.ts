@@ -80,10 +80,12 @@ function firstBadUtf8(body: Uint8Array): number {
     const middle = (good + bad) >> 1;
     if (prefixIsUtf8(body, middle)) good = middle; else bad = middle;
   }
-  // The sequence that breaks starts at most three bytes before the byte that breaks it.
-  let start = good;
-  while (start > 0 && good - start < 3 && (body[start] & 0xc0) === 0x80) start -= 1;
-  return prefixIsWhole(body, start) && body[start] !== undefined && (body[start] & 0xc0) !== 0x80 ? start : good;
+  // A sequence that breaks off was good until its next byte came: its first byte is the bad one.
+  for (let start = good - 1; start >= 0 && good - start <= 3; start -= 1) {
+    if ((body[start] & 0xc0) === 0xc0) return prefixIsWhole(body, good) ? good : start;
+    if (body[start] < 0x80) break;
+  }
+  return good;
 }
 
 function prefixIsUtf8(body: Uint8Array, end: number): boolean {

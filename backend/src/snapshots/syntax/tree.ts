@@ -11,7 +11,7 @@ export type TreeNode = Leaf | Branch | List;
 export interface StrayLine { readonly line: number; readonly text: string }
 export interface ParsedText { readonly root: TreeNode; readonly stray: readonly StrayLine[] }
 
-export const LIMITS = { bytes: 5 * 1024 * 1024, lineChars: 256 * 1024, depth: 100, values: 200_000 } as const;
+export const LIMITS = { bytes: 5 * 1024 * 1024, lineChars: 256 * 1024, depth: 100, values: 100_000 } as const;
 
 export const leaf = (text: string, line: number): Leaf => ({ kind: 'leaf', text, line });
 export const branch = (line: number): Branch => ({ kind: 'branch', entries: [], line });

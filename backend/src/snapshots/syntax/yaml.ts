@@ -7,7 +7,7 @@ import { Budget, branch, leaf, LIMITS, list, tooDeep, type Branch, type ParsedTe
  * followed within the value budget. Throws SnapshotError at the first fault, with its line.
  */
 export function parseYaml(text: string): ParsedText {
-  refuseDeepNesting(text);
+  refuseCostly(text);
   const counter = new LineCounter();
   const documents = parse(text, counter).filter((d) => d.contents !== null);
   const roots = documents.map((d) => new YamlWalk(counter).node(d.contents as Node, 0));
@@ -28,7 +28,6 @@ function parse(text: string, lineCounter: LineCounter): Document[] {
   return documents;
 }
 
-/** The library recurses over nested nodes; what slips past the first look ends as a range error. */
 function readDocuments(text: string, lineCounter: LineCounter): Document[] {
   try {
     const read = parseAllDocuments(text, { lineCounter, uniqueKeys: false, prettyErrors: false, strict: true, logLevel: 'silent' });
@@ -41,8 +40,24 @@ function readDocuments(text: string, lineCounter: LineCounter): Document[] {
 
 const firstSentence = (message: string): string => message.split('\n')[0].replace(/ at line.*$/, '').replace(/[.:]+$/, '').slice(0, 160);
 
-/** A cheap look before the library builds anything: open brackets, and block marks stacked on one line. */
-function refuseDeepNesting(text: string): void {
+/** What the library is not asked to read: it takes tens of microseconds a line, and recurses over nested nodes. */
+const YAML_LIMITS = { lines: 60_000, lineChars: 64 * 1024, references: 2000, stacked: 20 } as const;
+
+/** A cheap look before the library builds anything. */
+function refuseCostly(text: string): void {
+  refuseOpenBrackets(text);
+  const lines = text.split('\n');
+  if (lines.length > YAML_LIMITS.lines) {
+    throw new SnapshotError('too-many-values', `The YAML has ${lines.length} lines; ${YAML_LIMITS.lines} are read. Send the part with the radio settings.`, { line: YAML_LIMITS.lines });
+  }
+  const long = lines.findIndex((l) => l.length > YAML_LIMITS.lineChars);
+  if (long >= 0) throw new SnapshotError('line-too-long', `Line ${long + 1} has ${lines[long].length} characters; YAML is read with up to ${YAML_LIMITS.lineChars}. Break the line.`, { line: long + 1 });
+  refuseDeepBlocks(lines);
+  const references = text.match(/(?:^|[\s[{,])\*[\w-]/g)?.length ?? 0;
+  if (references > YAML_LIMITS.references) throw new SnapshotError('too-many-values', `The YAML has ${references} references (*name); ${YAML_LIMITS.references} are followed. Write the values out.`, { line: 1 });
+}
+
+function refuseOpenBrackets(text: string): void {
   let open = 0;
   let line = 1;
   for (let i = 0; i < text.length; i += 1) {
@@ -52,9 +67,23 @@ function refuseDeepNesting(text: string): void {
     else if (c === 0x5d || c === 0x7d) open = Math.max(0, open - 1);
     if (open > LIMITS.depth) throw tooDeep(line);
   }
-  const lines = text.split('\n');
-  const stacked = lines.findIndex((l) => /^\s*(?:[-?:] +){50}/.test(l) || /^ {4000}/.test(l));
-  if (stacked >= 0) throw tooDeep(stacked + 1);
+}
+
+/** Block marks stacked on one line, and indentation that steps in without end. */
+function refuseDeepBlocks(lines: readonly string[]): void {
+  const indents: number[] = [];
+  lines.forEach((l, i) => {
+    const indent = l.search(/\S/);
+    if (indent < 0) return;
+    while (indents.length > 0 && indents[indents.length - 1] >= indent) indents.pop();
+    indents.push(indent);
+    let stacked = 0;
+    for (let at = indent; /[-?:]/.test(l[at] ?? '') && l[at + 1] === ' '; stacked += 1) {
+      at += 1;
+      while (l[at] === ' ') at += 1;
+    }
+    if (indents.length > LIMITS.depth || stacked > YAML_LIMITS.stacked) throw tooDeep(i + 1);
+  });
 }
 
 class YamlWalk {
