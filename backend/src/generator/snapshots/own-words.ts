@@ -3,7 +3,7 @@ import { groupOf, inUnit, QUANTITY, type Declared, type DeclaredName } from './d
 import type { ConfigTree } from './syntax.js';
 
 /** Words that invented vendors use; one of each row is drawn a file. */
-const WORDS: Partial<Record<DeclaredName, readonly string[]>> = {
+const WORDS: Record<DeclaredName, readonly string[]> = {
   technology: ['airSystem', 'gen', 'modemKind', 'waveFamily'],
   subcarrierSpacing: ['toneGap', 'binPitch', 'carrierStep', 'sepTone'],
   cyclicPrefix: ['headCopy', 'prefixSort', 'guardKind', 'lead'],
@@ -13,6 +13,8 @@ const WORDS: Partial<Record<DeclaredName, readonly string[]>> = {
   carrierFrequency: ['mid', 'tuneTo', 'loPoint', 'middleFreq'],
   nrArfcn: ['chanNo', 'rasterNo'],
   earfcn: ['chanNo', 'rasterNo'],
+  pointAArfcn: ['anchorNo', 'originChan'],
+  offsetToCarrier: ['originGap', 'anchorLift'],
   resourceBlocks: ['groups', 'blockTally', 'lanes'],
   channelBandwidth: ['breadth', 'wide', 'extent'],
   band: ['range', 'bandNo'],
@@ -22,6 +24,8 @@ const WORDS: Partial<Record<DeclaredName, readonly string[]>> = {
   tddDownlinkSymbols: ['downPart', 'outTail'],
   tddUplinkSlots: ['upWhole', 'inSlots'],
   tddUplinkSymbols: ['upPart', 'inHead'],
+  tddSubframeAssignment: ['turnPlan', 'splitPlan'],
+  tddSpecialSubframe: ['gapPlan', 'bendPlan'],
   physicalCellId: ['ident', 'code', 'siteTag', 'cellNo'],
   ssbSubcarrierSpacing: ['beaconGap', 'syncPitch'],
   ssbArfcn: ['beaconNo', 'syncChan'],
@@ -62,7 +66,7 @@ export function ownWords(declared: Declared, random: Random): { tree: { readonly
   const sections = Object.fromEntries(Object.entries(SECTIONS).map(([group, names]) => [group, random.pick(names as readonly string[])]));
   for (const [name, value] of Object.entries(declared) as [DeclaredName, string | number | boolean][]) {
     const words = WORDS[name];
-    if (value === undefined || !words) continue;
+    if (value === undefined) continue;
     const section = sections[groupOf(name)];
     const said = saying(name, value, random);
     const key = `${random.pick(words)}${said.suffix}`;
