@@ -4,7 +4,7 @@ import react from '@vitejs/plugin-react';
 import { defaultClientConditions, defineConfig } from 'vite';
 
 const here = (path: string): string => fileURLToPath(new URL(path, import.meta.url));
-const server = `http://127.0.0.1:${process.env['PORT'] ?? '4310'}`;
+const server = `http://127.0.0.1:${process.env['PORT'] ?? '4180'}`;
 
 export default defineConfig({
   root: here('.'),

@@ -51,6 +51,9 @@ function quantity(value: number, { type, unit }: ParameterFacts): string {
   }
 }
 
+/** Names that the wire carries in small letters. */
+const TOKENS: Record<string, string> = { nr: 'NR', lte: 'LTE', wifi: 'Wi‑Fi', ofdm: 'OFDM', tdd: 'TDD', fdd: 'FDD' };
+
 function pairs(value: Record<string, unknown>): string {
   return Object.entries(value).map(([key, v]) => `${spaced(key).toLowerCase()} ${plain(v as SettingValue)}`).join(', ');
 }
@@ -59,7 +62,7 @@ function plain(value: SettingValue): string {
   if (typeof value === 'boolean') return value ? 'yes' : 'no';
   if (typeof value === 'number') return number(value);
   if (Array.isArray(value)) return value.map(plain).join(', ');
-  return typeof value === 'object' ? pairs(value) : value;
+  return typeof value === 'object' ? pairs(value) : TOKENS[value] ?? value;
 }
 
 /** A declared or measured value of a common parameter. */

@@ -12,7 +12,7 @@ import { useWidth } from './width.js';
 export interface Trace { curve: Curve; side?: 'a' | 'b' | 'air'; label?: string }
 interface LinePlotProps { title: string; traces: readonly Trace[]; height?: number; zeroBased?: boolean; xTicks?: number }
 
-const MARGIN = { left: 44, right: 10, top: 24, bottom: 36 };
+const MARGIN = { left: 44, right: 18, top: 24, bottom: 36 };
 
 function useScales(traces: readonly Trace[], box: Box, zeroBased: boolean) {
   return useMemo(() => {

@@ -1,7 +1,7 @@
 import type { DecodeResult } from '#shared/decode';
 import { Section } from '../../components/ui/section.js';
 import { airLabel, airText } from '../../lib/settings.js';
-import { percent } from '../../lib/units.js';
+import { probability } from '../../lib/units.js';
 
 /** Everything that the signal itself says, with how it is known; and what could not be told, with the reason. */
 export function Findings({ result }: { result: DecodeResult }) {
@@ -15,7 +15,7 @@ export function Findings({ result }: { result: DecodeResult }) {
           <thead><tr><th scope="col">Property</th><th scope="col" className="n">Value</th><th scope="col" className="n">Sure</th><th scope="col">How it is known</th></tr></thead>
           <tbody>
             {known.map(([name, v]) => (
-              <tr key={name}><td>{airLabel(name)}</td><td className="n fig">{airText(name, v.value)}</td><td className="n fig">{v.confidence === undefined ? '' : percent(v.confidence * 100, 0)}</td><td className="soft">{v.method ?? ''}</td></tr>
+              <tr key={name}><td>{airLabel(name)}</td><td className="n fig">{airText(name, v.value)}</td><td className="n fig">{v.confidence === undefined ? '' : `${probability(v.confidence)} %`}</td><td className="soft">{v.method ?? ''}</td></tr>
             ))}
             {unknown.map(([name, v]) => (
               <tr key={name}><td>{airLabel(name)}</td><td className="n soft">not determinable</td><td /><td className="soft">{v.reason ?? ''}</td></tr>

@@ -45,7 +45,7 @@ export function TieSheet({ rows, hints, air, files, note }: {
     <Section title="Tie sheet" aside={tally(ties)}
       end={<button type="button" className="text-button" aria-pressed={places} onClick={() => showPlaces(!places)}>{places ? 'Hide where each value stood' : 'Show where each value stood'}</button>}>
       <div className="sheet">
-        <table className="ties" role="table" aria-label="Tie sheet: what each side declares and what the air shows">
+        <table className={places ? 'ties with-places' : 'ties'} role="table" aria-label="Tie sheet: what each side declares and what the air shows">
           <Head />
           <tbody role="rowgroup">
             {shown.map(({ row, standing }) => <TieRow key={row.parameter} row={row} standing={standing} air={air} files={files} places={places} />)}

@@ -38,11 +38,20 @@ export function queue(items: readonly UploadItem[], action: QueueAction): readon
   }
 }
 
+/** A version 4 UUID; the browser's own generator of them exists on secure origins alone. */
+export function newKey(): string {
+  const bytes = crypto.getRandomValues(new Uint8Array(16));
+  bytes[6] = (bytes[6]! & 0x0f) | 0x40;
+  bytes[8] = (bytes[8]! & 0x3f) | 0x80;
+  const hex = [...bytes].map((b) => b.toString(16).padStart(2, '0')).join('');
+  return [hex.slice(0, 8), hex.slice(8, 12), hex.slice(12, 16), hex.slice(16, 20), hex.slice(20)].join('-');
+}
+
 const totalOf = (files: readonly File[]): number => files.reduce((sum, file) => sum + file.size, 0);
 
 function itemOf(name: string, files: readonly File[], state: UploadState): UploadItem {
   return {
-    key: crypto.randomUUID?.() ?? `${Date.now()}-${Math.random()}`, kind: kindOf(name), name, files, state,
+    key: newKey(), kind: kindOf(name), name, files, state,
     labels: {}, fields: {}, sentBytes: 0, totalBytes: totalOf(files), stored: null, error: null,
   };
 }

@@ -1,0 +1,3 @@
+import { reading } from '../../../lib/query.js';
+
+export const listLinks = (programme: string | undefined) => reading('listLinks', { query: programme ? { programme } : {} });

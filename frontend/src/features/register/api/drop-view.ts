@@ -1,0 +1,3 @@
+import { useChange } from '../../../lib/query.js';
+
+export const useDropView = () => useChange('dropView', (viewId: string) => ({ params: { viewId } }), ['listViews']);
