@@ -55,8 +55,9 @@ function readEntries(file: string): [string, Kept][] {
 export function adapterFor(store: FileStore): (model: string) => Adapter {
   return (model) => {
     const key = (id: string) => `${model}:${id}`;
+    const ownKeysWhere = (matches: (payload: AdapterPayload) => boolean) => store.keysWhere(matches).filter((one) => one.startsWith(`${model}:`));
     const findWhere = (matches: (payload: AdapterPayload) => boolean) => {
-      const found = store.keysWhere(matches).find((one) => one.startsWith(`${model}:`));
+      const [found] = ownKeysWhere(matches);
       return found ? store.get(found) : undefined;
     };
     return {
@@ -69,7 +70,8 @@ export function adapterFor(store: FileStore): (model: string) => Adapter {
         if (payload) store.set(key(id), { ...payload, consumed: Math.floor(Date.now() / 1000) }, remaining(payload));
       },
       destroy: async (id) => store.delete([key(id)]),
-      revokeByGrantId: async (grantId) => store.delete(store.keysWhere((payload) => payload.grantId === grantId)),
+      // A sign-in under way carries the grant of the session before it, and outlives it.
+      revokeByGrantId: async (grantId) => store.delete(ownKeysWhere((payload) => payload.grantId === grantId)),
     };
   };
 }

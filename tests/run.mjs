@@ -38,7 +38,7 @@ async function vitest(name, args, { env, scratch }) {
   const report = join(scratch, `${name.replace(/\W/g, '-')}.json`);
   const all = ['run', '--config', 'tests/vitest.config.ts', '--reporter=default', '--reporter=json', `--outputFile.json=${report}`, ...args];
   await runCommand(process.execPath, [program('vitest/vitest.mjs'), ...all], { cwd: CLONE, env, show: true, track });
-  return countReport(report);
+  return countReport(report, { whole: filters.length === 0 });
 }
 
 async function everything(context) {
@@ -62,7 +62,9 @@ async function run({ guard, scratch }) {
   const cluster = await openTestCluster({ guard, track, logFile: join(scratch, 'database.log') });
   try {
     const context = { env: { ...process.env, ...cluster.env, NODE_ENV: 'test' }, scratch };
-    return filters.length > 0 ? await vitest('Tests', filters, context) : await everything(context);
+    if (filters.length === 0) return await everything(context);
+    if (filters.some((filter) => filter.includes('browser'))) await ensureBuilt(['backend', 'frontend'], { track });
+    return await vitest('Tests', filters, context);
   } finally {
     await cluster.part.stop();
   }

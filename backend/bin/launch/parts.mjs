@@ -33,9 +33,11 @@ export async function startLocalServices(launcher, { ports, local, env, folder }
   await Promise.all([provider, mail]);
 }
 
-/** The worker and the server; resolves when /api/health says that all parts are up. */
+/**
+ * The worker (which also writes mail as the person who reads it, hence both addresses) and the server; resolves when /api/health says that all parts are up.
+ */
 export async function startProduct(launcher, { ports, env, folder, mode }) {
-  await startPart(launcher, 'worker', { folder, file: 'backend/src/worker', env: withDatabase(env, ['DATABASE_WORKER_URL']), mode });
+  await startPart(launcher, 'worker', { folder, file: 'backend/src/worker', env: withDatabase(env, ['DATABASE_WORKER_URL', 'DATABASE_URL']), mode });
   const url = `http://127.0.0.1:${ports.web}/api/health`;
   await startPart(launcher, 'server', { folder, file: 'backend/src/main', env: withDatabase(env, ['DATABASE_URL']), url, mode });
 }
