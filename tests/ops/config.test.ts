@@ -32,7 +32,7 @@ describe('the environment', () => {
   });
 
   it('asks of the worker only what the worker needs', () => {
-    expect(() => readConfig('worker', { DATABASE_WORKER_URL: 'postgres://a@b/c', STORAGE_DIR: '/srv', SMTP_URL: 'smtp://mail.example' })).not.toThrow();
+    expect(() => readConfig('worker', { DATABASE_URL: 'postgres://a@b/c', DATABASE_WORKER_URL: 'postgres://a@b/c', STORAGE_DIR: '/srv', SMTP_URL: 'smtp://mail.example' })).not.toThrow();
   });
 
   it('never repeats a secret in a message', () => {

@@ -58,7 +58,7 @@ export function settle(env = process.env) {
 
 function environment(env, { ports, local, publicUrl, secrets }) {
   const provider = local.provider && {
-    OIDC_ISSUER: `http://127.0.0.1:${ports.provider}`, OIDC_CLIENT_ID: 'crosstie', OIDC_CLIENT_SECRET: secrets.client, CROSSTIE_LOCAL_PROVIDER: 'true',
+    OIDC_ISSUER: `http://127.0.0.1:${ports.provider}`, OIDC_CLIENT_ID: 'crosstie', OIDC_CLIENT_SECRET: secrets.client,
   };
   const mail = local.mail && { SMTP_URL: `smtp://127.0.0.1:${ports.mailSmtp}` };
   return {
