@@ -3,7 +3,7 @@ import type { CaptureFacts } from '#shared/decode';
 import { detectNr } from '../nr/detect.js';
 import { surveyLte } from '../lte/detect.js';
 import { surveyWifi } from '../wifi/detect.js';
-import { estimateOfdm } from '../ofdm/estimate.js';
+import { estimateOfdm } from './blind.js';
 import { chooseWindows, readWindow } from '../level/windows.js';
 import { spectrumOf, type SpectrumResult } from '../spectrum/spectrum.js';
 import type { Window } from '../types.js';

@@ -1,0 +1,125 @@
+import type { CaptureFacts } from '#shared/decode';
+import { look, type Look, type LookOptions } from './look.js';
+import { from, type Recording } from './recording.js';
+import { suspectRate } from './rate-label.js';
+import { chooseWindows } from '../level/windows.js';
+import { estimateOfdm } from './blind.js';
+import type { SampleSource, Tried } from '../types.js';
+
+/** A label that had to be changed before the capture decoded. */
+export interface ChangedLabel {
+  readonly property: 'format' | 'rate';
+  readonly stated: string;
+  readonly found: string;
+  readonly ratio?: number;
+  readonly proof: string;
+  readonly confidence: number;
+}
+
+export interface Doubted {
+  readonly look: Look;
+  readonly labels: readonly ChangedLabel[];
+  readonly tried: readonly Tried[];
+}
+
+/**
+ * The label is tried, not believed: the plain reading first; where nothing is found, later places
+ * of a long capture, then other datatypes; and another rate where the prefixes' pattern speaks
+ * against the stated one.
+ */
+export function readThroughDoubt(recording: Recording, options: LookOptions): Doubted {
+  const plain = lookAround(recording.source, recording.facts, options);
+  const rate = otherRate(recording, plain, options);
+  if (rate) return rate;
+  if (plain.choice.technology !== null && !improbableLevels(plain)) return { look: plain, labels: [], tried: plain.tried };
+  return otherFormat(recording, plain, options) ?? { look: plain, labels: [], tried: [...plain.tried, ...formatsTried(recording)] };
+}
+
+const FURTHER_PLACES = 2;
+
+/** The start of the capture, then the strongest places further on. */
+function lookAround(source: SampleSource, facts: CaptureFacts, options: LookOptions): Look {
+  const first = look(source, facts, options);
+  if (first.choice.technology !== null) return first;
+  for (const start of chooseWindows(source).slice(1, 1 + FURTHER_PLACES)) {
+    const later = look(from(source, start), facts, options);
+    if (later.choice.technology !== null) return later;
+  }
+  return first;
+}
+
+/** Spacings of the standards, Hz, that a wrong rate label would hide. */
+const STANDARD_HZ = [15e3, 30e3, 60e3, 120e3, 312.5e3, 78.125e3];
+const RATE_RATIOS = [3 / 4, 4 / 3, 2 / 3, 3 / 2, 4 / 5, 5 / 4];
+
+function otherRate(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
+  const suspicion = suspectRate(plain.blind);
+  if (suspicion) return relabelled(recording, { plain, ...suspicion, sure: true }, options);
+  if (plain.choice.technology !== 'ofdm' || !plain.blind) return null;
+  const spacing = plain.blind.subcarrierSpacingHz;
+  const ratio = RATE_RATIOS.find((r) => STANDARD_HZ.some((hz) => Math.abs((spacing * r) / hz - 1) < 0.004));
+  if (ratio === undefined) return null;
+  return relabelled(recording, { plain, ratio, sure: false, proof: `at the stated rate the symbols would be those of ${(spacing / 1e3).toFixed(3)} kHz, which no standard has` }, options);
+}
+
+interface RateTrial { readonly plain: Look; readonly ratio: number; readonly proof: string; readonly sure: boolean }
+
+function relabelled(recording: Recording, trial: RateTrial, options: LookOptions): Doubted | null {
+  const stated = recording.source.sampleRateHz;
+  const sampleRateHz = stated * trial.ratio;
+  const facts = { ...recording.facts, sampleRateHz, durationS: recording.source.samples / sampleRateHz };
+  const found = lookAround(recording.under({ sampleRateHz }), facts, options);
+  const synchronised = found.choice.finding !== null;
+  const what = { what: `sample rate ${rate(sampleRateHz)}`, result: synchronised ? `${found.choice.technology} decodes` : 'no synchronisation found' };
+  if (!synchronised && !(trial.sure && found.choice.technology !== null)) return null;
+  const label: ChangedLabel = { property: 'rate', stated: rate(stated), found: rate(sampleRateHz), ratio: trial.ratio, proof: trial.proof, confidence: synchronised ? 0.96 : 0.85 };
+  return { look: found, labels: [label], tried: [...trial.plain.tried, what, ...found.tried] };
+}
+
+function rate(hz: number): string {
+  return `${Number((hz / 1e6).toFixed(6))} Msps`;
+}
+
+/** Milliseconds of each other reading that are tried before one is looked at in full. */
+const GLANCE_S = 0.006;
+const GLANCE_CONFIDENCE = 0.9;
+
+function otherFormat(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
+  const glances = recording.datatypes.map((datatype) => ({ datatype, ...glance(recording.under({ datatype }), recording.facts) })).filter((g) => g.confidence > GLANCE_CONFIDENCE)
+    .sort((x, y) => y.score - x.score);
+  for (const { datatype } of glances.slice(0, 2)) {
+    const source = recording.under({ datatype });
+    const found = lookAround(source, { ...recording.facts, datatype, samples: source.samples, durationS: source.samples / source.sampleRateHz }, options);
+    if (found.choice.technology === null || improbableLevels(found)) continue;
+    const stated = recording.facts.datatype ?? 'another format';
+    const label: ChangedLabel = { property: 'format', stated, found: datatype, proof: `read as ${stated} nothing repeats as a symbol does; read as ${datatype} it decodes`, confidence: found.choice.finding ? 0.97 : 0.93 };
+    return { look: found, labels: [label], tried: [...plain.tried, { what: `samples read as ${datatype}`, result: `${found.choice.technology} decodes` }, ...found.tried] };
+  }
+  return null;
+}
+
+function glance(source: SampleSource, facts: CaptureFacts): { confidence: number; score: number } {
+  const count = Math.min(source.samples, Math.round(GLANCE_S * source.sampleRateHz));
+  const iq = source.read(0, count);
+  const short: SampleSource = { ...source, samples: count, read: (start, n) => iq.slice(2 * start, 2 * (start + n)) };
+  const blind = estimateOfdm({ source: short, facts, occupied: null, blind: null });
+  return { confidence: blind?.confidence ?? 0, score: blind?.candidates[0]?.score ?? 0 };
+}
+
+function formatsTried(recording: Recording): Tried[] {
+  return recording.datatypes.length === 0 ? [] : [{ what: `samples read as ${recording.datatypes.join(', ')}`, result: 'nothing repeats as a symbol does' }];
+}
+
+/**
+ * Values that avoid zero: what a signed signal read as unsigned looks like, or the other way
+ * round. The fourth moment over the squared second is 3 for OFDM's normal values, 1 for two rails.
+ */
+function improbableLevels({ window }: Look): boolean {
+  let second = 0, fourth = 0;
+  for (const value of window.iq) {
+    second += value * value;
+    fourth += value ** 4;
+  }
+  const n = window.iq.length;
+  return n > 0 && second > 0 && (fourth / n) / (second / n) ** 2 < 1.4 && second / n > 0.3;
+}
