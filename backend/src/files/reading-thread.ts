@@ -1,5 +1,5 @@
 import { readFileSync } from 'node:fs';
-import { parentPort, workerData } from 'node:worker_threads';
+import { parentPort } from 'node:worker_threads';
 import { openFile } from '../captures/fileBytes.js';
 import { CaptureError } from '../captures/formats/captureError.js';
 import { readGlossary } from '../snapshots/glossary.js';
@@ -36,4 +36,4 @@ function readOrSay(request: ReadingRequest): Reading {
   }
 }
 
-parentPort?.postMessage(readOrSay((workerData as { request: ReadingRequest }).request));
+parentPort?.on('message', (request: ReadingRequest) => parentPort?.postMessage(readOrSay(request)));
