@@ -6,6 +6,8 @@ export class InverseTransform {
   private readonly cos: Float64Array;
   private readonly sin: Float64Array;
   private readonly factors: readonly number[];
+  /** Where each output of the last stage's input order comes from: mixed-radix digit reversal. */
+  private readonly order: Uint32Array;
   private readonly scratch: Float64Array;
 
   constructor(readonly size: number) {
@@ -16,29 +18,28 @@ export class InverseTransform {
       this.sin[k] = Math.sin((2 * Math.PI * k) / size);
     }
     this.factors = factorise(size);
+    this.order = digitReversal(size, this.factors);
     this.scratch = new Float64Array(2 * Math.max(...this.factors, 1));
   }
 
   /** `from` and `to` are different arrays of 2·size. */
   run(from: Float64Array, to: Float64Array): void {
-    this.pass({ from, to, at: 0, stride: 1, out: 0, length: this.size, level: 0 });
-  }
-
-  private pass(p: Pass): void {
-    if (p.length === 1) {
-      p.to[2 * p.out] = p.from[2 * p.at];
-      p.to[2 * p.out + 1] = p.from[2 * p.at + 1];
-      return;
+    const { order, size } = this;
+    for (let n = 0; n < size; n++) {
+      to[2 * n] = from[2 * order[n]];
+      to[2 * n + 1] = from[2 * order[n] + 1];
     }
-    const radix = this.factors[p.level];
-    const part = p.length / radix;
-    for (let r = 0; r < radix; r++) {
-      this.pass({ ...p, at: p.at + r * p.stride, stride: p.stride * radix, out: p.out + r * part, length: part, level: p.level + 1 });
+    let part = 1;
+    for (let level = this.factors.length - 1; level >= 0; level--) {
+      const radix = this.factors[level];
+      const length = part * radix;
+      for (let out = 0; out < size; out += length) {
+        if (radix === 4) this.butterflies4(to, out, part, size / length);
+        else if (radix === 2) this.butterflies2(to, out, part, size / length);
+        else this.butterflies(to, out, part, radix);
+      }
+      part = length;
     }
-    const step = this.size / p.length;
-    if (radix === 4) this.butterflies4(p.to, p.out, part, step);
-    else if (radix === 2) this.butterflies2(p.to, p.out, part, step);
-    else this.butterflies(p.to, p.out, part, radix);
   }
 
   private butterflies2(x: Float64Array, out: number, part: number, step: number): void {
@@ -112,14 +113,23 @@ export class InverseTransform {
   }
 }
 
-interface Pass {
-  readonly from: Float64Array;
-  readonly to: Float64Array;
-  readonly at: number;
-  readonly stride: number;
-  readonly out: number;
-  readonly length: number;
-  readonly level: number;
+/** Input index that stands at each place before the first stage; the first factor splits the input last. */
+function digitReversal(size: number, factors: readonly number[]): Uint32Array {
+  const order = new Uint32Array(size);
+  for (let n = 0; n < size; n++) {
+    let rest = n;
+    let length = size;
+    let stride = 1;
+    let index = 0;
+    for (const radix of factors) {
+      length /= radix;
+      index += Math.floor(rest / length) * stride;
+      rest %= length;
+      stride *= radix;
+    }
+    order[n] = index;
+  }
+  return order;
 }
 
 function factorise(size: number): number[] {

@@ -93,11 +93,13 @@ export function delay(iq: Float32Array, samples: number): Float32Array {
   for (let n = 0; n < count; n++) {
     let re = 0;
     let im = 0;
-    for (let k = 0; k < TAPS; k++) {
-      const from = n - whole - (k - TAPS / 2 + 1);
-      if (from < 0 || from >= count) continue;
-      re += taps[k] * iq[2 * from];
-      im += taps[k] * iq[2 * from + 1];
+    // Tap k meets sample n − whole − k + TAPS/2 − 1, where there is one.
+    const newest = n - whole + TAPS / 2 - 1;
+    const first = Math.max(0, newest - count + 1);
+    const last = Math.min(TAPS, newest + 1);
+    for (let k = first, at = 2 * (newest - first); k < last; k++, at -= 2) {
+      re += taps[k] * iq[at];
+      im += taps[k] * iq[at + 1];
     }
     out[2 * n] = re;
     out[2 * n + 1] = im;
