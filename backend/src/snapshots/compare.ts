@@ -22,28 +22,43 @@ export function compareSnapshots(a: SnapshotReading | null, b: SnapshotReading |
   const uplink = pairOf(a, b, 'uplink');
   const compared = inOrder([...commonRows(pair, uplink, options), ...directedRows(pair), ...directedRows(uplink)]);
   const shown = (name: ParameterName): ParameterName => shownUnder(name, compared);
+  const stated = { a: offStandard(pair.a, uplink.a).map((f) => underDifference(f, compared)), b: offStandard(pair.b, uplink.b).map((f) => underDifference(f, compared)) };
   const placed = (found: readonly NotPermitted[]): NotPermitted[] => found.map((f) => ({ ...f, parameter: shown(f.parameter) }));
-  const notPermitted = { a: placed(offStandard(pair.a, uplink.a)), b: placed(offStandard(pair.b, uplink.b)) };
+  const notPermitted = { a: placed(stated.a), b: placed(stated.b) };
   const causes = causesOf(compared, { pair, uplink, link: options.link });
   const contradictions = [pair, uplink].flatMap((p) => [...contradictionsIn(p.a, 'a'), ...contradictionsIn(p.b, 'b')])
     .map((c) => ({ ...c, parameters: [...new Set(c.parameters.map(shown))] }));
-  return { rows: withAir(withOffStandard(compared, notPermitted), options), causes, contradictions, notPermitted };
+  return { rows: withAir(withOffStandard(compared, { stated, shown }), options), causes, contradictions, notPermitted };
 }
 
-/** Rows under which a statement stands where its own words have none. */
-const STANDS_UNDER: Readonly<Partial<Record<ParameterName, ParameterName>>> = {
+/** The quantity's row, under which its other words stand too. */
+const QUANTITY: Readonly<Partial<Record<ParameterName, ParameterName>>> = {
   numerology: 'subcarrierSpacing', nrArfcn: 'carrierFrequency', earfcn: 'carrierFrequency', wifiChannel: 'carrierFrequency', pointAArfcn: 'carrierFrequency',
-  offsetToCarrier: 'carrierFrequency', ssbArfcn: 'ssbFrequency', gscn: 'ssbFrequency', guardInterval: 'cyclicPrefix', cyclicPrefix: 'guardInterval',
-  resourceBlocks: 'channelBandwidth', channelBandwidth: 'resourceBlocks',
+  offsetToCarrier: 'carrierFrequency', ssbArfcn: 'ssbFrequency', gscn: 'ssbFrequency',
+};
+/** Rows that stand in for one that was compared in other words. */
+const STAND_IN: Readonly<Partial<Record<ParameterName, ParameterName>>> = {
+  guardInterval: 'cyclicPrefix', cyclicPrefix: 'guardInterval', resourceBlocks: 'channelBandwidth', channelBandwidth: 'resourceBlocks',
 };
 
+/**
+ * A combination is off standard because one of its settings is wrong. Where the sides differ in one,
+ * that one is; under another technology every table is another.
+ */
+function underDifference(found: NotPermitted, rows: readonly ComparisonRow[]): NotPermitted {
+  const differs = (name: ParameterName): boolean => rows.some((r) => r.parameter === shownUnder(name, rows) && r.verdict === 'differ');
+  if (differs('technology')) return { ...found, parameter: 'technology', yieldsToDifference: true };
+  if (differs(found.parameter)) return found;
+  const culprit = found.together?.find(differs);
+  return culprit === undefined ? found : { ...found, parameter: culprit, yieldsToDifference: true };
+}
+
+/** The row under which a finding about a parameter stands. */
 function shownUnder(name: ParameterName, rows: readonly ComparisonRow[]): ParameterName {
-  const has = (n: string | undefined): boolean => n !== undefined && rows.some((r) => r.parameter === n);
-  if (has(name)) return name;
-  const upright = name.startsWith('uplink') ? (name[6].toLowerCase() + name.slice(7)) as ParameterName : name;
-  const other = STANDS_UNDER[upright];
-  const named = other === undefined || upright === name ? other : uplinkName(other);
-  return named !== undefined && has(named) ? named : name;
+  const isUplink = name.startsWith('uplink');
+  const base = isUplink ? (name[6].toLowerCase() + name.slice(7)) as ParameterName : name;
+  const directed = (n: ParameterName | undefined): ParameterName | undefined => (n !== undefined && isUplink ? uplinkName(n) : n);
+  return [directed(QUANTITY[base]), name, directed(STAND_IN[base])].find((n) => n !== undefined && rows.some((r) => r.parameter === n)) ?? name;
 }
 
 /** The rows alone, as the decode prints them. */
@@ -77,9 +92,9 @@ function inOrder(rows: readonly ComparisonRow[]): ComparisonRow[] {
 const offStandard = (view: View, uplink: View): NotPermitted[] => [...notPermittedIn(view), ...notPermittedIn(uplink).filter((f) => f.parameter.startsWith('uplink'))];
 
 /** A number off its raster that also differs from the other side's stays a difference, with both said. */
-function withOffStandard(rows: readonly ComparisonRow[], found: Comparison['notPermitted']): ComparisonRow[] {
+function withOffStandard(rows: readonly ComparisonRow[], { stated, shown }: { stated: Comparison['notPermitted']; shown: (name: ParameterName) => ParameterName }): ComparisonRow[] {
   return rows.map((r) => {
-    const here = (['a', 'b'] as const).flatMap((side) => found[side].filter((f) => f.parameter === r.parameter).map((f) => ({ side, ...f })));
+    const here = (['a', 'b'] as const).flatMap((side) => stated[side].filter((f) => f.parameter === r.parameter || shown(f.parameter) === r.parameter).map((f) => ({ side, ...f })));
     if (here.length === 0) return r;
     const yields = r.verdict === 'differ' && here.every((f) => f.yieldsToDifference === true);
     const note = [...here.map((f) => `side ${f.side.toUpperCase()}: ${f.note}`), ...(r.verdict === 'differ' ? ['the two sides differ'] : []), ...(r.note === null || r.note === undefined ? [] : [r.note])].join('; ');

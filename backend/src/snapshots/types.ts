@@ -74,8 +74,10 @@ export interface NotPermitted {
   readonly parameter: ParameterName;
   readonly clause: string;
   readonly note: string;
-  /** Channel numbers off their raster: where the two sides differ as well, the difference is the finding. */
+  /** Where the two sides differ here as well, the difference is the finding. */
   readonly yieldsToDifference?: boolean;
+  /** The other settings of a combination: where the sides differ in one of them, that difference is the finding. */
+  readonly together?: readonly ParameterName[];
 }
 
 /** Two statements of one snapshot that cannot both hold. */

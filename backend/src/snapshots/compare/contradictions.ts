@@ -10,8 +10,12 @@ import type { View } from './view.js';
 type Found = Omit<Contradiction, 'side'>;
 
 /** Statements of one snapshot that cannot both hold. */
-export const contradictionsIn = (view: View, side: Side): Contradiction[] =>
-  [...twice(view), ...transform(view), ...transformTooSmall(view), ...prefix(view), ...blockOnGrid(view)].map((c) => ({ side, ...c, parameters: c.parameters.map((p) => view.named(p)) }));
+export function contradictionsIn(view: View, side: Side): Contradiction[] {
+  const found = [...twice(view), ...transform(view), ...transformTooSmall(view), ...prefix(view), ...blockOnGrid(view)]
+    .map((c) => ({ side, ...c, parameters: c.parameters.map((p) => view.named(p)) }));
+  // What has no direction is looked at once.
+  return view.direction === 'downlink' ? found : found.filter((c) => c.parameters.some((p) => p.startsWith('uplink')));
+}
 
 /** One quantity stated twice, in words that do not say the same. */
 function twice(view: View): Found[] {

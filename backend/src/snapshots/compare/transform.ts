@@ -53,9 +53,8 @@ export function transformContradiction(view: View): { stated: number; implied: n
   return { stated, implied, culprit: ownCulprit(view, stated) };
 }
 
-/** A transform of a customary size beside an odd rate is right, and the other way round. */
+/** A power-of-two transform beside a rate that fits none (three quarters of one, say) speaks against the rate. */
 function ownCulprit(view: View, stated: number): ParameterName {
-  const rate = view.number('sampleRate') ?? 0;
-  const sizeForRate = rate / stated;
-  return Number.isInteger(Math.log2(sizeForRate)) || Number.isInteger(Math.log2(sizeForRate / 3)) ? 'fftSize' : 'sampleRate';
+  const octave = (size: number): boolean => Number.isInteger(Math.log2(size));
+  return octave(view.number('fftSize') ?? 0) && !octave((view.number('sampleRate') ?? 0) / stated) ? 'sampleRate' : 'fftSize';
 }

@@ -1,4 +1,4 @@
-import { parameterFacts } from '#shared/parameters';
+import { parameterFacts, type ParameterName } from '#shared/parameters';
 import type { NotPermitted } from '../types.js';
 import { spacingHz } from '../compare/derive.js';
 import type { View } from '../compare/view.js';
@@ -15,11 +15,14 @@ export function extendedPrefix(view: View): NotPermitted[] {
   const word = view.text('cyclicPrefix');
   if (view.technology !== 'nr' || spacing === null || word === null) return [];
   if (word === 'extended' && Math.abs(spacing - 60e3) > 1) {
-    return [{ parameter: view.named('cyclicPrefix'), clause: 'TS 38.211, table 4.2-1', note: `the extended prefix exists at 60 kHz only, not at ${kHz(spacing)}` }];
+    return [{ parameter: view.named('cyclicPrefix'), clause: 'TS 38.211, table 4.2-1', note: `the extended prefix exists at 60 kHz only, not at ${kHz(spacing)}`, together: [spacingName(view)] }];
   }
   if (word === 'normal' || word === 'extended') return [];
   return [{ parameter: view.named('cyclicPrefix'), clause: 'TS 38.211, table 4.2-1', note: `NR has the normal and the extended prefix, not "${word}"` }];
 }
+
+/** The row under which a side's spacing stands. */
+const spacingName = (view: View): ParameterName => view.named('subcarrierSpacing');
 
 /** Only a spacing that the file states, in whatever words: a rate over a size proves nothing here. */
 function statedSpacing(view: View): number | null {
@@ -37,13 +40,14 @@ export function dataSpacing(view: View): NotPermitted[] {
   if (view.technology !== 'nr' || spacing === null) return [];
   const parameter = view.named(view.has('subcarrierSpacing') ? 'subcarrierSpacing' : 'numerology');
   const clause = 'TS 38.104, table 5.3.5-1';
+  const here = { parameter, clause, yieldsToDifference: true, together: [view.named('band'), view.named('carrierFrequency')] };
   if (numerologyOf(spacing) === null) return [{ parameter, clause: 'TS 38.211, table 4.2-1', note: `NR has no spacing of ${kHz(spacing)}` }];
-  if (spacing === 240e3) return [{ parameter, clause, note: '240 kHz is a spacing of the synchronisation block only' }];
+  if (spacing === 240e3) return [{ ...here, note: '240 kHz is a spacing of the synchronisation block only' }];
   const hz = someFrequencyHz(view);
   const range = hz === null ? null : frequencyRange(hz);
-  if (range !== null && !RANGES[range].includes(spacing)) return [{ parameter, clause, note: `${kHz(spacing)} is not a spacing for data in ${range}` }];
+  if (range !== null && !RANGES[range].includes(spacing)) return [{ ...here, note: `${kHz(spacing)} is not a spacing for data in ${range}` }];
   const band = view.number('band');
-  if (band !== null && spacing === 60e3 && WITHOUT_60_KHZ.has(band)) return [{ parameter, clause, note: `band n${band} has no channel of 60 kHz` }];
+  if (band !== null && spacing === 60e3 && WITHOUT_60_KHZ.has(band)) return [{ ...here, note: `band n${band} has no channel of 60 kHz` }];
   return [];
 }
 
@@ -78,7 +82,7 @@ export function wifiGuard(view: View): NotPermitted[] {
   if (word === 'extended') return [{ parameter: 'cyclicPrefix', clause, note: 'Wi-Fi has no extended prefix' }];
   if (guard === null || spacing === null || !isWifiSpacing(spacing)) return [];
   const known = ['short', 'normal', 'double', 'quadruple'].some((w) => sameDuration(wifiPrefixS(w, spacing) ?? -1, guard));
-  return known ? [] : [{ parameter: 'guardInterval', clause, note: `at ${kHz(spacing)} no Wi-Fi PHY has a guard interval of ${Number((guard * 1e6).toFixed(3))} us` }];
+  return known ? [] : [{ parameter: 'guardInterval', clause, note: `at ${kHz(spacing)} no Wi-Fi PHY has a guard interval of ${Number((guard * 1e6).toFixed(3))} us`, together: [spacingName(view)] }];
 }
 
 const SSB_SPACINGS = { FR1: [15e3, 30e3], 'FR2-1': [120e3, 240e3], 'FR2-2': [120e3, 480e3, 960e3] } as const satisfies Record<string, readonly number[]>;
@@ -92,8 +96,8 @@ export function ssbSpacing(view: View): NotPermitted[] {
   const hz = someFrequencyHz(view);
   const range = hz === null ? null : frequencyRange(hz);
   const allowed: readonly number[] = range === null ? [15e3, 30e3, 120e3, 240e3, 480e3, 960e3] : SSB_SPACINGS[range];
-  if (!allowed.includes(spacing)) return [{ parameter: 'ssbSubcarrierSpacing', clause: parameterFacts('ssbSubcarrierSpacing')?.clause ?? clause, note: `${kHz(spacing)} is not a spacing of the synchronisation block${range === null ? '' : ` in ${range}`}` }];
+  if (!allowed.includes(spacing)) return [{ parameter: 'ssbSubcarrierSpacing', clause: parameterFacts('ssbSubcarrierSpacing')?.clause ?? clause, note: `${kHz(spacing)} is not a spacing of the synchronisation block${range === null ? '' : ` in ${range}`}`, yieldsToDifference: true }];
   const band = view.number('band');
-  if (band !== null && spacing === 15e3 && THIRTY_ONLY.includes(band)) return [{ parameter: 'ssbSubcarrierSpacing', clause, note: `band n${band} has blocks of 30 kHz only` }];
+  if (band !== null && spacing === 15e3 && THIRTY_ONLY.includes(band)) return [{ parameter: 'ssbSubcarrierSpacing', clause, note: `band n${band} has blocks of 30 kHz only`, yieldsToDifference: true, together: ['band'] }];
   return [];
 }

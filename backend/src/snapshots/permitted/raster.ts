@@ -17,7 +17,7 @@ export function channelNumber(view: View): NotPermitted[] {
   const arfcn = view.number('nrArfcn');
   const band = bandOf(view);
   if (outside.length > 0 || arfcn === null || band === null || view.technology !== 'nr' || onChannelRaster(band, arfcn)) return outside;
-  return [{ parameter: view.named('nrArfcn'), clause: CHANNEL_CLAUSE, note: `${arfcn} is not on the channel raster of band n${band.band}`, yieldsToDifference: true }];
+  return [{ parameter: view.named('nrArfcn'), clause: CHANNEL_CLAUSE, note: `${arfcn} is not on the channel raster of band n${band.band}`, yieldsToDifference: true, together: [view.named('band')] }];
 }
 
 const bandOf = (view: View): ReturnType<typeof nrBand> => {
@@ -32,7 +32,7 @@ export function carrierInBand(view: View): NotPermitted[] {
   if (band === null || carrier === null || view.technology !== 'nr' || carrier.name === 'nrArfcn') return [];
   const inside = [band.downlinkHz, band.uplinkHz].some((span) => span !== null && carrier.value >= span[0] && carrier.value <= span[1]);
   if (inside) return [];
-  return [{ parameter: view.named('carrierFrequency'), clause: 'TS 38.104, table 5.2-1', note: `${carrier.value / 1e6} MHz lies outside band n${band.band}`, yieldsToDifference: true }];
+  return [{ parameter: view.named('carrierFrequency'), clause: 'TS 38.104, table 5.2-1', note: `${carrier.value / 1e6} MHz lies outside band n${band.band}`, yieldsToDifference: true, together: [view.named('band')] }];
 }
 
 /** Synchronisation channel numbers: known at all, and among those of the band. */
@@ -49,7 +49,7 @@ export function synchronisationChannel(view: View): NotPermitted[] {
   const rasters = band.ssb.filter((r) => spacing === null || r.spacingHz === spacing);
   // A block of a spacing that the band's table lacks has the band's other raster.
   if ((rasters.length === 0 ? band.ssb : rasters).some((r) => onSsbRaster(r, gscn))) return [];
-  return [{ parameter, clause: 'TS 38.104, table 5.4.3.3-1', note: `${gscn} is no synchronisation channel of band n${band.band}`, yieldsToDifference: true }];
+  return [{ parameter, clause: 'TS 38.104, table 5.4.3.3-1', note: `${gscn} is no synchronisation channel of band n${band.band}`, yieldsToDifference: true, together: [view.named('band')] }];
 }
 
 /** A block within its band. Blocks off the synchronisation raster are allowed on secondary cells. */
@@ -57,7 +57,7 @@ export function blockInBand(view: View): NotPermitted[] {
   const band = bandOf(view);
   const hz = nrArfcnToHz(view.number('ssbArfcn') ?? -1);
   if (band?.downlinkHz == null || hz === null || (hz >= band.downlinkHz[0] && hz <= band.downlinkHz[1])) return [];
-  return [{ parameter: 'ssbArfcn', clause: 'TS 38.104, table 5.4.3.3-1', note: `the block at ${hz / 1e6} MHz lies outside band n${band.band}`, yieldsToDifference: true }];
+  return [{ parameter: 'ssbArfcn', clause: 'TS 38.104, table 5.4.3.3-1', note: `the block at ${hz / 1e6} MHz lies outside band n${band.band}`, yieldsToDifference: true, together: [view.named('band')] }];
 }
 
 /** LTE channel numbers of the stated band (TS 36.104 table 5.7.3-1). */
@@ -66,7 +66,7 @@ export function lteChannel(view: View): NotPermitted[] {
   const spans = view.technology === 'lte' && band !== null ? lteBand(band) : null;
   if (earfcn === null || spans === null) return [];
   const inside = [spans.downlink, spans.uplink].some((s) => s !== null && earfcn >= s[0] && earfcn <= s[1]);
-  return inside ? [] : [{ parameter: view.named('earfcn'), clause: 'TS 36.104, table 5.7.3-1', note: `${earfcn} is no channel of band ${band}`, yieldsToDifference: true }];
+  return inside ? [] : [{ parameter: view.named('earfcn'), clause: 'TS 36.104, table 5.7.3-1', note: `${earfcn} is no channel of band ${band}`, yieldsToDifference: true, together: [view.named('band')] }];
 }
 
 /** The band's duplex mode (TS 38.104 table 5.2-1). */

@@ -1,3 +1,4 @@
+import type { ParameterName } from '#shared/parameters';
 import type { NotPermitted } from '../types.js';
 import { patternOf, referenceSpacing, type TddPattern } from '../compare/tdd.js';
 import type { View } from '../compare/view.js';
@@ -6,13 +7,17 @@ const CLAUSE = 'TS 38.213, clause 11.1';
 /** Periods with the finest slots that some of them need, ms. */
 const PERIODS_MS = [0.5, 0.625, 1, 1.25, 2, 2.5, 3, 4, 5, 10];
 
+const FIELDS = ['Periodicity', 'DownlinkSlots', 'DownlinkSymbols', 'UplinkSlots', 'UplinkSymbols'] as const;
+
 /** Slots and symbols of a pattern must fit its period, and the period must hold whole slots. */
 export function tddPattern(view: View): NotPermitted[] {
   const spacing = referenceSpacing(view);
   if (view.technology !== 'nr') return [];
   return (['', 'Second'] as const).flatMap((order) => {
     const pattern = patternOf(view, order);
-    return pattern === null ? [] : fits(pattern, { order, spacing });
+    const found = pattern === null ? [] : fits(pattern, { order, spacing });
+    // A pattern is one setting of many fields, counted in slots of the spacing.
+    return found.map((f) => ({ ...f, yieldsToDifference: true, together: [...FIELDS.map((field): ParameterName => `tdd${order}${field}`), 'subcarrierSpacing' as const] }));
   });
 }
 

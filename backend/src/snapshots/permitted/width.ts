@@ -35,10 +35,10 @@ function fit(view: View, clause: string): NotPermitted[] {
     const other = otherTable(table);
     // Where the frequency is not stated the range is a guess: only what neither range has is off standard.
     if (other !== null && maxResourceBlocks(other, spacing, bandwidth) !== null) return [];
-    return [{ parameter: view.named('channelBandwidth'), clause, note: `there is no channel of ${MHz(bandwidth)} at ${spacing / 1e3} kHz` }];
+    return [{ parameter: view.named('channelBandwidth'), clause, note: `there is no channel of ${MHz(bandwidth)} at ${spacing / 1e3} kHz`, together: [view.named('subcarrierSpacing')] }];
   }
   if (blocks === null || blocks <= most) return [];
-  return [{ parameter: view.named('resourceBlocks'), clause, note: `${blocks} blocks do not fit ${MHz(bandwidth)} at ${spacing / 1e3} kHz, which holds ${most}` }];
+  return [{ parameter: view.named('resourceBlocks'), clause, note: `${blocks} blocks do not fit ${MHz(bandwidth)} at ${spacing / 1e3} kHz, which holds ${most}`, together: [view.named('channelBandwidth'), view.named('subcarrierSpacing')] }];
 }
 
 const otherTable = (table: 'FR1' | 'FR2' | 'lte'): 'FR1' | 'FR2' | null => (table === 'lte' ? null : table === 'FR1' ? 'FR2' : 'FR1');

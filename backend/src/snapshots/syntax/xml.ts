@@ -27,7 +27,7 @@ class XmlReading {
   read(text: string): void {
     const { parser } = this;
     parser.on('doctype', () => this.refuse('doctype', 'a document type (DOCTYPE) stands here, and none is read, because entities can be declared in it. Take it out.'));
-    parser.on('error', (fault) => this.refuse('syntax', `${fault.message.replace(/^\d+:\d+:\s*/, '').replace(/\.$/, '')}. Correct the XML there.`));
+    parser.on('error', (fault) => this.refuse('syntax', `${fault.message.replace(/^\d+:\d+:\s*/, '').replace('undefined entity', 'an entity that is not declared stands here').replace(/\.$/, '')}. Correct the XML there.`));
     parser.on('opentag', (tag) => this.openTag(tag.name, tag.attributes as Record<string, string>, parser.line));
     parser.on('closetag', () => this.closeTag());
     parser.on('text', (piece) => this.addText(piece));

@@ -49,7 +49,7 @@ class Gathering {
     if (node.kind === 'branch') {
       this.out.branches.push(visit);
       this.noteDuplicates(visit);
-      for (const entry of node.entries) this.entry({ steps: [...steps, step(entry.key)], node: entry.node, line: entry.line });
+      for (const entry of node.entries) this.entry({ steps: [...steps, ...stepsOf(entry.key)], node: entry.node, line: entry.line });
     } else if (node.kind === 'list') {
       node.items.forEach((item, place) => this.walk({ steps: atPlace(steps, place), node: item, line: item.line }));
     } else this.miss(visit);
@@ -129,6 +129,9 @@ class Gathering {
     }
   }
 }
+
+/** A dotted key is a path of its own. */
+const stepsOf = (key: string): Step[] => (/^[\w-]+(?:\.[A-Za-z_][\w-]*)+$/.test(key) ? key.split('.').map((k) => step(k)) : [step(key)]);
 
 const isDelay = (steps: readonly Step[]): boolean => /^(t[12a]|tcp)/.test(steps.at(-1)?.compact ?? '');
 

@@ -45,14 +45,17 @@ function convert(facts: ParameterFacts, digits: string, unit: Unit): Interpreted
   if (facts.type === 'ts' && unit.dimension === 'samples') return read(scaleDecimal(digits, 0), 'in samples');
   if (unit.dimension !== expects) return null;
   if (facts.type === 'delay') return read(unit.factor === undefined ? scaleDecimal(digits, unit.exponent + 9) : toSi(digits, unit) * 1e9);
-  if (facts.type === 'tc') return read(near(toSi(digits, unit) / TC_S));
+  if (facts.type === 'tc') return read(offsetNear(toSi(digits, unit) / TC_S));
   if (facts.type === 'ts') return read(near(toSi(digits, unit) / TS_S));
   if (facts.type === 'count') return whole(facts, scaleDecimal(digits, 0));
   return read(toSi(digits, unit));
 }
 
 /** Durations of a whole number of time units are written rounded ("13.02 us"). */
-const near = (units: number): number => (Math.abs(units - Math.round(units)) < 0.002 * Math.max(1, units) ? Math.round(units) : units);
+const near = (units: number): number => (Math.abs(units - Math.round(units)) < 0.02 ? Math.round(units) : units);
+
+/** Timing-advance offsets (TS 38.133 table 7.1.2-2): 13.02 us means 25600 T_c, not 25598. */
+const offsetNear = (units: number): number => [0, 13_792, 25_600, 39_936].find((o) => Math.abs(o - units) <= 0.001 * o) ?? near(units);
 
 const whole = (facts: ParameterFacts, value: number): Interpreted =>
   Number.isInteger(value) ? read(value) : refuse(`${facts.label} must be a whole number, not ${value}`);
