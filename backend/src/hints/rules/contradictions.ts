@@ -34,13 +34,21 @@ function againstAir(row: ComparisonRow, evidence: Evidence): Finding | null {
 
 /** Rate over transform size gives a spacing that the air does not show, on the sides that declare both. */
 function impliedAgainstAir(evidence: Evidence): Finding[] {
-  const row = evidence.comparison.rows.find((r) => r.parameter === 'fftSize');
+  const { rows } = evidence.comparison;
   const measurement = measure('subcarrierSpacing', evidence);
-  if (!row || !measurement || row.verdict === 'differ') return [];
+  if (!measurement || rows.some((r) => ['fftSize', 'sampleRate'].includes(r.parameter) && r.verdict === 'differ')) return [];
   const sides = (['a', 'b'] as const).filter((side) => impliedSpacing(evidence, side) !== null);
   if (sides.length === 0) return [];
-  const verdict = judgeContradiction(impliedSpacing(evidence, sides[0]!), measurement, { sides, transmitter: evidence.transmitter });
+  const implied = impliedSpacing(evidence, sides[0]!)!;
+  const verdict = judgeContradiction(implied, measurement, { sides, transmitter: evidence.transmitter });
   if (!verdict) return [];
-  const basis = { ...basisOf(row, evidence, { pattern: verdict.pattern, measurement }), airParameter: 'subcarrierSpacing' };
-  return [{ code: 'fft-size', side: verdict.side, probability: verdict.probability, basis, consequences: [] }];
+  const culprit = culpritOf(implied / Number(measurement.value));
+  const basis = { ...basisOf(rows.find((r) => r.parameter === culprit)!, evidence, { pattern: verdict.pattern, measurement }), airParameter: 'subcarrierSpacing' };
+  return [{ code: culprit === 'fftSize' ? 'fft-size' : 'sample-rate', side: verdict.side, probability: verdict.probability, basis, consequences: [] }];
+}
+
+/** Transforms change by powers of two, clocks by other ratios (three quarters above all; common practice). */
+function culpritOf(ratio: number): 'fftSize' | 'sampleRate' {
+  const octaves = Math.log2(ratio);
+  return Math.abs(octaves - Math.round(octaves)) < 0.02 ? 'fftSize' : 'sampleRate';
 }

@@ -30,6 +30,8 @@ function fit(view: View, clause: string): NotPermitted[] {
   const table = bandwidthTable(view);
   const [bandwidth, blocks, spacing] = [view.number('channelBandwidth'), view.number('resourceBlocks'), spacingHz(view)];
   if (table === null || bandwidth === null || spacing === null) return [];
+  // A spacing that no table has comes from a clock or a transform at odds: that is the finding, not the channel.
+  if (!Number.isInteger(Math.log2(spacing / 15e3))) return [];
   const most = maxResourceBlocks(table, spacing, bandwidth);
   if (most === null) {
     const other = otherTable(table);
