@@ -3,6 +3,7 @@ import { z } from 'zod';
 import { Database } from '../db/database.js';
 import { migrate } from '../db/migrate.js';
 import { refuseOtherVersion, UnsafeDatabase } from '../db/safe-role.js';
+import { seedDemo } from '../demo/seed-demo.js';
 
 /** The database before a start: migrated by its owner, or found to be of this version. */
 const settings = z.object({
@@ -10,6 +11,8 @@ const settings = z.object({
   DATABASE_OWNER_URL: z.string().optional(),
   OIDC_ISSUER: z.string(),
   CROSSTIE_EARLIER_ISSUER: z.string().default(''),
+  CROSSTIE_SEED: z.enum(['true', 'false']).default('false'),
+  STORAGE_DIR: z.string().optional(),
 }).parse(process.env);
 
 function say(line: string): void {
@@ -43,12 +46,19 @@ async function checkVersion(): Promise<void> {
   }
 }
 
+/** The captures are made as they are stored, which takes a while: each issue is counted. */
+async function seed(ownerUrl: string, storageDir: string): Promise<void> {
+  const done = await seedDemo({ ownerUrl, storageDir, issuer: settings.OIDC_ISSUER, onProgress: (count, of) => count % 5 === 0 && say(`Making the demo: ${count} of ${of} issues`) });
+  if (done) say('Filled the database with the demo');
+}
+
 async function prepare(): Promise<void> {
   const { DATABASE_OWNER_URL: ownerUrl, CROSSTIE_EARLIER_ISSUER: earlier, OIDC_ISSUER: issuer } = settings;
   if (ownerUrl) {
     const applied = await migrate(ownerUrl);
     if (applied.length > 0) say(`Migrated the database to ${applied.at(-1)}`);
     if (earlier && earlier !== issuer) await moveIssuer(ownerUrl, earlier, issuer);
+    if (settings.CROSSTIE_SEED === 'true' && settings.STORAGE_DIR) await seed(ownerUrl, settings.STORAGE_DIR);
   }
   await checkVersion();
 }
