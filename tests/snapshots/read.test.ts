@@ -151,6 +151,13 @@ describe('the words of TS 38.331', () => {
     const cell = JSON.parse(servingCell({ spacing: 'kHz60', prefix: 'extended' })) as object;
     expect(values(read(JSON.stringify({ spCellConfigDedicated: dedicated, ...cell })))).toMatchObject({ subcarrierSpacing: 60000, cyclicPrefix: 'extended' });
   });
+  it('reads flattened names and places in an enumeration, but guesses at none', () => {
+    const reading = read('cell = {\n dl_absoluteFrequencyPointA = 640008;\n dl_carrierBandwidth = 106;\n ul_carrierBandwidth = 51;\n subcarrierSpacing = 1;\n dl_UL_TransmissionPeriodicity = 6;\n ssb_periodicityServingCell = 2;\n dmrs_TypeA_Position = 0;\n};\n');
+    expect(values(reading)).toMatchObject({ pointAArfcn: 640008, resourceBlocks: 106, uplinkResourceBlocks: 51, subcarrierSpacing: 30000, tddPeriodicity: 0.005, ssbPeriodicity: 0.02, dmrsTypeAPosition: 'pos2' });
+    const open = read('dl-UL-TransmissionPeriodicity: 5\n');
+    expect(values(open)).toEqual({});
+    expect(open.problems[0].message).toContain('5 ms or the enumeration');
+  });
   it('lets the extended period override the one of the first release', () => {
     const pattern1 = { 'dl-UL-TransmissionPeriodicity': 'ms5', 'dl-UL-TransmissionPeriodicity-v1530': 'ms3', nrofDownlinkSlots: 3, nrofDownlinkSymbols: 0, nrofUplinkSlots: 2, nrofUplinkSymbols: 0 };
     expect(values(read(servingCell({ extra: { 'tdd-UL-DL-ConfigurationCommon': { referenceSubcarrierSpacing: 'kHz30', pattern1 } } })))['tddPeriodicity']).toBe(0.003);

@@ -31,6 +31,7 @@ const LINKS: readonly Link[] = [
   ...links(['nrArfcn', 'earfcn', 'wifiChannel'], ['carrierFrequency']),
   ...links(['carrierFrequency'], ['subcarrierSpacing', 'channelBandwidth', 'resourceBlocks'], carrierFollows),
   ...links(['pointAArfcn', 'offsetToCarrier'], ['carrierFrequency']),
+  ...links(['pointAArfcn'], ['subcarrierSpacing', 'channelBandwidth', 'resourceBlocks'], sameCarrier),
   ...links(['offsetToCarrier'], ['subcarrierSpacing', 'pointAArfcn']),
   ...links(['band'], ['technology', 'carrierFrequency']),
   ...links(['duplexMode'], ['band']),
@@ -117,6 +118,11 @@ function carrierFollows({ a, b }: Pair): boolean {
 const samePointA = (a: View, b: View): boolean =>
   carrierStatements(a)[0]?.name === 'pointAArfcn' && carrierStatements(b)[0]?.name === 'pointAArfcn'
   && a.number('pointAArfcn') === b.number('pointAArfcn') && a.number('offsetToCarrier') === b.number('offsetToCarrier');
+
+/** Around one centre, other blocks or another spacing begin elsewhere. */
+function sameCarrier({ a, b }: Pair): boolean {
+  return Math.abs((carrierStatements(a)[0]?.value ?? Number.NaN) - (carrierStatements(b)[0]?.value ?? Number.NaN)) <= 500;
+}
 
 function blockMovesWithCarrier({ a, b }: Pair): boolean {
   const shift = (name: 'carrierFrequency' | 'ssb'): number => {

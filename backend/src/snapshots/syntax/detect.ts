@@ -31,6 +31,7 @@ export function detectSyntax(text: string): Syntax {
   const start = text.trimStart();
   if (start[0] === '<') return 'xml';
   const body = withoutComments(start);
+  if (/^(?:---|%YAML)(?:\s|$)/.test(body)) return 'yaml';
   if (body[0] === '{') return bracedSyntax(body.slice(0, 4000));
   if (body[0] === '[' && !/^\[[^\]\n"{[]*\][ \t]*(?:[#;].*)?(?:\n|$)/.test(body.slice(0, 4000))) return 'json';
   return lineSyntax(body);

@@ -7,6 +7,7 @@ import { pathText, step, type Step } from './names.js';
 import { plainName } from './plain.js';
 import { isRrcStructure, rrcField, rrcTechnology } from './rrc.js';
 import { isElsewhere, isUplink } from './scope.js';
+import { byIndex } from './enumerations.js';
 import { identifierList, interpret } from './values.js';
 import { valueTexts } from './nodeValue.js';
 
@@ -105,6 +106,8 @@ class Gathering {
     if (untranslated >= 0) return { ok: false, reason: `the glossary has no word for "${texts[untranslated]}"` };
     const words = translated as string[];
     if (parameterFacts(meaning.parameter)?.type === 'list') return identifierList(words.flatMap((w) => w.split(/[\s,;]+/)).filter((w) => w !== ''));
+    const index = meaning.vocabulary === 'rrc' && words.length === 1 ? byIndex(meaning.parameter, words[0]) : null;
+    if (index !== null) return index;
     if (words.length === 1) return interpret(meaning.parameter, words[0], meaning.unit);
     const each = words.map((w) => interpret(meaning.parameter, w, meaning.unit));
     const bad = each.find((e) => !e.ok);

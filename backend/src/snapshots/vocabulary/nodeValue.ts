@@ -25,8 +25,8 @@ function withUnit(node: TreeNode): string[] | null {
     return found?.kind === 'leaf' ? found.text : null;
   };
   const value = text('value');
-  if (value === null || node.entries.length > 2) return null;
   const unit = text('unit') ?? text('units');
+  if (value === null || node.entries.length > (unit === null ? 1 : 2)) return null;
   return unit === null ? [value] : [`${value} ${unit}`];
 }
 

@@ -68,6 +68,9 @@ function withoutUnit(parameter: ParameterName, facts: ParameterFacts, digits: st
   const plain = scaleDecimal(digits, 0);
   if (Number.isNaN(plain)) return refuse(`"${digits}" is no number`);
   if (facts.type === 'count') return whole(facts, plain);
+  if (facts.type === 'frequency' && parameter.toLowerCase().includes('spacing') && Number.isInteger(plain) && plain >= 0 && plain <= 6) {
+    return read(15e3 * 2 ** plain, `no spacing is ${plain} Hz; read as numerology ${plain}`);
+  }
   const assumed = plain > 0 ? customaryUnit(parameter, facts.type, plain) : null;
   if (assumed === null) return read(plain);
   return read(scaleDecimal(digits, assumed[1]), `no unit stands there; read as ${assumed[0]}`);

@@ -7,7 +7,10 @@ export interface PlainName { readonly parameter: ParameterName; readonly unit: s
 const NAMES: ReadonlyMap<string, ParameterName> = new Map([
   ...PARAMETER_NAMES.filter((n) => !n.startsWith('uplink')).map((n): [string, ParameterName] => [compact(n), n]),
   ['scs', 'subcarrierSpacing'], ['pci', 'physicalCellId'], ['ssbscs', 'ssbSubcarrierSpacing'], ['channelnumber', 'wifiChannel'],
-  ['tddperiod', 'tddPeriodicity'], ['ssbperiod', 'ssbPeriodicity'], ['eaxcid', 'eaxcIds'], ['ntaoffset', 'nTaOffset'],
+  ['commonscs', 'subcarrierSpacing'], ['dlarfcn', 'nrArfcn'], ['tddperiod', 'tddPeriodicity'],
+  ...PARAMETER_NAMES.filter((n) => n.startsWith('tdd')).map((n): [string, ParameterName] => [`tddpattern${compact(n.slice(3))}`, n]),
+  ...PARAMETER_NAMES.filter((n) => /^tdd(Down|Up)link/.test(n)).map((n): [string, ParameterName] => [compact(n.replace('Downlink', 'Dl').replace('Uplink', 'Ul')), n]),
+  ['ssbperiod', 'ssbPeriodicity'], ['eaxcid', 'eaxcIds'], ['ntaoffset', 'nTaOffset'],
 ]);
 
 /** `ul`, `uplink`, `dl` or `downlink` before the name itself. */

@@ -1,4 +1,4 @@
-import type { ParameterName } from '#shared/parameters';
+import { uplinkName, type ParameterName } from '#shared/parameters';
 import type { Step } from './names.js';
 
 /** A field found by its name and place. The lower the rank, the more it speaks of the carrier's own data. */
@@ -58,8 +58,15 @@ export function rrcField(steps: readonly Step[]): NamedField | null {
   if (key in PATTERN || key === 'dlultransmissionperiodicityv1530') return patternField(key, parents);
   if (key === 'subcarrierspacing' || key === 'cyclicprefix') return partField(key, parents);
   const rank = parents.some((p) => /channelbwperscslist/.test(p.compact)) ? 3 : 0;
-  const found = FIELDS[key];
+  const found = FIELDS[key] ?? flattened(key);
   return found === undefined ? null : { ...found, rank: found.rank + rank + partRank(parents) };
+}
+
+/** Files that flatten the structure put the direction before the field: `dl_carrierBandwidth`. */
+function flattened(key: string): NamedField | undefined {
+  const found = /^(dl|ul)(absolutefrequencypointa|offsettocarrier|carrierbandwidth)$/.exec(key);
+  const field = found === null ? undefined : FIELDS[found[2]];
+  return field === undefined || found?.[1] === 'dl' ? field : { ...field, parameter: uplinkName(field.parameter) };
 }
 
 /** The extension of Release 15 (3 and 4 ms) overrides the field that it extends. */

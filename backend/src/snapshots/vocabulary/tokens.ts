@@ -17,7 +17,7 @@ export const TOKENS: Readonly<Record<string, Readonly<Record<string, readonly st
     upright: ['upright', 'noninverted', 'notinverted', 'normal', 'straight', 'positive'],
     inverted: ['inverted', 'inverse', 'mirrored', 'conjugated', 'reversed', 'negative'],
   },
-  dmrsTypeAPosition: { pos2: ['pos2', '2'], pos3: ['pos3', '3'] },
+  dmrsTypeAPosition: { pos2: ['pos2', '2', '0'], pos3: ['pos3', '3', '1'] },
   compressionMethod: {
     none: ['none', 'nocompression', 'uncompressed', 'fixedpoint', '0'],
     bfp: ['bfp', 'blockfloatingpoint', 'bfpselectiveresending', 'blockfloatingpointselectiveresending', '1', '5'],
