@@ -1,7 +1,7 @@
 import { useQuery } from '@tanstack/react-query';
 import { Suspense } from 'react';
-import { Outlet, useLocation } from 'react-router-dom';
-import { Loading } from '../components/ui/loading.js';
+import { Navigate, Outlet, useLocation } from 'react-router-dom';
+import { LoadingPage } from '../components/ui/loading.js';
 import { readMe } from '../features/people/api/read-me.js';
 import { setTimeZone } from '../lib/times.js';
 import { Invitation } from './invitation.js';
@@ -15,14 +15,15 @@ export function Gate() {
   const { data: me, isPending, error } = useQuery(readMe());
   const { pathname } = useLocation();
   if (pathname.startsWith('/invitations/')) return <Invitation />;
-  if (isPending) return <Loading />;
+  if (isPending) return <LoadingPage />;
   if (error) throw error;
   if (!me) return <SignIn />;
+  if (pathname === '/sign-in') return <Navigate to="/" replace />;
   setTimeZone(me.timeZone);
   return (
     <MeProvider me={me} key={me.timeZone}>
       <LiveUpdates />
-      <Shell><Suspense fallback={<Loading />}><Outlet /></Suspense></Shell>
+      <Shell><Suspense fallback={<LoadingPage />}><Outlet /></Suspense></Shell>
     </MeProvider>
   );
 }

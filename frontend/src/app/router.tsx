@@ -2,7 +2,7 @@ import { createBrowserRouter, Navigate, type RouteObject } from 'react-router-do
 import { ErrorPage } from './error-page.js';
 import { Gate } from './gate.js';
 import { Missing } from './missing.js';
-import { Loading } from '../components/ui/loading.js';
+import { LoadingPage } from '../components/ui/loading.js';
 
 type Page = () => React.JSX.Element;
 /** A page loaded when it is first opened. */
@@ -14,7 +14,7 @@ export const router = createBrowserRouter([
   {
     element: <Gate />,
     errorElement: <ErrorPage />,
-    HydrateFallback: Loading,
+    HydrateFallback: LoadingPage,
     children: [
       page('/', async () => (await import('../routes/day-sheet.js')).DaySheetPage),
       page('/register', async () => (await import('../routes/register.js')).RegisterPage),

@@ -2,7 +2,7 @@ import { useLocation } from 'react-router-dom';
 import { useTitle } from '../components/ui/title.js';
 import { RailsPicture } from './rails-picture.js';
 
-export const signInAddress = (returnTo: string): string => `/api/auth/sign-in?returnTo=${encodeURIComponent(returnTo)}`;
+const signInAddress = (returnTo: string): string => `/api/auth/sign-in?returnTo=${encodeURIComponent(returnTo)}`;
 
 /** How the server says that a sign-in ended other than in; a refusal never says whether anyone was invited. */
 const OUTCOMES: Record<string, string> = {
@@ -30,7 +30,7 @@ export function SignIn() {
         <p className="landing-name">Crosstie</p>
         <h1>Two vendors, one link, and one setting that does not match</h1>
         <p>Drop a capture and both configuration snapshots. Crosstie finds the setting on which the two sides disagree, shows the evidence to both, and keeps the record until the link carries traffic.</p>
-        {outcome && <p role="alert"><strong>{outcome}</strong></p>}
+        {outcome && <p className="notice waits" role="alert">{outcome}</p>}
         <a className="button button-main" href={href}>Sign in</a>
         <p className="small">You are sent to your organisation’s sign-in page and come back here. Access is by invitation of a programme’s administrator.</p>
       </div>

@@ -12,3 +12,6 @@ export function Loading({ what = 'Reading' }: { what?: string }) {
   }, []);
   return <div className="loading" role="status">{shown && <><Mark size={44} moving /><span>{what} …</span></>}</div>;
 }
+
+/** The same where a whole page is being read. */
+export const LoadingPage = () => <main id="main" tabIndex={-1}><h1 className="hidden-text">Crosstie</h1><Loading /></main>;

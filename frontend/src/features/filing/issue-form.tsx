@@ -55,17 +55,21 @@ export function IssueForm(props: FormProps) {
   const { draft, set, link, refused, filled } = props;
   return (
     <>
-      <TextField label="What is wrong, in a sentence" required minLength={4} maxLength={200} value={draft.title} error={refused?.field('title')} onChange={(e) => set({ title: e.target.value })} />
+      <h2>What is wrong</h2>
+      <TextField label="In a sentence" required minLength={4} maxLength={200} value={draft.title} error={refused?.field('title')} onChange={(e) => set({ title: e.target.value })} />
       <Radios legend="Severity" value={draft.severity} options={SEVERITIES.map((s) => [s as Severity | '', s] as const)} onChange={(severity) => set({ severity })} />
+      <h2>Where</h2>
       <LinkPart {...props} />
       <div className="fields">
         <RungFields link={link?.interface ?? 'air'} value={draft.lastRung} onChange={(lastRung) => set({ lastRung })} />
         <Select label="Who transmits in the capture" none="not known" value={draft.transmitter} options={[['a', `side A${link ? `, ${link.a.party.shortName}` : ''}`], ['b', `side B${link ? `, ${link.b.party.shortName}` : ''}`]]} onChange={(e) => set({ transmitter: e.target.value as Side })} />
       </div>
+      <h2>Under which conditions</h2>
       <SignalPathFields value={draft.signalPath} onChange={(signalPath) => set({ signalPath })} />
       {filled.has('clockSource') && <p className="small">The clock source was read from the files.</p>}
       <TextField label="Last pair of builds that worked" maxLength={2000} value={draft.baseline} onChange={(e) => set({ baseline: e.target.value })} />
       <TextArea label="Anything else (Markdown)" rows={5} value={draft.description} onChange={(e) => set({ description: e.target.value })} />
+      <h2>Who</h2>
       <SharePart {...props} />
       <MovePart {...props} />
     </>

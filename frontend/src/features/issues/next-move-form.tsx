@@ -21,7 +21,7 @@ export function NextMoveForm({ issue, parties, close }: { issue: Issue; parties:
   return (
     <form className="panel next-move-form" onSubmit={send}>
       <Select label="Who" none="choose a party" required value={partyId} options={parties.map((p) => [p.id, p.name] as const)} onChange={(e) => setParty(e.target.value)} />
-      <TextField label="Asked to" required maxLength={500} value={ask} placeholder="confirm the prefix in the running configuration" onChange={(e) => setAsk(e.target.value)} />
+      <TextField label="Asked to" required maxLength={500} value={ask} onChange={(e) => setAsk(e.target.value)} />
       <div className="fields">
         <TextField label="By" type="date" value={due} onChange={(e) => setDue(e.target.value)} />
         <Select label="Clock runs for" none="the party asked" value={cause} options={WAITING_CAUSES.map((c) => [c, CAUSE_LABELS[c]] as const)} onChange={(e) => setCause(e.target.value as WaitingCause)} />

@@ -72,7 +72,7 @@ export function itemsOf(dropped: readonly File[], waiting: readonly UploadItem[]
   for (const [stem, files] of halves) {
     const partner = waiting.find((item) => item.state === 'lacks-pair' && pairPartOf(item.files[0]!.name)?.stem === stem && item.files[0]!.name !== files[0]!.name);
     if (partner) joined.push({ key: partner.key, files: dataFirst([...partner.files, ...files]) });
-    else fresh.push(itemOf(`${stem}.sigmf-meta`, dataFirst(files), files.length === 2 ? 'sending' : 'lacks-pair'));
+    else fresh.unshift(itemOf(`${stem}.sigmf-meta`, dataFirst(files), files.length === 2 ? 'sending' : 'lacks-pair'));
   }
   return { fresh, joined };
 }

@@ -1,0 +1,3 @@
+import { reading } from '../../../lib/query.js';
+
+export const readLink = (linkId: string) => reading('readLink', { params: { linkId } });

@@ -1,0 +1,3 @@
+import { reading } from '../../../lib/query.js';
+
+export const readDaySheet = () => reading('readDaySheet', {});

@@ -1,0 +1,28 @@
+import { Link } from 'react-router-dom';
+import type { z } from 'zod';
+import type { daySheet } from '#shared/api/overview';
+import { addressOf } from '../../../lib/issue-name.js';
+import { When } from '../../../components/ui/when.js';
+
+type Change = z.infer<typeof daySheet>['changed'][number];
+
+/** What happened on the reader's issues since the last look, under each issue's own name. */
+export function Changes({ items }: { items: readonly Change[] }) {
+  const byIssue = new Map<string, Change[]>();
+  for (const c of items) {
+    const name = `${c.programme}/${c.number}`;
+    byIssue.set(name, [...(byIssue.get(name) ?? []), c]);
+  }
+  return (
+    <ol className="plain-list changes">
+      {[...byIssue].map(([name, changes]) => (
+        <li key={name}>
+          <p><span className="fig soft">{name}</span> <Link className="bare-link" to={addressOf(changes[0]!)}>{changes[0]!.title}</Link></p>
+          <ul className="plain-list">
+            {changes.map((c) => <li key={`${c.at} ${c.text}`} className="small"><span className="fig"><When at={c.at} /></span> <b>{c.person ?? 'Crosstie'}</b> {c.text}</li>)}
+          </ul>
+        </li>
+      ))}
+    </ol>
+  );
+}

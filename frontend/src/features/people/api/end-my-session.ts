@@ -1,0 +1,3 @@
+import { useChange } from '../../../lib/query.js';
+
+export const useEndMySession = () => useChange('endMySession', (sessionId: string) => ({ params: { sessionId } }), ['listMySessions', 'readMe']);
