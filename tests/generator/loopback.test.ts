@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { AirValue, CaptureFacts } from '#shared/decode';
 import { recordedSignal } from '#backend/generator/scenarios/capture';
-import type { AirExpectation } from '#backend/generator/scenarios/expectation';
+import { meets } from '#backend/generator/scenarios/judge';
 import { randomScenario } from '#backend/generator/scenarios/random-scenario';
 import { detectLte } from '#engine/lte/detect';
 import { detectNr } from '#engine/nr/detect';
@@ -21,20 +21,6 @@ function find(kind: 'nr' | 'lte' | 'wifi', seed: number) {
   const facts: CaptureFacts = { format: 'sigmf', datatype: 'cf32_le', sampleRateHz, centreFrequencyHz: centreHz, samples, durationS: samples / sampleRateHz, rmsDbfs: null, clippedFraction: null };
   const source = { sampleRateHz, centreFrequencyHz: centreHz, samples, read: (start: number, count: number) => iq.slice(2 * start, 2 * Math.min(samples, start + count)) };
   return { expected: spec.expect.air, finding: DETECTORS[kind]({ source, facts, occupied: null, blind: null }) };
-}
-
-function meets(air: AirValue | undefined, due: AirExpectation): boolean {
-  const found = air?.value;
-  if ('oneOf' in due) return due.oneOf.includes(found as string);
-  if ('isNull' in due) return found === null || found === undefined;
-  if ('mib' in due) return Object.entries(due.mib).every(([name, value]) => {
-    const got = (found as Record<string, unknown> | null)?.[name];
-    return Array.isArray(value) ? value.includes(got as number) : got === value;
-  });
-  const away = Number(found) - due.value;
-  // An offset whose grid could not be placed is right to a whole number of spacings.
-  const isResidue = due.modulo !== undefined && air?.method?.startsWith('fractional') === true;
-  return Math.abs(isResidue ? away - due.modulo! * Math.round(away / due.modulo!) : away) <= due.tol + 1e-9;
 }
 
 describe.each([['nr', 1], ['nr', 9], ['nr', 14], ['lte', 1], ['lte', 9], ['wifi', 2], ['wifi', 5]] as const)('%s, scenario %i', (kind, seed) => {

@@ -63,14 +63,14 @@ describe('numbers of TS 36.211 and 36.212', () => {
     word.forEach((bit) => counts.set(bit, (counts.get(bit) ?? 0) + 1));
     expect([...counts.values()]).toEqual(Array.from({ length: 120 }, () => 16));
     // Column 1 is read first (Table 5.1.4-2): with 24 empty places, bit 9 leads, then bit 25 of the first column pair.
-    expect([...word.slice(0, 2)]).toEqual([9, 25]);
+    expect(word.slice(0, 2)).toEqual(Uint8Array.of(9, 25));
   });
 
   it('masks the CRC by the number of ports', () => {
     const mib = { resourceBlocks: 25, phichDuration: 'normal' as const, phichResource: 1 as const, systemFrameNumber: 261 };
     const [one, two] = [mibTransportBits(mib, 1), mibTransportBits(mib, 2)];
     expect(one.slice(24).map((bit, i) => bit ^ two[24 + i])).toEqual(new Uint8Array(16).fill(1));
-    expect([...one.slice(0, 14)]).toEqual([0, 1, 0, 0, 0, 1, 0, 1, 0, 0, 0, 0, 0, 1]);
+    expect(one.slice(0, 14)).toEqual(Uint8Array.of(0, 1, 0, 0, 0, 1, 0, 1, 0, 0, 0, 0, 0, 1));
   });
 
   it('leaves 240 elements to the broadcast channel, 216 with the extended prefix (clause 6.6.1)', () => {

@@ -19,7 +19,7 @@ function readBack(side: ScenarioSide): Map<string, unknown> {
 function agrees(declared: Declared, name: string, value: unknown, read: Map<string, unknown>): boolean {
   if (name === 'carrierFrequency') {
     const pointA = read.get('pointAArfcn');
-    if (typeof pointA === 'number') return nrArfcnHz(pointA) + 6 * declared.resourceBlocks! * declared.subcarrierSpacing! === value;
+    if (typeof pointA === 'number') return value === nrArfcnHz(pointA) + 6 * declared.resourceBlocks! * declared.subcarrierSpacing!;
     return read.get(name) === value || (declared.earfcn !== undefined && earfcnHz(Number(read.get('earfcn'))) === value);
   }
   if (name === 'subcarrierSpacing' && read.has('numerology')) return 15000 * 2 ** Number(read.get('numerology')) === value;

@@ -46,7 +46,7 @@ describe('SIG fields of later formats', () => {
   it('put the guard interval where the tables say', () => {
     expect(htSignalBits({ mcs: 0, mhz: 20, length: 8, shortGuard: true })[31]).toBe(1);
     expect(vhtSignalBits({ mcs: 0, mhz: 20, shortGuard: true, symbols: 3 })[24]).toBe(1);
-    expect([...heSignalBits({ mcs: 0, mhz: 20, guardAndTraining: 2 }).slice(21, 23)]).toEqual([0, 1]);
+    expect(heSignalBits({ mcs: 0, mhz: 20, guardAndTraining: 2 }).slice(21, 23)).toEqual(Uint8Array.of(0, 1));
   });
 });
 

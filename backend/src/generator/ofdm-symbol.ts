@@ -19,8 +19,13 @@ export interface PlacedSymbol {
   readonly phase?: number;
   /** Frequency of the bins' zero, Hz; its phase is zero at the first sample of the useful part. */
   readonly offsetHz?: number;
-  /** Cyclic suffix and overlap, samples: raised-cosine edges that reach half into the neighbours. */
+  /** Half the length of the raised-cosine edges, samples: a symbol reaches so far into its neighbours. */
   readonly taper?: number;
+}
+
+/** Half of an edge of `taperS`, in whole samples. */
+export function taperSamples(taperS: number | undefined, canvas: Canvas): number {
+  return Math.round(((taperS ?? 0) * canvas.rateHz) / 2);
 }
 
 const scratch = new Map<number, Float64Array>();

@@ -1,4 +1,4 @@
-import { addSymbol, type Canvas } from '../ofdm-symbol.js';
+import { addSymbol, taperSamples, type Canvas } from '../ofdm-symbol.js';
 import { Random } from '../random.js';
 import type { Emission } from '../signal.js';
 import { nativeRate } from '../native-rate.js';
@@ -47,7 +47,7 @@ function render(spec: LteSpec, canvas: Canvas): Float32Array {
       for (const port of ports) port.fill(0);
       fillLteSymbol(spec, ports, { slot, symbol: l });
       combine({ ports, gains, bins, amplitude: 1 / Math.sqrt(12 * spec.resourceBlocks) });
-      addSymbol(canvas, { bins, start: slot * perSlot + startTs[l] * perTs, prefix: prefixTs[l] * perTs });
+      addSymbol(canvas, { bins, start: slot * perSlot + startTs[l] * perTs, prefix: prefixTs[l] * perTs, taper: taperSamples(spec.taperS, canvas) });
     }
   }
   return canvas.iq;

@@ -20,6 +20,8 @@ export interface LteSpec {
   /** Control symbols at the start of a subframe, 1 to 3. */
   readonly controlSymbols: number;
   readonly load: { readonly subframes: number; readonly blocks: number; readonly modulations: readonly Modulation[] };
+  /** Length of the raised-cosine edges between symbols, s; 0: sharp. */
+  readonly taperS?: number;
   readonly seed: number;
 }
 

@@ -1,4 +1,4 @@
-import { addSymbol, type Canvas } from '../ofdm-symbol.js';
+import { addSymbol, taperSamples, type Canvas } from '../ofdm-symbol.js';
 import { BLOCK_SUBCARRIERS, BLOCK_SYMBOLS, blockGrid } from './block-grid.js';
 import { blockSpacingHz, blockStartSymbol } from './block-pattern.js';
 import { nrNumerology, TC_PER_S, TC_PER_SUBFRAME, type NrNumerology } from './numerology.js';
@@ -95,6 +95,7 @@ export class BlockSender {
       start: (subframe * TC_PER_SUBFRAME + numerology.startTc[l]) * samples,
       prefix: numerology.prefixTc[l] * samples,
       offsetHz: blocks.frequencyHz - spec.carrierHz,
+      taper: taperSamples(spec.taperS, canvas),
       phase: spec.phaseCompensation ? -2 * Math.PI * (cycles - Math.floor(cycles)) : 0,
     });
   }

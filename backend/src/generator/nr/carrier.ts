@@ -1,4 +1,4 @@
-import { addSymbol, type Canvas } from '../ofdm-symbol.js';
+import { addSymbol, taperSamples, type Canvas } from '../ofdm-symbol.js';
 import { nativeRate } from '../native-rate.js';
 import type { Emission } from '../signal.js';
 import { BlockSender } from './blocks.js';
@@ -56,7 +56,7 @@ function addDataSymbols(spec: NrSpec, canvas: Canvas, { numerology, subframe, se
     bins.fill(0);
     const taken = sender?.takenDuring(subframe, numerology.startTc[l], numerology.startTc[l] + numerology.prefixTc[l] + numerology.usefulTc) ?? null;
     if (!fillSymbol(spec, { bins, slot, symbol, taken, slotsPerFrame: 10 * 2 ** numerology.mu })) continue;
-    addSymbol(canvas, { bins, start, prefix, phase: compensation(spec, numerology.startTc[l] + numerology.prefixTc[l]) });
+    addSymbol(canvas, { bins, start, prefix, phase: compensation(spec, numerology.startTc[l] + numerology.prefixTc[l]), taper: taperSamples(spec.taperS, canvas) });
   }
 }
 

@@ -54,5 +54,7 @@ export interface NrSpec {
   readonly load: NrLoad;
   /** Per-symbol phase compensation of TS 38.211 clause 5.4. */
   readonly phaseCompensation: boolean;
+  /** Length of the raised-cosine edges between symbols, s; 0: sharp. */
+  readonly taperS?: number;
   readonly seed: number;
 }

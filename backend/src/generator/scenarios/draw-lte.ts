@@ -42,6 +42,7 @@ export function drawLte(random: Random, wish: Wish): Drawn {
     cellId: random.integer(0, 503), ports: random.pick([1, 2]), systemFrameNumber: random.integer(0, 1023), phichDuration: 'normal', phichResource: random.pick([0, 1, 2, 3]),
     controlSymbols: random.integer(resourceBlocks === 6 ? 2 : 1, 3),
     load: wish.fullLoad ? { subframes: 1, blocks: 1, modulations: ['qpsk', '16qam'] } : { subframes: random.uniform(0.4, 1), blocks: random.chance(0.5) ? 1 : random.uniform(0.3, 1), modulations: random.pick([['qpsk'], ['qpsk', '16qam', '64qam']] as const) },
+    taperS: random.chance(0.3) ? random.uniform(0, 1.2e-6) : 0,
     seed: random.bits(),
   };
   const durationS = Math.min(wish.maxDurationS ?? 0.03, random.uniform(0.012, 0.025));

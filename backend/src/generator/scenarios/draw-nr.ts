@@ -88,6 +88,8 @@ function drawSpec(random: Random, wish: Wish, { channel, carrierHz, gscn }: { ch
       ? { slots: 1, blocks: 1, modulations: ['qpsk', '16qam', '64qam'], controlSymbols: random.integer(0, 2), dmrs: true }
       : { slots: random.uniform(0.4, 1), blocks: random.chance(0.5) ? 1 : random.uniform(0.4, 1), modulations: random.pick([['qpsk'], ['qpsk', '16qam'], ['64qam'], ['qpsk', '16qam', '64qam', '256qam']] as const), controlSymbols: random.integer(0, 2), dmrs: random.chance(0.8) },
     phaseCompensation: wish.phaseCompensation ?? true,
+    // Up to a quarter of the ordinary prefix.
+    taperS: random.chance(0.3) ? random.uniform(0, 9 / 128 / 4) / spacingHz : 0,
     seed: random.bits(),
   };
 }

@@ -9,20 +9,22 @@ export interface NrBand {
   readonly rasterHz: number;
   readonly spacingsHz: readonly number[];
   readonly cases: readonly BlockCase[];
+  /** Uplink carrier minus downlink carrier; 0 in TDD. */
+  readonly uplinkShiftHz: number;
 }
 
 const MHZ = 1e6;
-const band = (row: readonly [number, 'fdd' | 'tdd', number, number, number, readonly number[], readonly BlockCase[]]): NrBand => ({
-  band: row[0], duplex: row[1], lowHz: row[2] * MHZ, highHz: row[3] * MHZ, rasterHz: row[4] * 1000, spacingsHz: row[5].map((k) => k * 1000), cases: row[6],
+const band = (row: readonly [number, 'fdd' | 'tdd', number, number, number, readonly number[], readonly BlockCase[], number?]): NrBand => ({
+  band: row[0], duplex: row[1], lowHz: row[2] * MHZ, highHz: row[3] * MHZ, rasterHz: row[4] * 1000, spacingsHz: row[5].map((k) => k * 1000), cases: row[6], uplinkShiftHz: (row[7] ?? 0) * MHZ,
 });
 
 export const NR_BANDS: readonly NrBand[] = [
-  band([1, 'fdd', 2110, 2170, 100, [15, 30, 60], ['A']]),
-  band([3, 'fdd', 1805, 1880, 100, [15, 30, 60], ['A']]),
-  band([5, 'fdd', 869, 894, 100, [15, 30], ['A', 'B']]),
-  band([7, 'fdd', 2620, 2690, 100, [15, 30, 60], ['A']]),
-  band([28, 'fdd', 758, 803, 100, [15, 30], ['A']]),
-  band([66, 'fdd', 2110, 2200, 100, [15, 30, 60], ['A', 'B']]),
+  band([1, 'fdd', 2110, 2170, 100, [15, 30, 60], ['A'], -190]),
+  band([3, 'fdd', 1805, 1880, 100, [15, 30, 60], ['A'], -95]),
+  band([5, 'fdd', 869, 894, 100, [15, 30], ['A', 'B'], -45]),
+  band([7, 'fdd', 2620, 2690, 100, [15, 30, 60], ['A'], -120]),
+  band([28, 'fdd', 758, 803, 100, [15, 30], ['A'], -55]),
+  band([66, 'fdd', 2110, 2180, 100, [15, 30, 60], ['A', 'B'], -400]),
   band([40, 'tdd', 2300, 2400, 100, [15, 30, 60], ['C']]),
   band([41, 'tdd', 2496, 2690, 30, [30, 60], ['A', 'C']]),
   band([77, 'tdd', 3300, 4200, 30, [15, 30, 60], ['C']]),

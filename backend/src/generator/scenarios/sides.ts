@@ -2,6 +2,7 @@ import { nrArfcn, nrArfcnHz } from '../nr/raster.js';
 import type { Random } from '../random.js';
 import type { Declared, DeclaredName } from '../snapshots/declared.js';
 import type { SnapshotStyle } from '../snapshots/snapshot.js';
+import { NR_BANDS } from './nr-bands.js';
 import type { SideSpec } from './scenario.js';
 
 /** What a side must say, and in which words it may. */
@@ -22,13 +23,18 @@ export function drawSide(random: Random, declared: Declared, wish: SideWish): Si
 function drawStyle(random: Random, declared: Declared, wish: SideWish): SnapshotStyle {
   const isCellular = declared.technology === 'nr' || declared.technology === 'lte';
   const words = random.pick(wish.standard && isCellular ? (['plain', 'plain', 'standard', 'standard', 'own'] as const) : (['plain', 'plain', 'own'] as const));
-  if (words === 'standard') return { words, syntax: random.pick(['json', 'yaml', 'xml', 'braces'] as const), xer: random.chance(0.6), uplink: random.chance(0.4) };
+  if (words === 'standard') return { words, syntax: random.pick(['json', 'yaml', 'xml', 'braces'] as const), xer: random.chance(0.6), uplinkShiftHz: random.chance(0.4) ? uplinkShift(declared.band) : null };
   if (words === 'own') return { words, syntax: random.pick(['json', 'yaml', 'conf', 'braces'] as const), glossarySyntax: random.pick(['yaml', 'json'] as const), seed: random.bits() };
   const syntax = random.pick(['json', 'yaml', 'xml', 'conf', 'braces'] as const);
   return {
     words, syntax,
     plain: { spelling: random.pick(['camel', 'snake', 'kebab'] as const), units: random.pick(['si', 'in-name', 'in-value'] as const), numerology: random.chance(0.3), grouped: syntax === 'xml' || random.chance(0.8) },
   };
+}
+
+/** Where the band's uplink lies against its downlink. */
+function uplinkShift(band: number | undefined): number | null {
+  return NR_BANDS.find((b) => b.band === band)?.uplinkShiftHz ?? null;
 }
 
 const without = (declared: Declared, names: readonly DeclaredName[]): Declared =>

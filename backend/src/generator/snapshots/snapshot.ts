@@ -8,7 +8,7 @@ import { fileEnding, write, type Syntax } from './syntax.js';
 /** The words and the syntax of a snapshot. */
 export type SnapshotStyle =
   | { readonly words: 'plain'; readonly syntax: Syntax; readonly plain: PlainStyle }
-  | { readonly words: 'standard'; readonly syntax: Exclude<Syntax, 'conf'>; readonly xer: boolean; readonly uplink: boolean }
+  | { readonly words: 'standard'; readonly syntax: Exclude<Syntax, 'conf'>; readonly xer: boolean; readonly uplinkShiftHz: number | null }
   | { readonly words: 'own'; readonly syntax: Exclude<Syntax, 'xml'>; readonly glossarySyntax: 'yaml' | 'json'; readonly seed: number };
 
 export interface SnapshotFile {
@@ -28,7 +28,7 @@ export function writeSnapshot(declared: Declared, style: SnapshotStyle): Snapsho
     };
   }
   const isLte = declared.technology === 'lte' || declared.earfcn !== undefined;
-  const tree = style.words === 'plain' ? plainTree(declared, style.plain) : isLte ? lteStandardTree(declared) : nrStandardTree(declared, { xer: style.xer && style.syntax === 'xml', uplink: style.uplink });
+  const tree = style.words === 'plain' ? plainTree(declared, style.plain) : isLte ? lteStandardTree(declared) : nrStandardTree(declared, { xer: style.xer && style.syntax === 'xml', uplinkShiftHz: style.uplinkShiftHz });
   const root = style.words === 'plain' ? 'configuration' : isLte ? 'SystemInformation' : 'ServingCellConfigCommon';
   const wrapped = style.words === 'standard' && style.syntax !== 'xml' ? { [root]: tree } : tree;
   return { text: write(wrapped, style.syntax, root), ending: fileEnding(style.syntax), glossary: null };

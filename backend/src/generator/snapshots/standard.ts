@@ -12,7 +12,7 @@ export const NR_STANDARD_NAMES: readonly (keyof Declared)[] = [
 type Word = (text: string) => ConfigTree;
 
 /** A serving cell in the field names of TS 38.331. Needs spacing, carrier and blocks. */
-export function nrStandardTree(declared: Declared, { xer, uplink }: { xer: boolean; uplink: boolean }): { readonly [key: string]: ConfigTree } {
+export function nrStandardTree(declared: Declared, { xer, uplinkShiftHz }: { xer: boolean; uplinkShiftHz: number | null }): { readonly [key: string]: ConfigTree } {
   const word: Word = (text) => (xer ? { [text]: XER_CHOICE } : text);
   const list = (element: string, items: readonly ConfigTree[]): ConfigTree => (xer ? { [element]: items } : items);
   const pointA = nrArfcn(declared.carrierFrequency! - 6 * declared.resourceBlocks! * declared.subcarrierSpacing!);
@@ -34,8 +34,8 @@ export function nrStandardTree(declared: Declared, { xer, uplink }: { xer: boole
       frequencyInfoDL: { ...(declared.ssbArfcn === undefined ? {} : { absoluteFrequencySSB: declared.ssbArfcn }), ...frequencyInfo },
       initialDownlinkBWP: { genericParameters: part },
     },
-    // An uplink of its own, 95 MHz below, that must not be held against the downlink.
-    ...(uplink ? { uplinkConfigCommon: { frequencyInfoUL: { ...frequencyInfo, absoluteFrequencyPointA: nrArfcn(nrArfcnHz(pointA) - 95e6) } } } : {}),
+    // An uplink that must not be held against the downlink.
+    ...(uplinkShiftHz === null ? {} : { uplinkConfigCommon: { frequencyInfoUL: { ...frequencyInfo, absoluteFrequencyPointA: nrArfcn(nrArfcnHz(pointA) + uplinkShiftHz) } } }),
     ...(declared.ssbPeriodicity === undefined ? {} : { 'ssb-periodicityServingCell': word(`ms${Math.round(declared.ssbPeriodicity * 1000)}`) }),
     ...(declared.dmrsTypeAPosition === undefined ? {} : { 'dmrs-TypeA-Position': word(declared.dmrsTypeAPosition) }),
     ...(declared.ssbSubcarrierSpacing === undefined ? {} : { ssbSubcarrierSpacing: word(`kHz${declared.ssbSubcarrierSpacing / 1000}`) }),
