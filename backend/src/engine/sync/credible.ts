@@ -1,0 +1,87 @@
+import { welch } from '../spectrum/welch.js';
+import { lagSums } from './lag-sums.js';
+import type { Prepared } from './prepare.js';
+import { rescore, type Scored } from './score.js';
+
+/**
+ * Evidence from which on OFDM is claimed. Chance reaches a score of u at one of the placings
+ * with a probability of about exp(−u); with some 60 listed and 30,000 free hypotheses in a
+ * window these limits leave under one false claim in 10,000 windows of noise. Bursts add the
+ * scatter of a sum of maxima (a Gumbel variate's standard deviation is 1.28).
+ */
+const LISTED = 16;
+const FREE = 24;
+const PER_BURST = 1.28 * 5;
+
+/** |x|⁴ over (|x|²)²: 2 for a Gaussian signal, as any OFDM nearly is; 1 for a carrier with angle modulation only. */
+const LEAST_KURTOSIS = 1.5;
+/** Off the right lag by more than the band's correlation time a prefix is gone; a tone, a sweep or a line is not. */
+const BESIDE = 0.5;
+const MOST_PEAK_SHARE = 0.9;
+
+export interface Credibility {
+  readonly credible: boolean;
+  readonly reason: string | null;
+}
+
+export function credibility(window: Prepared, scored: Scored): Credibility {
+  const spans = scored.spans.apart ? scored.spans.blocks.length : 1;
+  const need = (scored.hypothesis.family === 'free' ? FREE : LISTED) + PER_BURST * (Math.sqrt(spans) - 1);
+  if (!scored.best || !(scored.score > need)) return no(`evidence ${scored.score.toFixed(1)} below ${need.toFixed(1)}`);
+  if (scored.best.match.peakShare > MOST_PEAK_SHARE) return no('one tone in the products');
+  if (kurtosis(window) < LEAST_KURTOSIS) return no('the envelope is too constant for OFDM');
+  const besides = beside(window, scored);
+  if (besides > BESIDE) return no('the correlation does not belong to one lag');
+  return { credible: true, reason: null };
+}
+
+function no(reason: string): Credibility {
+  return { credible: false, reason };
+}
+
+export function kurtosis({ iq, on }: Prepared): number {
+  let second = 0;
+  let fourth = 0;
+  let count = 0;
+  for (const { start, end } of on) {
+    for (let i = 2 * start; i < Math.min(iq.length, 2 * end); i += 2) {
+      const p = iq[i] * iq[i] + iq[i + 1] * iq[i + 1];
+      second += p;
+      fourth += p * p;
+      count++;
+    }
+  }
+  return second > 0 ? (fourth * count) / (second * second) : 2;
+}
+
+/**
+ * The greater score at the two lags beside, over the score itself; the least of three distances,
+ * since a carrier of which few blocks are in use correlates over a longer time than its band says.
+ */
+function beside(window: Prepared, scored: Scored): number {
+  const unit = window.rateHz / effectiveBandwidth(window);
+  let least = Infinity;
+  for (const distance of [1.6, 3.2, 6.4].map((f) => Math.max(2, Math.round(f * unit)))) {
+    const scores = [-distance, distance].map((d) => {
+      const sums = lagSums(window, Math.round(scored.sums.lag) + d, scored.sums.hop);
+      return rescore({ sums, rateHz: window.rateHz }, scored).score;
+    });
+    least = Math.min(least, Math.max(...scores) / scored.score);
+    if (least < BESIDE || distance > 0.25 * scored.sums.lag) break;
+  }
+  return least;
+}
+
+/** (∫S)² / ∫S² of the power above the floor, Hz: its reciprocal is the correlation time. */
+function effectiveBandwidth({ iq, rateHz, bandHz }: Prepared): number {
+  const { power, binHz } = welch(iq, rateHz, { size: 256, most: 200 });
+  const floor = Float64Array.from(power).sort()[Math.floor(power.length / 20)];
+  let sum = 0;
+  let squares = 0;
+  for (const p of power) {
+    const s = Math.max(0, p - floor);
+    sum += s;
+    squares += s * s;
+  }
+  return squares > 0 ? Math.min(bandHz, ((sum * sum) / squares) * binHz) : bandHz;
+}

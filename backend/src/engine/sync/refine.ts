@@ -1,0 +1,72 @@
+import { periodOf, type Hypothesis } from './hypotheses.js';
+import { lagSums, type LagSums } from './lag-sums.js';
+import type { Prepared, Stretch } from './prepare.js';
+import { rescore, type Scored } from './score.js';
+
+/** Where the symbols lie and how strong they are, in working samples and Hz about the working zero. */
+export interface Refined {
+  readonly scored: Scored;
+  /** First sample of the period's first prefix, fractional, ≥ 0. */
+  readonly start: number;
+  /** Offset of the subcarriers from whole multiples of the spacing, within ± half of it. */
+  readonly residueHz: number;
+  /** Signal to noise over the working band while the signal is on; null where it cannot be told. */
+  readonly snr: number | null;
+}
+
+/** A prefix in this many blocks: timing to a tenth of that. */
+const BLOCKS_PER_PREFIX = 24;
+
+export function refine(window: Prepared, coarse: Scored): Refined {
+  const { hypothesis } = coarse;
+  const hop = Math.max(1, Math.floor((hypothesis.cyclicPrefixS * window.rateHz) / BLOCKS_PER_PREFIX));
+  const sums = hop < coarse.sums.hop ? lagSums(window, coarse.sums.lag, hop) : coarse.sums;
+  const fine = hop < coarse.sums.hop ? rescore({ sums, rateHz: window.rateHz }, coarse) : coarse;
+  const scored = fine.best && fine.score > 0.6 * coarse.score ? fine : coarse;
+  const { match, origin } = scored.best!;
+  const period = (periodOf(hypothesis) * window.rateHz) / scored.sums.hop;
+  const start = (origin + match.phase * period) * scored.sums.hop;
+  const residueHz = Math.atan2(match.im, match.re) / (2 * Math.PI * hypothesis.usefulS);
+  return { scored, start, residueHz, snr: prefixSnr(window, { sums: scored.sums, start, hypothesis, angle: Math.atan2(match.im, match.re) }) };
+}
+
+interface Placed { sums: LagSums; start: number; hypothesis: Hypothesis; angle: number }
+
+/**
+ * Signal to noise from the prefixes themselves (van de Beek, Sandell and Börjesson, IEEE Trans.
+ * Signal Process. 45 (1997) 1800: the correlation coefficient is S / (S + N)), over their later
+ * part, which a channel's echoes reach least, in the symbols that are on.
+ */
+function prefixSnr(window: Prepared, { sums, start, hypothesis, angle }: Placed): number | null {
+  const prefixes = prefixBlocks(window, { sums, start, hypothesis, angle })
+    .filter(({ from, to }) => within(window.on, from * sums.hop, to * sums.hop + sums.lag));
+  let product = 0;
+  let power = 0;
+  const late = Math.round(sums.lag / sums.hop);
+  for (const { from, to } of prefixes) {
+    for (let b = from; b < to; b++) {
+      product += sums.re[b] * Math.cos(angle) + sums.im[b] * Math.sin(angle);
+      power += (sums.power[b] + (sums.power[b + late] ?? sums.power[b])) / 2;
+    }
+  }
+  const rho = product / power;
+  return rho > 0 && rho < 1 ? rho / (1 - rho) : null;
+}
+
+function prefixBlocks(window: Prepared, { sums, start, hypothesis }: Placed): { from: number; to: number }[] {
+  const out: { from: number; to: number }[] = [];
+  const scale = window.rateHz / sums.hop;
+  let at = start / sums.hop - periodOf(hypothesis) * scale;
+  for (let l = 0; at < sums.re.length; l = (l + 1) % hypothesis.prefixesS.length) {
+    const prefix = hypothesis.prefixesS[l] * scale;
+    const from = Math.ceil(at + 0.45 * prefix);
+    const to = Math.floor(at + 0.95 * prefix);
+    if (from >= 0 && to > from && to <= sums.re.length) out.push({ from, to });
+    at += prefix + hypothesis.usefulS * scale;
+  }
+  return out;
+}
+
+function within(on: readonly Stretch[], from: number, to: number): boolean {
+  return on.some((s) => s.start <= from && to <= s.end);
+}
