@@ -3,7 +3,7 @@ import { look, type Look, type LookOptions } from './look.js';
 import { from, type Recording } from './recording.js';
 import { suspectRate } from './rate-label.js';
 import { chooseWindows } from '../level/windows.js';
-import { estimateOfdm } from './blind.js';
+import { estimateOfdm } from '../sync/estimate.js';
 import type { SampleSource, Tried } from '../types.js';
 
 /** A label that had to be changed before the capture decoded. */
@@ -85,7 +85,7 @@ const GLANCE_S = 0.006;
 const GLANCE_CONFIDENCE = 0.9;
 
 function otherFormat(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
-  const glances = recording.datatypes.map((datatype) => ({ datatype, ...glance(recording.under({ datatype }), recording.facts) })).filter((g) => g.confidence > GLANCE_CONFIDENCE)
+  const glances = recording.datatypes.map((datatype) => ({ datatype, ...glance(recording.under({ datatype })) })).filter((g) => g.confidence > GLANCE_CONFIDENCE)
     .sort((x, y) => y.score - x.score);
   for (const { datatype } of glances.slice(0, 2)) {
     const source = recording.under({ datatype });
@@ -98,11 +98,11 @@ function otherFormat(recording: Recording, plain: Look, options: LookOptions): D
   return null;
 }
 
-function glance(source: SampleSource, facts: CaptureFacts): { confidence: number; score: number } {
+function glance(source: SampleSource): { confidence: number; score: number } {
   const count = Math.min(source.samples, Math.round(GLANCE_S * source.sampleRateHz));
   const iq = source.read(0, count);
   const short: SampleSource = { ...source, samples: count, read: (start, n) => iq.slice(2 * start, 2 * (start + n)) };
-  const blind = estimateOfdm({ source: short, facts, occupied: null, blind: null });
+  const blind = estimateOfdm(short, { further: 0 });
   return { confidence: blind?.confidence ?? 0, score: blind?.candidates[0]?.score ?? 0 };
 }
 

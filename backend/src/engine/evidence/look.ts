@@ -3,7 +3,7 @@ import type { CaptureFacts } from '#shared/decode';
 import { detectNr } from '../nr/detect.js';
 import { surveyLte } from '../lte/detect.js';
 import { surveyWifi } from '../wifi/detect.js';
-import { estimateOfdm } from './blind.js';
+import { analyseOfdm, type BlindEstimate, type BlindResult } from '../sync/estimate.js';
 import { chooseWindows, readWindow } from '../level/windows.js';
 import { spectrumOf, type SpectrumResult } from '../spectrum/spectrum.js';
 import type { Window } from '../types.js';
@@ -15,7 +15,8 @@ export interface Look {
   readonly facts: CaptureFacts;
   readonly window: Window;
   readonly spectrum: SpectrumResult;
-  readonly blind: BlindOfdm | null;
+  readonly blind: BlindEstimate | null;
+  readonly repetition: BlindResult;
   readonly findings: readonly TechnologyFinding[];
   readonly choice: Choice;
   readonly tried: readonly Tried[];
@@ -32,11 +33,12 @@ export function look(source: SampleSource, facts: CaptureFacts, options: LookOpt
   const spectrum = spectrumOf(window.iq, source.sampleRateHz);
   const { occupied } = spectrum;
   options.onProgress?.('numerology', 0.1);
-  const blind = estimateOfdm({ source, facts, occupied, blind: null, ...options });
+  const repetition = analyseOfdm(source, { occupied });
+  const blind = repetition.found;
   const context: DetectionContext = { source, facts, occupied, blind, ...options };
   options.onProgress?.('synchronisation', 0.3);
   const { findings, tried } = survey(context);
-  return { source, facts, window, spectrum, blind, findings, choice: choose(findings, blind), tried };
+  return { source, facts, window, spectrum, blind, repetition, findings, choice: choose(findings, blind), tried };
 }
 
 interface Survey { findings: TechnologyFinding[]; tried: Tried[] }

@@ -5,5 +5,5 @@ import { spectrumCurve } from '../spectrum/spectrum.js';
 
 /** What the issue page draws: the spectrum, the prefix correlation, and the constellation under each setting. */
 export function plotsOf(look: Look, _options: AnalyseOptions): Plots {
-  return { spectrum: spectrumCurve(look.spectrum), prefixCorrelation: null, demodulations: [] };
+  return { spectrum: spectrumCurve(look.spectrum), prefixCorrelation: look.repetition.prefixCorrelation, demodulations: [] };
 }
