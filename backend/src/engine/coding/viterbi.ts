@@ -62,24 +62,23 @@ export function decodeFromZero(soft: ArrayLike<number>, generators: readonly num
 }
 
 /**
- * A tail-biting word (start state equals end state): the word is run round the circle until
- * the survivor closes, which finds the maximum-likelihood word in all but rare cases
- * (wrap-around Viterbi, Shao et al., IEEE Trans. Commun. 51 (2003) 1658).
+ * A tail-biting word (start state equals end state), maximum likelihood: from every start at
+ * once; where the best path does not close, from each start by itself.
  */
 export function decodeTailBiting(soft: ArrayLike<number>, generators: readonly number[]): ViterbiResult {
-  const bitCount = soft.length / generators.length;
-  let start: Float64Array = new Float64Array(STATES);
-  let found: ViterbiResult | null = null;
-  for (let round = 0; round < 4; round++) {
+  const open = run(soft, generators, new Float64Array(STATES));
+  const end = best(open.last);
+  // No circle can be better than the best of all paths: where that is a circle, it is the word.
+  if (startOf(open, end) === end) return traceBack(open, end);
+  let found: ViterbiResult = { bits: new Uint8Array(open.bitCount), metric: Number.NEGATIVE_INFINITY };
+  for (let state = 0; state < STATES; state++) {
+    if (open.last[state] <= found.metric) continue;
+    const start = new Float64Array(STATES).fill(Number.NEGATIVE_INFINITY);
+    start[state] = 0;
     const path = run(soft, generators, start);
-    const result = traceBack(path, best(path.last));
-    const closed = tailState(result.bits);
-    const metric = wordMetric(soft, encode(result.bits, generators, closed));
-    if (!found || metric > found.metric) found = { bits: result.bits, metric };
-    if (startOf(path, best(path.last)) === closed) break;
-    start = normalised(path.last);
+    if (path.last[state] > found.metric) found = traceBack(path, state);
   }
-  return found ?? { bits: new Uint8Array(bitCount), metric: 0 };
+  return found;
 }
 
 /** Σ of soft values under the code word's signs: the log-likelihood up to a constant. */
@@ -150,9 +149,4 @@ function best(metrics: Float64Array): number {
   let at = 0;
   for (let s = 1; s < metrics.length; s++) if (metrics[s] > metrics[at]) at = s;
   return at;
-}
-
-function normalised(metrics: Float64Array): Float64Array {
-  const top = metrics[best(metrics)];
-  return metrics.map((m) => m - top);
 }

@@ -1,4 +1,4 @@
-import { bitsPerFrame, broadcastScrambling, decodeBroadcast } from './broadcast-code.js';
+import { broadcastScrambling, decodeBroadcast } from './broadcast-code.js';
 import type { BroadcastWord } from './broadcast-code.js';
 import { interpolateComb } from './comb-interpolation.js';
 import type { CombSample } from './comb-interpolation.js';
@@ -124,7 +124,7 @@ function average(combs: readonly CombChannel[]): CombSample[] {
 /** One resource element of the broadcast channel and every port's channel on it. */
 interface Element { readonly re: number; readonly im: number; readonly h: readonly { re: number; im: number }[] }
 
-/** Soft bits of one frame, positive for 0, scaled to a mean magnitude of 1 so that frames weigh by their quality within and not by level. */
+/** Soft bits of one frame, positive for 0, proportional to the channel's power: a faded frame weighs less. */
 function softBits(rows: Rows, references: ReferenceSymbols, at: FramePlace & { frame: number; channels: Float64Array[] }): Float64Array {
   const perSlot = symbolsPerSlot(rows.cut.prefix);
   const elements: Element[] = [];
@@ -132,12 +132,7 @@ function softBits(rows: Rows, references: ReferenceSymbols, at: FramePlace & { f
     const row = subcarriers(rows, at.frameSymbol + (20 * at.frame + 1) * perSlot + l, { ...at, half: HALF });
     if (row) elements.push(...broadcastElements(row, { l, cellId: references.cellId, prefix: rows.cut.prefix, channels: at.channels }));
   }
-  const symbols = separate(elements, at.channels.length);
-  const soft = new Float64Array(bitsPerFrame(rows.cut.prefix));
-  let magnitude = 0;
-  for (let i = 0; i < soft.length; i++) magnitude += Math.abs(symbols[i]);
-  for (let i = 0; i < soft.length; i++) soft[i] = magnitude > 0 ? (symbols[i] * soft.length) / magnitude : 0;
-  return soft;
+  return separate(elements, at.channels.length);
 }
 
 /** Elements in the order of mapping; those of four ports' reference symbols are left free whatever the ports (TS 36.211 clause 6.6.4). */

@@ -1,7 +1,7 @@
 import type { DetectionContext, TechnologyFinding, Tried } from '../types.js';
 import { decodeBroadcasts } from './broadcast.js';
 import type { DecodedBroadcast } from './broadcast.js';
-import { lteFinding } from './finding.js';
+import { chanceOf, lteFinding } from './finding.js';
 import type { CellMeasurement } from './finding.js';
 import { readNative } from './native.js';
 import type { NativeWindow } from './native.js';
@@ -25,10 +25,16 @@ const LONG_LOOK_S = 0.0435;
 
 /** Below this nothing repeats at 15 kHz: chance reaches it once in some 10⁴ captures of noise. */
 const LEAST_PREFIX_SCORE = 4.5;
-/** Chance over 12 candidates, 4 readings and 336 sequences: 16,000·exp(−score²), 2·10⁻⁷ at 5. */
-const LEAST_SECONDARY_SCORE = 5;
-/** Chance (1 + score²)·exp(−score²) for one cell, place and port: 2·10⁻⁶. */
+/** Chance over 12 candidates, 4 readings and 336 sequences: 16,000·exp(−score²), 4 % at 3.6. */
+const LEAST_SECONDARY_SCORE = 3.6;
+/**
+ * Chance (1 + score²)·exp(−score²) for one cell, place and port. What is left of both chances
+ * together has to be below 10⁻⁸.
+ */
 const LEAST_REFERENCE_SCORE = 4;
+const MOST_CHANCE = 1e-8;
+/** Readings that are taken as far as the reference symbols. */
+const MOST_READINGS = 2;
 
 const CANDIDATES = 12;
 
@@ -72,34 +78,33 @@ function look(context: DetectionContext, at: { startSample: number; seconds: num
   if (!fits[0] || fits[0].score < LEAST_PREFIX_SCORE) {
     return { finding: null, tried: [{ what: 'LTE', result: 'no cyclic prefix of 15 kHz symbols' }], again: true };
   }
-  const found = findCell(window, fits, tried);
+  const readings = findCells(window, fits, tried);
   context.onProgress?.('lte', 0.7);
-  if (!found) return { finding: null, tried, again: fits[0].score < 20 };
-  const measured = measureCell(window, found.rows, found.sync);
-  if (!measured) {
-    tried.push({ what: `LTE cell ${found.sync.cellId}`, result: 'synchronisation signals fit, reference symbols do not' });
-    return { finding: null, tried, again: true };
+  for (const { rows, sync } of readings) {
+    const measured = measureCell(window, rows, sync);
+    if (measured) return { finding: lteFinding(context, window, measured), tried, again: measured.broadcast === null };
+    tried.push({ what: `LTE cell ${sync.cellId}`, result: 'synchronisation signals may fit, reference symbols do not' });
   }
-  return { finding: lteFinding(context, window, measured), tried, again: measured.broadcast === null };
+  return { finding: null, tried, again: true };
 }
 
 interface Found { readonly rows: Rows; readonly sync: CellSync }
 
-function findCell(window: NativeWindow, fits: readonly PrefixFit[], tried: Tried[]): Found | null {
+/** Readings of both synchronisation signals above the threshold, best first. */
+function findCells(window: NativeWindow, fits: readonly PrefixFit[], tried: Tried[]): Found[] {
+  const found: Found[] = [];
   for (const fit of fits) {
     // The other prefix overlaps the true one and may come out ahead in a short or noisy window.
     if (fit.score < Math.max(LEAST_PREFIX_SCORE, 0.5 * fits[0].score)) continue;
     const rows = symbolRows(window, { ...fit, offsetHz: fit.fractionHz, early: halfPrefix(fit.prefix, window.size) });
     const candidates = searchPrimary(rows, 10 * symbolsPerSlot(fit.prefix), CANDIDATES);
-    let best: CellSync | null = null;
-    for (const candidate of candidates) {
-      const sync = resolveSecondary(rows, candidate);
-      if (sync && (!best || sync.score > best.score)) best = sync;
+    const syncs = candidates.flatMap((candidate) => resolveSecondary(rows, candidate) ?? []).sort((a, b) => b.score - a.score);
+    if (!syncs[0] || syncs[0].score < LEAST_SECONDARY_SCORE) {
+      tried.push({ what: `LTE, ${fit.prefix} prefix`, result: `synchronisation signals below the threshold (${(syncs[0]?.score ?? 0).toFixed(1)} against ${LEAST_SECONDARY_SCORE})` });
     }
-    if (best && best.score >= LEAST_SECONDARY_SCORE) return { rows, sync: best };
-    tried.push({ what: `LTE, ${fit.prefix} prefix`, result: `synchronisation signals below the threshold (${(best?.score ?? 0).toFixed(1)} against ${LEAST_SECONDARY_SCORE})` });
+    found.push(...syncs.slice(0, MOST_READINGS).filter(({ score }) => score >= LEAST_SECONDARY_SCORE).map((sync) => ({ rows, sync })));
   }
-  return null;
+  return found.sort((a, b) => b.sync.score - a.sync.score).slice(0, MOST_READINGS);
 }
 
 /** Cuts the symbols anew on the cell's own timing, then measures reference symbols and reads the broadcast. */
@@ -111,7 +116,7 @@ function measureCell(window: NativeWindow, coarse: Rows, sync: CellSync): CellMe
   const place = { shift: 0, inverted: sync.inverted, frameSymbol: 0, duplex: sync.duplex };
   let rows = symbolRows(window, cut);
   const { port, first, score } = strongestPort(rows, references, place, Math.min(half, 36));
-  if (score < LEAST_REFERENCE_SCORE) return null;
+  if (score < LEAST_REFERENCE_SCORE || chanceOf(sync.score, score) > MOST_CHANCE) return null;
   const offsetHz = residualOffset(first, perSlot);
   cut = { ...cut, offsetHz: cut.offsetHz + (sync.inverted ? -offsetHz : offsetHz) };
   rows = symbolRows(window, cut);

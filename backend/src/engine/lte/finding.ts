@@ -148,8 +148,7 @@ const CHANNEL_HZ: Readonly<Record<number, number>> = { 6: 1.4e6, 15: 3e6, 25: 5e
  * reference symbols leaves next to nothing; without it the scores speak, never above 0.999.
  */
 function cellConfidence(cell: CellMeasurement): number {
-  const chance = 16_000 * Math.exp(-(cell.sync.score ** 2)) * Math.min(1, 4 * (1 + cell.referenceScore ** 2) * Math.exp(-(cell.referenceScore ** 2)));
-  return cell.broadcast ? 0.9999 : Math.min(0.999, 1 - 0.002 - Math.min(0.5, chance));
+  return cell.broadcast ? 0.9999 : 0.999 - Math.min(0.5, chanceOf(cell.sync.score, cell.referenceScore));
 }
 
 function notes(cell: CellMeasurement): Tried[] {
@@ -160,4 +159,11 @@ function notes(cell: CellMeasurement): Tried[] {
   }];
   if (!broadcast) out.push({ what: 'LTE broadcast with 1, 2 and 4 ports', result: 'no parity check passed' });
   return out;
+}
+
+/** Chance of a false cell in one capture: over candidates, readings and sequences, times that of its reference symbols on two ports in two readings. */
+export function chanceOf(secondaryScore: number, referenceScore: number): number {
+  const secondary = 16_000 * Math.exp(-(secondaryScore ** 2));
+  const reference = 4 * (1 + referenceScore ** 2) * Math.exp(-(referenceScore ** 2));
+  return Math.min(1, secondary) * Math.min(1, reference);
 }

@@ -136,11 +136,13 @@ function windowSums(squares: Float64Array): Float64Array {
   const n = squares.length;
   const at = (k: number) => squares[((k % n) + n) % n];
   const out = new Float64Array(n);
+  // Where the band is empty the running sum is rounding alone, of either sign: nothing stands out there.
+  const floor = 1e-6 * squares.reduce((a, b) => a + b, 0) * (60 / n) + 1e-30;
   let sum = 0;
   for (let k = -31; k < 31; k++) sum += at(k);
   for (let shift = 0; shift < n; shift++) {
     // The two products that touch DC carry nothing of the sequence.
-    out[shift] = sum - at(shift - 1) - at(shift) + 1e-30;
+    out[shift] = Math.max(floor, sum - at(shift - 1) - at(shift));
     sum += at(shift + 31) - at(shift - 31);
   }
   return out;
