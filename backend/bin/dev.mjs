@@ -33,8 +33,7 @@ async function begin(launcher) {
   const cluster = await openLocalCluster({ secrets: settled.secrets, guard, track });
   launcher.hold(cluster.part);
   Object.assign(settled.env, cluster.addresses);
-  await prepareDatabase({ ...settled, track });
-  await startLocalServices(launcher, settled);
+  await Promise.all([prepareDatabase({ ...settled, track }), startLocalServices(launcher, settled)]);
   await startProduct(launcher, { ...settled, mode: 'development' });
   await startPages(launcher, settled);
   await greet(settled);

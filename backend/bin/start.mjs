@@ -26,8 +26,7 @@ async function begin(launcher) {
     launcher.hold(cluster.part);
     Object.assign(settled.env, cluster.addresses);
   }
-  await prepareDatabase({ ...settled, track });
-  await startLocalServices(launcher, settled);
+  await Promise.all([prepareDatabase({ ...settled, track }), startLocalServices(launcher, settled)]);
   await startProduct(launcher, settled);
   await greet(settled);
 }
