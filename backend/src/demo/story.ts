@@ -45,5 +45,5 @@ export interface Story {
 export const plainYaml: SnapshotStyle = { words: 'plain', syntax: 'yaml', plain: { spelling: 'snake', units: 'in-name', numerology: false, grouped: true } };
 export const plainConf: SnapshotStyle = { words: 'plain', syntax: 'conf', plain: { spelling: 'snake', units: 'in-name', numerology: false, grouped: true } };
 export const plainJson: SnapshotStyle = { words: 'plain', syntax: 'json', plain: { spelling: 'camel', units: 'si', numerology: false, grouped: true } };
-export const standardJson: SnapshotStyle = { words: 'standard', syntax: 'json', xer: false, uplink: false };
-export const standardYaml: SnapshotStyle = { words: 'standard', syntax: 'yaml', xer: false, uplink: false };
+export const standardJson: SnapshotStyle = { words: 'standard', syntax: 'json', xer: false, uplinkShiftHz: null };
+export const standardYaml: SnapshotStyle = { words: 'standard', syntax: 'yaml', xer: false, uplinkShiftHz: null };
