@@ -31,7 +31,7 @@ export function earfcnHz(earfcn: number): number {
 export function drawLte(random: Random, wish: Wish): Drawn {
   if (wish.uplink) return drawUplink(random, wish);
   const band = random.pick(BANDS.filter((b) => wish.tdd === undefined || (b.duplex === 'tdd') === wish.tdd));
-  const options = ([6, 15, 25, 50, 75, 100] as const).filter((n) => LTE_BANDWIDTH_HZ[n] * 1.1 <= (wish.maxRateHz ?? Infinity));
+  const options = ([6, 15, 25, 50, 75, 100] as const).filter((n) => n === 6 || LTE_BANDWIDTH_HZ[n] * 1.1 <= (wish.maxRateHz ?? Infinity));
   const resourceBlocks = random.pick(options);
   const half = LTE_BANDWIDTH_HZ[resourceBlocks] / 2e5;
   const step = random.integer(Math.ceil(half), Math.floor(10 * (band.high - band.low) - half));
@@ -79,7 +79,7 @@ function downlinkAir(spec: LteSpec, capture: CaptureSpec): Record<string, AirExp
 
 function drawUplink(random: Random, wish: Wish): Drawn {
   const band = random.pick(BANDS);
-  const resourceBlocks = random.pick([25, 50, 100].filter((n) => LTE_BANDWIDTH_HZ[n] * 1.1 <= (wish.maxRateHz ?? Infinity)));
+  const resourceBlocks = random.pick([25, 50, 100].filter((n) => n === 25 || LTE_BANDWIDTH_HZ[n] * 1.1 <= (wish.maxRateHz ?? Infinity)));
   const earfcn = band.upFirst + random.integer(100, 10 * (band.high - band.low) - 100);
   const allocatedBlocks = random.pick([15, 20, 25, 50, 75, 100].filter((n) => n <= resourceBlocks));
   const spec: UplinkSpec = {

@@ -16,9 +16,9 @@ interface Channel {
   readonly blocks: number;
 }
 
-/** A downlink carrier of a band with its synchronisation blocks on the raster, recorded honestly. */
-export function drawNr(random: Random, wish: Wish): Drawn {
-  for (;;) {
+/** A downlink carrier of a band with its synchronisation blocks on the raster, recorded honestly; null where no band fits the wish. */
+export function drawNr(random: Random, wish: Wish): Drawn | null {
+  for (let tries = 0; tries < 1000; tries++) {
     const channel = drawChannel(random, wish);
     const placed = channel && place(random, channel);
     if (!channel || !placed) continue;
@@ -26,6 +26,7 @@ export function drawNr(random: Random, wish: Wish): Drawn {
     if (!spec) continue;
     return drawnFrom(random, wish, { channel, spec, gscn: placed.gscn });
   }
+  return null;
 }
 
 function drawChannel(random: Random, wish: Wish): Channel | null {

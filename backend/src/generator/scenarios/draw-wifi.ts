@@ -16,7 +16,7 @@ const PREFIX_WORD: Record<string, 'short' | 'normal' | 'double' | 'quadruple'> =
 export function drawWifi(random: Random, wish: Wish): Drawn {
   const format = wish.wifiFormat ?? random.pick(['legacy', 'ht', 'ht', 'vht', 'he'] as const);
   const clock = format === 'legacy' && random.chance(0.2) ? 0.5 : 1;
-  const widths = ([20, 40, 80] as const).filter((w) => w * 1e6 <= (wish.maxRateHz ?? 100e6) && (format === 'legacy' ? w === 20 : format !== 'ht' || w <= 40));
+  const widths = ([20, 40, 80] as const).filter((w) => (w === 20 || w * 1e6 <= (wish.maxRateHz ?? 100e6)) && (format === 'legacy' ? w === 20 : format !== 'ht' || w <= 40));
   const mhz = random.pick(widths);
   const guardUs = random.pick<number>(GUARDS[format]);
   const spec: WifiSpec = {

@@ -25,15 +25,16 @@ export interface ScenarioOptions extends Wish {
   readonly fault?: string;
 }
 
-/** A scenario by its number alone: the same seed and options, the same scenario. */
+/** A scenario by its number alone: the same seed and options, the same scenario. Throws RangeError where the options leave none. */
 export function randomScenario(seed: number, options: ScenarioOptions = {}): ScenarioSpec {
   const random = new Random(seed, 'scenario');
-  for (;;) {
+  for (let tries = 0; tries < 500; tries++) {
     const kind = options.kind ?? random.pick(['nr', 'nr', 'nr', 'nr', 'nr', 'lte', 'wifi', 'ofdm', 'lte-uplink', 'nothing'] as const);
     const relation = options.relation ?? random.pick(['clean', 'clean', 'one-wrong', 'one-wrong', 'one-wrong', 'one-wrong', 'agreed', 'one-sided', 'capture', 'snapshots-only', 'capture-only'] as const);
     const spec = attempt(random, { kind, relation, options, id: `s${seed}` });
     if (spec) return spec;
   }
+  throw new RangeError(`no scenario has ${JSON.stringify(options)}`);
 }
 
 interface Attempt {
@@ -49,11 +50,12 @@ function attempt(random: Random, { kind, relation, options, id }: Attempt): Scen
   const fault = relation === 'clean' || relation === 'capture-only' ? null : pickFault(random, kind, options.fault);
   if (fault === undefined) return null;
   const drawn = draw(random, kind, { ...fault?.wish?.(random), ...(kind === 'lte-uplink' ? { uplink: true } : {}), ...options });
+  if (!drawn) return null;
   if (relation === 'capture-only') return { ...frame(random, drawn, { id, group: 'capture-only', about: 'no snapshot' }), sideA: null, sideB: null, expect: { hint: null, allowed: [], air: drawn.air } };
   return fault ? withFault(random, { drawn, fault, relation, id }) : clean(random, drawn, id);
 }
 
-function draw(random: Random, kind: ScenarioKind, wish: Wish): Drawn {
+function draw(random: Random, kind: ScenarioKind, wish: Wish): Drawn | null {
   switch (kind) {
     case 'nr': return drawNr(random, wish);
     case 'lte': return drawLte(random, wish);
@@ -119,8 +121,8 @@ function captureAtFault(random: Random, { kind, options, id }: Omit<Attempt, 're
   if (fitting.length === 0) return null;
   const fault = random.pick(fitting);
   const drawn = draw(random, kind, { ...options, inverted: false });
-  const capture = fault.apply(drawn.capture, random);
-  if (!capture) return null;
+  const capture = drawn && fault.apply(drawn.capture, random);
+  if (!drawn || !capture) return null;
   const wish: SideWish = { must: [], never: fault.never, standard: true };
   const whole = capture.signal.kind === 'nr' ? { ...drawn.air, ...nrAir(capture) } : drawn.air;
   const air = Object.fromEntries(Object.entries(whole).filter(([name]) => !fault.drops.includes(name)));
@@ -134,7 +136,7 @@ function captureAtFault(random: Random, { kind, options, id }: Omit<Attempt, 're
 /** Nothing that a decode could measure, while both sides say what they were set to. */
 function nothingThere(random: Random, options: ScenarioOptions, id: string): ScenarioSpec {
   const drawn = drawNotOfdm(random, options);
-  const { declared } = drawNr(random, {});
+  const declared = drawNr(random, {})?.declared ?? {};
   const everyone: HintSide[] = ['a', 'b', 'capture', 'unknown', 'both'];
   return {
     ...frame(random, drawn, { id, group: 'no-ofdm', about: 'nothing may be claimed' }), transmitter: null,
