@@ -5,40 +5,50 @@ import { duration, frequency, grouped, number, sampleRate } from './units.js';
 /** Labels and values of settings as the trade writes them; the wire carries SI. */
 
 const spaced = (name: string): string => {
-  const words = name.replace(/([a-z\d])([A-Z])/g, '$1 $2').toLowerCase();
+  const words = name.replace(/([a-z\d])([A-Z])/g, '$1 $2').toLowerCase().replace(/\b(ssb|mib|sib1|pdcch|tdd|evm)\b/g, (w) => w.toUpperCase()).replace(/\bdmrs\b/, 'DM-RS');
   return words.charAt(0).toUpperCase() + words.slice(1);
 };
 
-/** What the air shows beside the common parameters: name to label and the unit in which it travels. */
-const AIR: Record<string, readonly [label: string, unit: 'Hz' | 's' | 'dB' | '%' | 'ppm' | null]> = {
-  technology: ['Radio technology', null],
-  subcarrierSpacingHz: ['Subcarrier spacing', 'Hz'],
-  usefulSymbolS: ['Useful symbol', 's'],
-  cyclicPrefix: ['Cyclic prefix', null],
-  cyclicPrefixS: ['Cyclic prefix, length', 's'],
-  carrierOffsetHz: ['Carrier offset', 'Hz'],
-  occupiedBandwidthHz: ['Occupied bandwidth (99 %)', 'Hz'],
-  resourceBlocks: ['Resource blocks', null],
-  snrDb: ['Signal-to-noise ratio', 'dB'],
-  evmPercent: ['Error vector magnitude', '%'],
-  evmRandomPercent: ['EVM that random points would give', '%'],
-  physicalCellId: ['Physical cell identity', null],
-  ssbSubcarrierSpacingHz: ['Spacing of the synchronisation block', 'Hz'],
-  ssbFrequencyHz: ['Synchronisation block, frequency', 'Hz'],
-  kSsb: ['Subcarrier offset of the block (k_SSB)', null],
-  systemFrameNumber: ['System frame number', null],
-  mib: ['Master information block', null],
-  spectrumInverted: ['Spectrum inverted', null],
-  phaseCompensation: ['Per-symbol phase compensation', null],
-  halfSubcarrierShift: ['7.5 kHz shift', null],
-  sampleClockOffsetPpm: ['Sample-clock offset', 'ppm'],
-  tddPattern: ['Downlink/uplink pattern', null],
-  dcOffsetDb: ['DC to signal power', 'dB'],
-  iqImbalanceDb: ['Image to signal power', 'dB'],
+/** What the air shows, in the order in which it is read; the unit stands at the end of each name. */
+const AIR: Record<string, string> = {
+  technology: 'Radio technology',
+  frameFormat: 'Frame format',
+  subcarrierSpacingHz: 'Subcarrier spacing',
+  usefulSymbolS: 'Useful symbol',
+  cyclicPrefix: 'Cyclic prefix',
+  cyclicPrefixS: 'Cyclic prefix, length',
+  carrierOffsetHz: 'Carrier offset',
+  occupiedBandwidthHz: 'Occupied bandwidth (99 %)',
+  channelBandwidthHz: 'Channel bandwidth',
+  resourceBlocks: 'Resource blocks',
+  snrDb: 'Signal-to-noise ratio',
+  evmPercent: 'Error vector magnitude',
+  evmRandomPercent: 'EVM that random points would give',
+  physicalCellId: 'Physical cell identity',
+  ssbSubcarrierSpacingHz: 'Spacing of the synchronisation block',
+  ssbFrequencyHz: 'Synchronisation block, frequency',
+  ssbOffsetHz: 'Synchronisation block, from the centre',
+  kSsb: 'Subcarrier offset of the block (k_SSB)',
+  systemFrameNumber: 'System frame number',
+  mib: 'Master information block',
+  tddPattern: 'Downlink/uplink pattern',
+  spectrumInverted: 'Spectrum inverted',
+  phaseCompensation: 'Per-symbol phase compensation',
+  halfSubcarrierShift: '7.5 kHz shift',
+  sampleClockOffsetPpm: 'Sample-clock offset',
+  dcOffsetDb: 'DC to signal power',
+  iqImbalanceDb: 'Image to signal power',
 };
+const AIR_ORDER = Object.keys(AIR);
+const placeOf = (name: string): number => (AIR_ORDER.includes(name) ? AIR_ORDER.indexOf(name) : AIR_ORDER.length);
+/** Names of the air record in reading order; what this list does not know stands last. */
+export const inAirOrder = (names: readonly string[]): string[] => names.toSorted((x, y) => placeOf(x) - placeOf(y) || x.localeCompare(y));
+
+const UNIT = /(Hz|Db|Percent|Ppm|S)$/;
+const unitOf = (name: string): string | undefined => (name.length > 1 ? UNIT.exec(name)?.[1] : undefined);
 
 export const parameterLabel = (name: string): string => parameterFacts(name)?.label ?? spaced(name);
-export const airLabel = (name: string): string => AIR[name]?.[0] ?? spaced(name);
+export const airLabel = (name: string): string => AIR[name] ?? spaced(name.replace(UNIT, ''));
 
 function quantity(value: number, { type, unit }: ParameterFacts): string {
   switch (type) {
@@ -74,12 +84,22 @@ export function settingText(name: string, value: SettingValue): string {
 
 /** A value of the decode's `air` record, whose unit stands in its name. */
 export function airText(name: string, value: SettingValue): string {
-  const unit = AIR[name]?.[1];
-  if (typeof value !== 'number' || !unit) return plain(value);
-  if (unit === 'Hz') return frequency(value);
-  if (unit === 's') return duration(value);
-  return `${number(value, 2)} ${unit}`;
+  if (typeof value !== 'number') return plain(value);
+  switch (unitOf(name)) {
+    case 'Hz': return frequency(value);
+    case 'S': return duration(value);
+    case 'Db': return `${number(value, 1)} dB`;
+    case 'Percent': return `${number(value, 2)} %`;
+    case 'Ppm': return `${number(value, 3)} ppm`;
+    default: return number(value);
+  }
 }
+
+/** The parts of a value that has several, each under its name. */
+export const partsOf = (value: SettingValue): [string, string][] | null =>
+  value !== null && typeof value === 'object' && !Array.isArray(value)
+    ? Object.entries(value).map(([key, v]) => [spaced(key.replace(UNIT, '')), airText(key, v as SettingValue)])
+    : null;
 
 /** Whether two values say the same number or word, within what a measurement can tell. */
 export function sameSetting(x: SettingValue, y: SettingValue): boolean {

@@ -1,5 +1,5 @@
 import { useQuery } from '@tanstack/react-query';
-import { useState } from 'react';
+import { useState, type ReactNode } from 'react';
 import type { Issue } from '#shared/api/issues';
 import type { Decode, DecodeSummary, IssueHint } from '#shared/api/decodes';
 import type { StoredFile } from '#shared/api/files';
@@ -46,23 +46,24 @@ function Hints({ hints }: { hints: readonly IssueHint[] }) {
   return <section aria-label="Likely mismatch" className="hints">{hints.map((h, k) => <HintCard key={h.id} hint={h} first={k === 0} />)}</section>;
 }
 
-function Shown({ issue, decode }: { issue: Issue; decode: Decode }) {
+function Shown({ issue, decode, between }: { issue: Issue; decode: Decode; between: ReactNode }) {
   const { result, hints } = decode;
-  if (!result) return null;
+  if (!result) return <>{between}</>;
   return (
     <>
       {decode.inputWithdrawn && <p className="notice waits mb-4">A file that decode {decode.number} used has been withdrawn since; what was derived from it is gone.</p>}
       {hints.length > 0 ? <Hints hints={hints} /> : <NoMismatch number={decode.number} lookNext={result.lookNext} />}
       {result.comparison.length > 0 && <TieSheet rows={result.comparison} hints={hints} air={result.air} files={{ a: snapshotName(issue, 'a'), b: snapshotName(issue, 'b') }} note={reachNote(issue)} />}
       <Evidence decode={decode} />
+      {between}
       <Findings result={result} />
       {hints.length > 0 && result.lookNext.length > 0 && <section className="section sheet no-mismatch"><LookNext lookNext={result.lookNext} /></section>}
     </>
   );
 }
 
-/** What runs, what was found, and the way to ask for more. */
-export function IssueDecode({ issue }: { issue: Issue }) {
+/** What runs, what was found, and the way to ask for more. `between` stands between the evidence and the long tables. */
+export function IssueDecode({ issue, between }: { issue: Issue; between: ReactNode }) {
   const { shown, choose, ended, decode } = useShownDecode(issue);
   const [asking, ask] = useState(false);
   const newest = issue.decodes.toSorted((x, y) => y.number - x.number)[0];
@@ -70,8 +71,9 @@ export function IssueDecode({ issue }: { issue: Issue }) {
     <>
       {issue.decodes.filter(running).map((d) => <Running key={d.id} summary={d} />)}
       {newest?.state === 'failed' && <DecodeFailed decode={newest} />}
-      {decode && <Shown issue={issue} decode={decode} />}
+      {decode && <Shown issue={issue} decode={decode} between={between} />}
       {issue.decodes.length === 0 && <Section title="Decode"><p className="sheet empty">No decode yet. Put a capture or the snapshots of both sides on the issue, then decode them.</p></Section>}
+      {!decode && between}
       <div className="decode-tools no-print">
         {shown && <DecodeChoice decodes={ended} shown={shown} choose={choose} />}
         {issue.actions.decode && !asking && <button type="button" className="button" onClick={() => ask(true)}>{issue.decodes.length ? 'Decode again' : 'Decode'}</button>}

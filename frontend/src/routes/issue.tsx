@@ -55,8 +55,7 @@ function OpenIssue(name: { programme: string; number: string }) {
       <StageMoves issue={issue} parties={issue.parties} formPlaces={{ retests: 'retests' }} />
       <div className="issue-columns">
         <div className="issue-main">
-          <IssueDecode issue={issue} />
-          <Particulars issue={issue} />
+          <IssueDecode issue={issue} between={<Particulars issue={issue} />} />
           <Retests issue={issue} id="retests" />
           <IssueFiles issue={issue} />
         </div>

@@ -18,6 +18,8 @@ function DeclaredCell({ side, row, end, file, places }: { side: 'a' | 'b'; row: 
   const other = row[side === 'a' ? 'b' : 'a'];
   const classes = `tie-${side} ${end === 'broken' || end === 'off-standard' ? 'at-odds' : ''}`;
   if (!value) return <td role="cell" className={`${classes} silent`}>{other ? 'does not say' : '—'}</td>;
+  // A compare-only snapshot's own row: that it is declared shows, what is declared does not.
+  if (value.value === null) return <td role="cell" className={`${classes} silent`}>declared by side {side.toUpperCase()}</td>;
   const odd = end !== 'whole';
   return (
     <td role="cell" className={classes}>

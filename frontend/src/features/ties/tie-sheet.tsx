@@ -8,11 +8,28 @@ import { TieRow } from './tie-row.js';
 /** Shown beside a value: the display name of the file that it stands in, where the reader may see it. */
 export interface SnapshotNames { a: string | null; b: string | null }
 const SHORT_ENOUGH = 4;
+const MOST_HANGING = 5;
 
 function tally(ties: readonly Tied[]): string {
   const off = countOf(ties, 'off-standard');
   return [`${countOf(ties, 'broken')} broken`, off ? `${off} off standard` : '', counted(countOf(ties, 'hangs'), 'hangs', 'hang'), counted(countOf(ties, 'holds'), 'holds', 'hold')]
     .filter(Boolean).join(' · ');
+}
+
+/** What shows at once: all that is broken or off standard, some that hang, a few that hold. */
+function shortList(ties: readonly Tied[]): readonly Tied[] {
+  const of = (...kinds: Tied['standing']['kind'][]): Tied[] => ties.filter((t) => kinds.includes(t.standing.kind));
+  const odd = of('broken', 'off-standard');
+  const hanging = of('hangs').slice(0, MOST_HANGING);
+  const holding = of('holds');
+  const some = holding.slice(0, odd.length + hanging.length > 0 ? 2 : SHORT_ENOUGH);
+  const short = [...odd, ...hanging, ...some];
+  return ties.length - short.length < 2 ? ties : short;
+}
+
+function folded(ties: readonly Tied[], short: readonly Tied[]): string {
+  const more = (kind: Tied['standing']['kind']): number => countOf(ties, kind) - countOf(short, kind);
+  return [more('hangs') ? `${more('hangs')} more that hang` : '', more('holds') ? `${more('holds')} more that hold` : ''].filter(Boolean).join(', ');
 }
 
 function Head() {
@@ -36,11 +53,9 @@ export function TieSheet({ rows, hints, air, files, note }: {
   const [unfolded, unfold] = useState(false);
   const [places, showPlaces] = useState(false);
   const ties = inOrder(rows, hints);
-  const holding = ties.filter((t) => t.standing.kind === 'holds');
-  const odd = ties.filter((t) => t.standing.kind !== 'holds');
-  const folds = holding.length > SHORT_ENOUGH;
-  const shown = unfolded || !folds ? ties : [...odd, ...holding.slice(0, odd.length ? 2 : SHORT_ENOUGH)];
-  const folded = ties.length - shown.length;
+  const short = shortList(ties);
+  const folds = short.length < ties.length;
+  const shown = unfolded ? ties : short;
   return (
     <Section title="Tie sheet" aside={tally(ties)}
       end={<button type="button" className="text-button" aria-pressed={places} onClick={() => showPlaces(!places)}>{places ? 'Hide where each value stood' : 'Show where each value stood'}</button>}>
@@ -52,7 +67,7 @@ export function TieSheet({ rows, hints, air, files, note }: {
           </tbody>
         </table>
         <div className="ties-foot">
-          {folds ? <button type="button" className="text-button no-print" aria-expanded={unfolded} onClick={() => unfold(!unfolded)}>{unfolded ? 'Fold what holds' : `${folded} more that hold`}</button> : <span />}
+          {folds ? <button type="button" className="text-button no-print" aria-expanded={unfolded} onClick={() => unfold(!unfolded)}>{unfolded ? 'Fold what holds and hangs' : folded(ties, short)}</button> : <span />}
           <span>{note}</span>
         </div>
       </div>
