@@ -1,5 +1,7 @@
 import { welch } from '../spectrum/welch.js';
+import { periodOf } from './hypotheses.js';
 import { lagSums } from './lag-sums.js';
+import { template } from './match.js';
 import type { Prepared } from './prepare.js';
 import { rescore, type Scored } from './score.js';
 
@@ -18,6 +20,14 @@ const LEAST_KURTOSIS = 1.5;
 /** Off the right lag by more than the band's correlation time a prefix is gone; a tone, a sweep or a line is not. */
 const BESIDE = 0.5;
 const MOST_PEAK_SHARE = 0.9;
+/** Correlation cannot exceed power, but for scatter. */
+const MOST_RHO = 1.25;
+const MOST_UNEVEN = 1.7;
+/** One resource block is 12; a pulse or a tone spans one or two. */
+const FEWEST_SUBCARRIERS = 6;
+/** All of an OFDM signal repeats in its prefix, so that this is S / (S + N), less where two numerologies share the window. */
+const LEAST_RHO = 0.08;
+const LEAST_FREE_RHO = 0.3;
 
 export interface Credibility {
   readonly credible: boolean;
@@ -29,8 +39,12 @@ export function credibility(window: Prepared, scored: Scored): Credibility {
   const need = (scored.hypothesis.family === 'free' ? FREE : LISTED) + PER_BURST * (Math.sqrt(spans) - 1);
   if (!scored.best || !(scored.score > need)) return no(`evidence ${scored.score.toFixed(1)} below ${need.toFixed(1)}`);
   if (scored.best.match.peakShare > MOST_PEAK_SHARE) return no('one tone in the products');
+  if (!evenPower(window, scored)) return no('the power follows the symbol, as in pulses');
   if (kurtosis(window) < LEAST_KURTOSIS) return no('the envelope is too constant for OFDM');
-  const besides = beside(window, scored);
+  const bandwidth = effectiveBandwidth(window);
+  if (bandwidth * scored.hypothesis.usefulS < FEWEST_SUBCARRIERS) return no('the band is too narrow for several subcarriers');
+  if (scored.rho < (scored.hypothesis.family === 'free' ? LEAST_FREE_RHO : LEAST_RHO)) return no('too little of the signal repeats');
+  const besides = beside(window, scored, bandwidth);
   if (besides > BESIDE) return no('the correlation does not belong to one lag');
   return { credible: true, reason: null };
 }
@@ -54,12 +68,32 @@ export function kurtosis({ iq, on }: Prepared): number {
   return second > 0 ? (fourth * count) / (second * second) : 2;
 }
 
+/** A prefix is as strong as the rest of its symbol; pulses that recur are not. */
+function evenPower(window: Prepared, { best, sums, hypothesis, rho }: Scored): boolean {
+  if (!best || rho > MOST_RHO) return false;
+  const bins = 256;
+  const period = (periodOf(hypothesis) * window.rateHz) / sums.hop;
+  const mask = template(hypothesis, bins);
+  let inside = 0;
+  let insideWeight = 0;
+  let all = 0;
+  for (let b = best.span.from; b < best.span.to; b++) {
+    const turns = (b + 0.5 - best.origin) / period - best.match.phase;
+    const weight = mask[Math.floor((turns - Math.floor(turns)) * bins)];
+    inside += weight * sums.power[b];
+    insideWeight += weight;
+    all += sums.power[b];
+  }
+  const ratio = (inside / insideWeight) / (all / (best.span.to - best.span.from));
+  return ratio > 1 / MOST_UNEVEN && ratio < MOST_UNEVEN;
+}
+
 /**
  * The greater score at the two lags beside, over the score itself; the least of three distances,
  * since a carrier of which few blocks are in use correlates over a longer time than its band says.
  */
-function beside(window: Prepared, scored: Scored): number {
-  const unit = window.rateHz / effectiveBandwidth(window);
+function beside(window: Prepared, scored: Scored, bandwidthHz: number): number {
+  const unit = window.rateHz / bandwidthHz;
   let least = Infinity;
   for (const distance of [1.6, 3.2, 6.4].map((f) => Math.max(2, Math.round(f * unit)))) {
     const scores = [-distance, distance].map((d) => {
