@@ -76,6 +76,8 @@ export interface Finding {
   readonly basis: Basis;
   /** Parameters that differ only because of this one. */
   readonly consequences: readonly string[];
+  /** Other parameters of a combination: a finding about one of them explains this one. */
+  readonly restsOn?: readonly string[];
 }
 
 /** One rule: what it looks at stands above it; an empty list where it finds nothing. */

@@ -10,10 +10,10 @@ export interface SidedPattern {
 
 /** Each declared downlink-uplink pattern against the level of every symbol; empty without a frame's start. */
 export function declaredPatterns(look: Look, declared: { readonly a: DeclaredSettings | null; readonly b: DeclaredSettings | null }): SidedPattern[] {
-  const frameStart = look.choice.finding?.air['frameStartSample']?.value;
+  const frameStartS = look.choice.finding?.air['frameStartS']?.value;
   const grid = look.choice.finding?.grid;
-  if (typeof frameStart !== 'number' || !grid || (!declared.a?.tddPattern && !declared.b?.tddPattern)) return [];
-  const levels = symbolLevels(look.window, { startSample: frameStart, spacingHz: grid.subcarrierSpacingHz });
+  if (typeof frameStartS !== 'number' || !grid || (!declared.a?.tddPattern && !declared.b?.tddPattern)) return [];
+  const levels = symbolLevels(look.window, { startSample: frameStartS * look.source.sampleRateHz, spacingHz: grid.subcarrierSpacingHz });
   return (['a', 'b'] as const).flatMap((side) => {
     const pattern = declared[side]?.tddPattern;
     return pattern ? [{ side, ...patternLikelihood(levels, pattern) }] : [];

@@ -2,6 +2,7 @@ import type { CaptureFacts } from '#shared/decode';
 import { look, type Look, type LookOptions } from './look.js';
 import { from, type Recording } from './recording.js';
 import { suspectRate } from './rate-label.js';
+import { plausible } from './plausible.js';
 import { chooseWindows } from '../level/windows.js';
 import { estimateOfdm } from '../sync/estimate.js';
 import type { SampleSource, Tried } from '../types.js';
@@ -31,7 +32,7 @@ export function readThroughDoubt(recording: Recording, options: LookOptions): Do
   const plain = lookAround(recording.source, recording.facts, options);
   const rate = otherRate(recording, plain, options);
   if (rate) return rate;
-  if (plain.choice.technology !== null && !improbableLevels(plain)) return { look: plain, labels: [], tried: plain.tried };
+  if (plain.choice.technology !== null && plausible(recording.source)) return { look: plain, labels: [], tried: plain.tried };
   return otherFormat(recording, plain, options) ?? { look: plain, labels: [], tried: [...plain.tried, ...formatsTried(recording)] };
 }
 
@@ -40,10 +41,10 @@ const FURTHER_PLACES = 2;
 /** The start of the capture, then the strongest places further on. */
 function lookAround(source: SampleSource, facts: CaptureFacts, options: LookOptions): Look {
   const first = look(source, facts, options);
-  if (first.choice.technology !== null) return first;
+  if (first.choice.finding !== null) return first;
   for (const start of chooseWindows(source).slice(1, 1 + FURTHER_PLACES)) {
     const later = look(from(source, start), facts, options);
-    if (later.choice.technology !== null) return later;
+    if (later.choice.finding !== null || (first.choice.technology === null && later.choice.technology !== null)) return later;
   }
   return first;
 }
@@ -85,17 +86,31 @@ const GLANCE_S = 0.006;
 const GLANCE_CONFIDENCE = 0.9;
 
 function otherFormat(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
-  const glances = recording.datatypes.map((datatype) => ({ datatype, ...glance(recording.under({ datatype })) })).filter((g) => g.confidence > GLANCE_CONFIDENCE)
+  const glances = likelyFormats(recording).map((datatype) => ({ datatype, ...glance(recording.under({ datatype })) })).filter((g) => g.confidence > GLANCE_CONFIDENCE)
     .sort((x, y) => y.score - x.score);
   for (const { datatype } of glances.slice(0, 2)) {
     const source = recording.under({ datatype });
     const found = lookAround(source, { ...recording.facts, datatype, samples: source.samples, durationS: source.samples / source.sampleRateHz }, options);
-    if (found.choice.technology === null || improbableLevels(found)) continue;
+    if (found.choice.technology === null) continue;
     const stated = recording.facts.datatype ?? 'another format';
     const label: ChangedLabel = { property: 'format', stated, found: datatype, proof: `read as ${stated} nothing repeats as a symbol does; read as ${datatype} it decodes`, confidence: found.choice.finding ? 0.97 : 0.93 };
     return { look: found, labels: [label], tried: [...plain.tried, { what: `samples read as ${datatype}`, result: `${found.choice.technology} decodes` }, ...found.tried] };
   }
   return null;
+}
+
+/**
+ * Datatypes under which the bytes look like a received signal. Narrow samples read as wide ones
+ * look like one too (the upper half decides), wide ones read as narrow do not: so a plausible
+ * plain reading leaves only narrower ones to try.
+ */
+function likelyFormats(recording: Recording): readonly string[] {
+  const most = plausible(recording.source) ? widthOf(recording.facts.datatype ?? '') - 1 : Infinity;
+  return recording.datatypes.filter((datatype) => widthOf(datatype) <= most && plausible(recording.under({ datatype })));
+}
+
+function widthOf(datatype: string): number {
+  return Number(/\d+/.exec(datatype)?.[0] ?? 64);
 }
 
 function glance(source: SampleSource): { confidence: number; score: number } {
@@ -107,19 +122,5 @@ function glance(source: SampleSource): { confidence: number; score: number } {
 }
 
 function formatsTried(recording: Recording): Tried[] {
-  return recording.datatypes.length === 0 ? [] : [{ what: `samples read as ${recording.datatypes.join(', ')}`, result: 'nothing repeats as a symbol does' }];
-}
-
-/**
- * Values that avoid zero: what a signed signal read as unsigned looks like, or the other way
- * round. The fourth moment over the squared second is 3 for OFDM's normal values, 1 for two rails.
- */
-function improbableLevels({ window }: Look): boolean {
-  let second = 0, fourth = 0;
-  for (const value of window.iq) {
-    second += value * value;
-    fourth += value ** 4;
-  }
-  const n = window.iq.length;
-  return n > 0 && second > 0 && (fourth / n) / (second / n) ** 2 < 1.4 && second / n > 0.3;
+  return recording.datatypes.length === 0 ? [] : [{ what: `samples read as ${recording.datatypes.join(', ')}`, result: 'the values do not look like a received signal, or nothing repeats as a symbol does' }];
 }

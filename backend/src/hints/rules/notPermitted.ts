@@ -20,7 +20,7 @@ function onParameter(evidence: Evidence, parameter: string): Finding | null {
   if (!row || !first || (first.yieldsToDifference && row.verdict === 'differ')) return null;
   const side: HintSide = items.a && items.b ? 'both' : items.a ? 'a' : 'b';
   const basis = basisOf(row, evidence, { pattern: 'not-permitted', measurement: null });
-  return { code: 'not-permitted', side, probability: SURE, basis: { ...basis, clause: first.clause, sideFacts: factsOf(items) }, consequences: [] };
+  return { code: 'not-permitted', side, probability: SURE, basis: { ...basis, clause: first.clause, sideFacts: factsOf(items) }, consequences: [], restsOn: first.together ?? [] };
 }
 
 function factsOf(items: Record<Side, NotPermitted | undefined>): Partial<Record<Side, readonly string[]>> {

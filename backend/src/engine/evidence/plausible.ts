@@ -1,0 +1,33 @@
+import type { SampleSource } from '../types.js';
+
+const SAMPLES = 32_768;
+
+/**
+ * Do the values look like a received signal? I and Q of any modulation that fills its band are
+ * close to normal (fourth moment over the squared second: 3; more where the signal pauses) and
+ * equally strong. Bytes read in the wrong order or width are not: uniform (1.8), two rails (1),
+ * floats of every size, or I and Q unlike each other.
+ */
+export function plausible(source: SampleSource): boolean {
+  const count = Math.min(SAMPLES, source.samples);
+  const iq = source.read(Math.floor((source.samples - count) / 2), count);
+  const i = shape(iq, 0);
+  const q = shape(iq, 1);
+  if (!(i.power > 0) || !(q.power > 0)) return false;
+  const alike = Math.abs(Math.log(i.power / q.power)) < Math.log(2);
+  return alike && [i, q].every(({ kurtosis }) => kurtosis > 2.05 && kurtosis < 300);
+}
+
+/** Power and the fourth moment over its square, of I (0) or Q (1), without their mean. */
+function shape(iq: Float32Array, first: 0 | 1): { power: number; kurtosis: number } {
+  const n = iq.length / 2;
+  let mean = 0;
+  for (let k = first; k < iq.length; k += 2) mean += iq[k]! / n;
+  let second = 0, fourth = 0;
+  for (let k = first; k < iq.length; k += 2) {
+    const square = (iq[k]! - mean) * (iq[k]! - mean);
+    second += square / n;
+    fourth += (square * square) / n;
+  }
+  return { power: second, kurtosis: fourth / (second * second) };
+}
