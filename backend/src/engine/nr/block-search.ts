@@ -26,12 +26,13 @@ export interface FoundBlock {
  * together lie 20 nepers above the best of the search's 1e7 places, which is a false block in
  * fewer than one of 1e7 searches.
  */
+const PRIMARY = 12;
 const SECONDARY = 12;
 const REFERENCE = 20;
 const TOGETHER = 50;
 /** A window this clear is looked into at once, before the search goes on. */
 const CLEAR = 30;
-const CANDIDATES = 40;
+const CANDIDATES = 250;
 
 /** The work signal in both senses; the second is made when it is first asked for. */
 export class BothSenses {
@@ -63,7 +64,7 @@ export function searchBlock(senses: BothSenses, scan: PrimaryScan, plan: WindowP
     const found = firstBlock(senses, { scan, tried, hits: scan.ranked(4).flat().filter((hit) => hit.statistic > CLEAR) });
     if (found) return found;
   }
-  return firstBlock(senses, { scan, tried, hits: scan.ranked(CANDIDATES).flat().filter((hit) => hit.statistic > 6) });
+  return firstBlock(senses, { scan, tried, hits: scan.ranked(CANDIDATES).flat().filter((hit) => hit.statistic > 7.5) });
 }
 
 function firstBlock(senses: BothSenses, { scan, tried, hits }: { scan: PrimaryScan; tried: Set<string>; hits: readonly PrimaryHit[] }): FoundBlock | null {
@@ -82,7 +83,7 @@ export function blockAt(senses: BothSenses, spacingHz: number, hit: Pick<Primary
   const work = senses.in(hit.inverted);
   const fix = fixPrimary(work, spacingHz, { ...hit, referenceHz: hit.inverted ? -hit.referenceHz : hit.referenceHz });
   const grid = fix && blockGrid(work, { spacingHz, sample: fix.sample, referenceHz: fix.referenceHz });
-  if (!fix || !grid) return null;
+  if (!fix || !grid || fix.statistic < PRIMARY) return null;
   const cell = matchCells(grid, fix.nId2).reduce((a, b) => (b.statistic > a.statistic ? b : a));
   if (cell.statistic < SECONDARY) return null;
   const reference = bestReference(grid, cell.cellId);

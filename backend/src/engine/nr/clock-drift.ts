@@ -15,11 +15,15 @@ const STEP = 1 / 2048;
 export function clockDrift(cell: Cell): ClockDrift | null {
   const [first, ...rest] = cell.blocks;
   if (!first || rest.length === 0) return null;
-  const points = [{ timeS: 0, delayS: 0, sigmaS: sigmaOf(first, first, cell) }, ...rest.map((block) => ({
-    timeS: block.usefulS - first.usefulS,
-    delayS: delayBetween(first, block) / cell.spacingHz,
-    sigmaS: sigmaOf(first, block, cell),
-  }))];
+  const points = [{ timeS: 0, delayS: 0, sigmaS: sigmaOf(first, first, cell.spacingHz) }, ...rest.map((block) => {
+    const { delay, changed } = delayBetween(first, block);
+    const wander = spreadOf(first) * Math.sqrt(2 * changed);
+    return {
+      timeS: block.usefulS - first.usefulS,
+      delayS: delay / cell.spacingHz,
+      sigmaS: Math.hypot(sigmaOf(first, block, cell.spacingHz), wander / cell.spacingHz),
+    };
+  })];
   const weights = points.map((p) => 1 / p.sigmaS ** 2);
   const whole = weights.reduce((a, b) => a + b, 0);
   const meanTime = points.reduce((sum, p, i) => sum + weights[i] * p.timeS, 0) / whole;
@@ -28,8 +32,11 @@ export function clockDrift(cell: Cell): ClockDrift | null {
   return { ppm: -slope * 1e6, sigmaPpm: 1e6 / Math.sqrt(spread) };
 }
 
-/** Delay of a block's channel against the first's, useful parts: the peak of their cross-correlation over delay. */
-function delayBetween(first: KnownBlock, block: KnownBlock): number {
+/**
+ * Delay of a block's channel against the first's, useful parts: the peak of their cross-correlation
+ * over delay; and the share of the channel's power that changed meanwhile, noise allowed for.
+ */
+function delayBetween(first: KnownBlock, block: KnownBlock): { delay: number; changed: number } {
   const products = new Float64Array(2 * BLOCK_SUBCARRIERS);
   const a = first.fit.gains;
   const b = block.fit.gains;
@@ -42,7 +49,25 @@ function delayBetween(first: KnownBlock, block: KnownBlock): number {
   const at = powers.indexOf(Math.max(...powers));
   const [left, top, right] = [powers[at - 1] ?? 0, powers[at], powers[at + 1] ?? 0];
   const bend = left - 2 * top + right;
-  return -REACH + STEP * (at + (bend < 0 ? (0.5 * (left - right)) / bend : 0));
+  const likeness = top / (BLOCK_SUBCARRIERS ** 2 * first.fit.signalPower * block.fit.signalPower);
+  return {
+    delay: -REACH + STEP * (at + (bend < 0 ? (0.5 * (left - right)) / bend : 0)),
+    changed: Math.max(0, Math.min(1, 1 - likeness)),
+  };
+}
+
+/** Root mean square spread of the channel's delays, useful parts, from how fast its gain changes over four subcarriers. */
+function spreadOf({ fit }: KnownBlock): number {
+  const apart = 4;
+  let re = 0;
+  let im = 0;
+  for (let i = 0; i < 2 * (BLOCK_SUBCARRIERS - apart); i += 2) {
+    const j = i + 2 * apart;
+    re += fit.gains[j] * fit.gains[i] + fit.gains[j + 1] * fit.gains[i + 1];
+    im += fit.gains[j + 1] * fit.gains[i] - fit.gains[j] * fit.gains[i + 1];
+  }
+  const likeness = Math.hypot(re, im) / ((BLOCK_SUBCARRIERS - apart) * fit.signalPower);
+  return Math.sqrt(2 * Math.max(0, 1 - likeness)) / (2 * Math.PI * apart);
 }
 
 function powerAt(products: Float64Array, delay: number): number {
@@ -62,10 +87,10 @@ function powerAt(products: Float64Array, delay: number): number {
  * each; their mean square distance from the middle is 240²/12), with a floor of 2e-5 useful
  * parts for what the channel does meanwhile.
  */
-function sigmaOf(first: KnownBlock, block: KnownBlock, cell: Cell): number {
+function sigmaOf(first: KnownBlock, block: KnownBlock, spacingHz: number): number {
   const noise = (fit: KnownBlock['fit']) => fit.noisePower / fit.signalPower / 3.5;
   const perGain = noise(first.fit) + noise(block.fit);
   const rmsDistance = BLOCK_SUBCARRIERS / Math.sqrt(12);
   const parts = Math.sqrt(perGain / (2 * BLOCK_SUBCARRIERS)) / (2 * Math.PI * rmsDistance);
-  return Math.hypot(parts, 2e-5) / cell.spacingHz;
+  return Math.hypot(parts, 2e-5) / spacingHz;
 }

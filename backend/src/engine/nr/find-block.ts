@@ -8,8 +8,8 @@ import { planWork, readWork, type WorkSignal } from './work-signal.js';
 
 /** The default period of the blocks in cell search (TS 38.213 clause 4.1) and the length of the longest one. */
 const WINDOW_S = 0.0204;
-/** Longer windows than this are searched every half symbol. */
-const DENSE_S = 0.006;
+/** Samples times transforms’ levels up to which a search without a grid looks at every quarter of a symbol, where something stands out at all. */
+const DENSE_WORK = 3.6e6;
 
 export interface BlockFinding {
   readonly block: FoundBlock;
@@ -31,7 +31,7 @@ export function findBlock(context: DetectionContext): BlockFinding | null {
     const scan = new PrimaryScan(work, spacingHz, { lowHz: band.lowHz - plan.centreHz, highHz: band.highHz - plan.centreHz });
     if (!scan.possible) continue;
     const senses = new BothSenses(work);
-    const sparse = work.iq.length / 2 / work.rateHz > DENSE_S;
+    const sparse = !context.occupied || (work.iq.length / 2) * Math.log2(work.rateHz / spacingHz) > DENSE_WORK;
     const block = searchBlock(senses, scan, planWindows(work, spacingHz, { blind, sparse, sampleRateHz: source.sampleRateHz }));
     if (block) return { block, reader: new BlockReader(source, plan, senses, block.inverted), work: senses.in(block.inverted) };
   }

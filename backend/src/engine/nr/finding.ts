@@ -64,6 +64,7 @@ export function reportCell(
       mib: sure(mib),
       systemFrameNumber: sure(systemFrameNumber),
       kSsb: sure(information.kSsb),
+      frameStartS: sure(cell.frameStartS),
       ...carrierValues(measured),
       ...qualityValues(cell),
       sampleClockOffsetPpm: clockValue(measured.clock),

@@ -32,30 +32,43 @@ export interface CellMeasurements {
 const CENTRED_PPM = 5;
 
 export function measureCell(context: DetectionContext, { cell, work, decoded, inverted }: { cell: Cell; work: WorkSignal; decoded: DecodedBroadcast; inverted: boolean }): CellMeasurements {
+  const { centreFrequencyHz: centreHz } = context.source;
   const data = dataNumerology(work, cell, context.blind);
-  const reference = referenceFrequency(work, cell, data);
-  const commonGrid = commonGridOf(cell, reference.estimate.hz, decoded);
-  const placement = data && commonGrid && placeCarrier(work, {
+  const coarse = referenceFrequency(work, cell, data);
+  const referenceHz = coarse.estimate.hz;
+  const grid = commonGridOf(cell, referenceHz, decoded);
+  const placement = data && grid && placeCarrier(work, {
     spacingHz: data.spacingHz,
     extended: data.extended,
     subframeS: cell.frameStartS,
-    blockEdgeHz: commonGrid.edgeHz,
-    stepHz: 12 * Math.min(commonGrid.spacingHz, data.spacingHz),
+    blockEdgeHz: grid.edgeHz,
+    stepHz: 12 * Math.min(grid.spacingHz, data.spacingHz),
   });
-  const placed = placement !== null && (placement.inTable || isCentred(placement, context.source.centreFrequencyHz));
+  const placed = placement !== null && (placement.inTable || isCentred(placement, centreHz));
+  const carriers = placed ? [placement.referenceHz] : possibleCarriers(context, { placement, commonGrid: grid, inverted });
+  const phases = judgePhases(cell, {
+    present: lawsWithCompensation({ referenceHz, centreHz, spacingHz: cell.spacingHz }),
+    absent: lawsWithoutCompensation(referenceHz, carriers),
+    reference: coarse.estimate,
+  });
+  const reference = sharpened(coarse, phases);
+  const moved = reference.estimate.hz - referenceHz;
   return {
     data,
     reference,
-    commonGrid,
-    placement,
+    commonGrid: grid && { ...grid, edgeHz: grid.edgeHz + moved },
+    placement: placement && { ...placement, referenceHz: placement.referenceHz + moved, lowHz: placement.lowHz + moved, highHz: placement.highHz + moved },
     placed,
     clock: clockDrift(cell),
-    phases: judgePhases(cell, {
-      present: lawsWithCompensation({ referenceHz: reference.estimate.hz, centreHz: context.source.centreFrequencyHz, spacingHz: cell.spacingHz }),
-      absent: lawsWithoutCompensation(reference.estimate.hz, placed ? [placement.referenceHz] : possibleCarriers(context, { cell, commonGrid, inverted })),
-      reference: reference.estimate,
-    }),
+    phases,
   };
+}
+
+/** The phases between symbols say the frequency better than the insides of the symbols, once their law is known. */
+function sharpened(coarse: ReferenceFrequency, phases: PhaseCompensation): ReferenceFrequency {
+  const { reference } = phases;
+  if (!reference || reference.sigmaHz >= coarse.estimate.sigmaHz) return coarse;
+  return { ...coarse, estimate: reference, method: `${coarse.method}, sharpened by the phases between them` };
 }
 
 /** k_SSB from the block down to the common grid: 15 kHz units in FR1, the common spacing's in FR2-1, the block's in FR2-2 (TS 38.211 clause 7.4.3.1). */
@@ -72,15 +85,19 @@ function isCentred(placement: CarrierPlacement, centreHz: number | null): boolea
   return centreHz !== null && Math.abs(placement.referenceHz) < CENTRED_PPM * 1e-6 * centreHz;
 }
 
-/** Places on the common grid, half a block apart, that the RF reference may have where the edges do not say: about the middle of what is occupied. */
-function possibleCarriers(context: DetectionContext, { cell, commonGrid, inverted }: { cell: Cell; commonGrid: CommonGrid | null; inverted: boolean }): number[] {
-  const { occupied } = context;
-  if (!commonGrid || (!occupied && context.source.centreFrequencyHz === null)) return [];
-  // The edges were measured before an inverted spectrum was turned upright.
-  const middle = occupied ? ((occupied.lowHz + occupied.highHz) / 2) * (inverted ? -1 : 1) : 0;
-  const reach = occupied ? 0.1 * (occupied.highHz - occupied.lowHz) : 60 * cell.spacingHz;
+/** Places on the common grid, half a block apart, that the RF reference may have where the edges do not say: about the middle of what carries power. */
+function possibleCarriers(context: DetectionContext, { placement, commonGrid, inverted }: { placement: CarrierPlacement | null; commonGrid: CommonGrid | null; inverted: boolean }): number[] {
+  const span = placement ?? occupiedUpright(context, inverted);
+  if (!commonGrid || !span) return [];
+  const middle = (span.lowHz + span.highHz) / 2;
+  const reach = 0.12 * (span.highHz - span.lowHz);
   const step = 6 * commonGrid.spacingHz;
   const first = Math.ceil((middle - reach - commonGrid.edgeHz) / step);
   const last = Math.floor((middle + reach - commonGrid.edgeHz) / step);
   return Array.from({ length: Math.max(0, last - first + 1) }, (_, i) => commonGrid.edgeHz + (first + i) * step);
+}
+
+/** The occupied band was measured before an inverted spectrum was turned upright. */
+function occupiedUpright({ occupied }: DetectionContext, inverted: boolean): { lowHz: number; highHz: number } | null {
+  return occupied && inverted ? { lowHz: -occupied.highHz, highHz: -occupied.lowHz } : occupied;
 }

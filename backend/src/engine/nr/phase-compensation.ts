@@ -10,6 +10,11 @@ export interface PhaseCompensation {
   /** Distance of the two explanations in standard deviations of the measured phases. */
   readonly separation: number;
   readonly reason: string | null;
+  /**
+   * SS_REF as the phases between the symbols give it, under the law that holds (under both, where
+   * they say nearly the same): far sharper than from inside the symbols. Null where neither fits.
+   */
+  readonly reference: FrequencyEstimate | null;
 }
 
 /**
@@ -31,50 +36,76 @@ const OTHER_PHASE = 0.03;
 /** Spread of a path's own frequency, Hz, added to the reference's uncertainty. */
 const DOPPLER_HZ = 20;
 const SIGMAS = 3;
-const STEPS = 12;
+/** Offsets tried: this many standard deviations each way, in this many steps. */
+const REACH = 3.5;
+const STEPS = 40;
+/** Natural logarithm of the odds from which one law is believed. */
+const ODDS = 3;
 /** Largest χ² per degree of freedom that still counts as a fit. */
 const WORST_FIT = 6;
 
 /** Compares the two explanations over all blocks; `null` with a reason where they cannot be told apart or neither fits. */
 export function judgePhases(cell: Cell, question: PhaseQuestion): PhaseCompensation {
   if (question.present.length === 0 || question.absent.length === 0) {
-    return { value: null, confidence: 0, separation: 0, reason: 'neither the tuner’s frequency nor the carrier’s place is known' };
+    return { value: null, confidence: 0, separation: 0, reason: 'neither the tuner’s frequency nor the carrier’s place is known', reference: null };
   }
   const sigmaHz = Math.hypot(question.reference.sigmaHz, DOPPLER_HZ);
   const driftHz = question.reference.hz - cell.gridHz;
   const present = explain(cell, question.present, { driftHz, sigmaHz });
   const absent = explain(cell, question.absent, { driftHz, sigmaHz });
-  const separation = separationOf(cell, { from: present.best, to: absent.best, sigmaHz });
-  if (separation < SIGMAS) {
-    return { value: null, confidence: 0, separation, reason: `the phases with and without compensation lie ${separation.toFixed(1)} standard deviations apart at this carrier frequency` };
-  }
   const better = present.logLikelihood > absent.logLikelihood ? present : absent;
   const degrees = cell.blocks.length * (BLOCK_SYMBOLS - 1);
-  if (better.misfit > WORST_FIT * degrees + 20) {
-    return { value: null, confidence: 0, separation, reason: 'the symbols’ phases follow neither law: the compensation may be made for another carrier frequency' };
-  }
+  const fits = better.misfit <= WORST_FIT * degrees + 20;
+  const single = question.present.length === 1 && question.absent.length === 1;
   const odds = Math.abs(present.logLikelihood - absent.logLikelihood);
-  const confidence = 1 / (1 + Math.exp(-Math.min(odds, 9)));
-  if (odds < SIGMAS) return { value: null, confidence, separation, reason: 'the symbols’ phases fit both laws about equally well' };
-  return { value: better === present ? 'present' : 'absent', confidence, separation, reason: null };
+  const separation = single ? separationOf(cell, { from: present.hz, to: absent.hz, sigmaHz }) : Math.sqrt(2 * odds);
+  const verdict = { confidence: 1 / (1 + Math.exp(-Math.min(odds, 9))), separation };
+  // Of several possible carriers the likeliest may be a neighbour of the right one, and the offset with it.
+  const alone = (better === present ? question.present : question.absent).length === 1;
+  const reference = (law: Explanation) => (alone ? { hz: question.reference.hz + law.offset.hz, sigmaHz: law.offset.sigmaHz } : null);
+  if (single && separation < SIGMAS) {
+    const reason = `the phases with and without compensation lie ${separation.toFixed(1)} standard deviations apart at this carrier frequency`;
+    return { ...verdict, value: null, reason, reference: fits ? reference(better) : null };
+  }
+  if (!fits) {
+    return { ...verdict, value: null, reason: 'the symbols’ phases follow neither law: the compensation may be made for another carrier frequency', reference: null };
+  }
+  if (odds < ODDS) return { ...verdict, value: null, reason: 'the symbols’ phases fit both laws about equally well', reference: null };
+  return { ...verdict, value: better === present ? 'present' : 'absent', reason: null, reference: reference(better) };
 }
 
-interface Explanation { logLikelihood: number; misfit: number; best: number }
+interface Explanation {
+  readonly logLikelihood: number;
+  /** χ² of the best law and offset, the prior's part included. */
+  readonly misfit: number;
+  readonly hz: number;
+  /** Of SS_REF beside where it was taken to be. */
+  readonly offset: FrequencyEstimate;
+}
 
 /** Likelihood of the phases under a set of laws, the frequency's error integrated over its own uncertainty. */
 function explain(cell: Cell, laws: PhaseLaws, { driftHz, sigmaHz }: { driftHz: number; sigmaHz: number }): Explanation {
-  const terms: { log: number; misfit: number; hz: number }[] = [];
+  const terms: { log: number; misfit: number; hz: number; offsetHz: number }[] = [];
   for (const law of laws) {
     for (let step = -STEPS; step <= STEPS; step++) {
-      const x = (3 * step) / STEPS;
-      const misfit = misfitOf(cell, law.hz + driftHz + x * sigmaHz);
-      terms.push({ log: Math.log(law.weight) - (x * x) / 2 - misfit / 2, misfit: misfit + x * x, hz: law.hz });
+      const x = (REACH * step) / STEPS;
+      const misfit = misfitOf(cell, law.hz + driftHz + x * sigmaHz) + x * x;
+      terms.push({ log: Math.log(law.weight) - misfit / 2, misfit, hz: law.hz, offsetHz: x * sigmaHz });
     }
   }
   const top = terms.reduce((a, b) => (b.log > a.log ? b : a));
-  const sum = terms.reduce((total, term) => total + Math.exp(term.log - top.log), 0);
+  const weights = terms.map((term) => Math.exp(term.log - top.log));
+  const sum = weights.reduce((a, b) => a + b, 0);
+  const mean = terms.reduce((total, term, i) => total + weights[i] * term.offsetHz, 0) / sum;
+  const variance = terms.reduce((total, term, i) => total + weights[i] * (term.offsetHz - mean) ** 2, 0) / sum;
   const norm = Math.log(laws.reduce((total, law) => total + law.weight, 0)) + Math.log(2 * STEPS + 1);
-  return { logLikelihood: top.log + Math.log(sum) - norm, misfit: top.misfit, best: top.hz };
+  const gridStepHz = (REACH * sigmaHz) / STEPS;
+  return {
+    logLikelihood: top.log + Math.log(sum) - norm,
+    misfit: top.misfit,
+    hz: top.hz,
+    offset: { hz: mean, sigmaHz: Math.sqrt(variance + gridStepHz ** 2 / 12) },
+  };
 }
 
 /** Time between the starts of neighbouring symbols of a block, s: the transmitter's own, exact. */

@@ -28,6 +28,7 @@ export function fixPrimary(work: WorkSignal, spacingHz: number, coarse: { sample
   const span = { size, start: coarse.sample - size / 2 };
   if (span.start < 0 || 2 * (span.start + 2 * size) > work.iq.length) return null;
   const template = templateSpectrum(coarse.nId2);
+  if (!promising(correlate(work, span, { template, referenceHz: coarse.referenceHz }))) return null;
   let best: { power: number; lag: number; offset: number; row: Float64Array } | null = null;
   for (const offset of OFFSETS) {
     const row = correlate(work, span, { template, referenceHz: coarse.referenceHz + offset * spacingHz });
@@ -42,14 +43,31 @@ export function fixPrimary(work: WorkSignal, spacingHz: number, coarse: { sample
   return { ...refined, statistic: alignedStatistic(work, spacingHz, refined) };
 }
 
+/** A quick look at the coarse frequency alone: of 256 lags of noise the best exceeds the mean so far once in 60 tries. */
+function promising(powers: Float64Array): boolean {
+  let sum = 0;
+  let top = 0;
+  for (let lag = 0; lag < FINE; lag++) {
+    sum += powers[lag];
+    top = Math.max(top, powers[lag]);
+  }
+  return top > (9.6 * sum) / FINE;
+}
+
 /** Abscissa of a parabola's vertex through (−1, a), (0, b), (1, c). */
 function vertex(a: number, b: number, c: number): number {
   const bend = a - 2 * b + c;
   return bend >= 0 ? 0 : Math.max(-0.5, Math.min(0.5, (0.5 * (a - c)) / bend));
 }
 
+const templates: Float64Array[] = [];
+
 /** Conjugate spectrum of the signal's useful part, zero-padded to twice its length, in `FINE` samples a symbol. */
 function templateSpectrum(nId2: number): Float64Array {
+  return (templates[nId2] ??= makeTemplate(nId2));
+}
+
+function makeTemplate(nId2: number): Float64Array {
   const bins = new Float64Array(2 * FINE);
   primarySequence(nId2).forEach((chip, n) => { bins[2 * ((n + SYNC_FIRST - REFERENCE_SUBCARRIER + FINE) % FINE)] = chip; });
   const time = new Float64Array(2 * FINE);

@@ -13,7 +13,7 @@ export interface ReferenceFrequency {
 }
 
 /** Correlation below which no numerology is believed, in multiples of chance. */
-const CLEAR = 8;
+const CLEAR = 5;
 
 /**
  * The numerology whose prefixes fit the slots best, the blind estimate's first where it is one of
@@ -44,7 +44,7 @@ export function referenceFrequency(work: WorkSignal, cell: Cell, data: DataPrefi
   const hz = residueHz + Math.round(away) * unit;
   const sigmaHz = Math.max(data.residue.sigmaHz, 1e-4 * data.spacingHz);
   const tolerance = 5 * Math.hypot(cell.reference.sigmaHz, sigmaHz) + 0.01 * cell.spacingHz;
-  if (Math.abs(hz - cell.reference.hz) > tolerance || sigmaHz > cell.reference.sigmaHz) return own;
+  if (Math.abs(hz - cell.reference.hz) > tolerance || sigmaHz > unit / 10) return own;
   const a = 1 / sigmaHz ** 2;
   const b = 1 / cell.reference.sigmaHz ** 2;
   return {
