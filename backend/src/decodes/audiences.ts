@@ -1,4 +1,6 @@
+import type { DecodeResult } from '#shared/decode';
 import type { Reach, Side } from '#shared/vocabulary';
+import { redactResult } from '../hints/redact.js';
 import type { View } from '../hints/types.js';
 
 /** Who may see a decode's snapshot of one side in full. */
@@ -33,4 +35,10 @@ function viewOf(partyId: string | null, snapshots: readonly SnapshotRights[]): V
     return snapshot.reach === 'compare-only' ? 'compare-only' : 'none';
   };
   return { a: of('a'), b: of('b') };
+}
+
+/** A result in an audience's version. Each hint carries its rank in the whole, since a reader may not get all. */
+export function resultFor(result: DecodeResult, view: View): DecodeResult {
+  const ranked = result.hints.flatMap((hint, rank) => redactResult({ ...result, hints: [hint] }, view).hints.map((shown) => ({ ...shown, rank })));
+  return { ...redactResult(result, view), hints: ranked };
 }

@@ -47,7 +47,7 @@ export async function hintsOf(services: Services, decode: { id: string; result: 
         from hint_verdicts v where v.hint_id = h.id), '[]') as verdicts
     from hints h join decodes d on d.id = h.decode_id where h.decode_id = $1 order by h.rank`, [decode.id]);
   return rows.flatMap(({ rank, ...row }) => {
-    const said: Hint | undefined = decode.result?.hints[rank];
+    const said: Hint | undefined = decode.result?.hints.find((hint, at) => (hint['rank'] ?? at) === rank);
     return said ? [{ ...said, ...row, actions: { judge: mayJudge } }] : [];
   });
 }

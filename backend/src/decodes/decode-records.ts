@@ -1,9 +1,8 @@
 import type { Pool, PoolClient } from 'pg';
 import type { DecodeResult } from '#shared/decode';
-import type { Side } from '#shared/vocabulary';
-import { audiencesOf, type SnapshotRights } from './audiences.js';
-import { redactResult } from '../hints/redact.js';
-import { DECODE_STEPS } from '#shared/vocabulary';
+import { DECODE_STEPS, type Side } from '#shared/vocabulary';
+import { audiencesOf, resultFor, type SnapshotRights } from './audiences.js';
+import { keepHints } from './keep-hints.js';
 
 /** The worker's reads and writes of decodes, under the worker's own role and policies. */
 export interface Claimed {
@@ -18,7 +17,8 @@ export interface Claimed {
   readonly link: 'air' | 'wifi' | 'fronthaul';
 }
 
-export const LEASE_S = 30;
+/** A killed worker's decode runs again once its lease has run out; well within a minute. */
+export const LEASE_S = 20;
 
 /** Takes a decode that waits, or whose worker has gone silent. Null where there is nothing to do. */
 export async function claim(pool: Pool, decodeId: string): Promise<Claimed | null> {
@@ -31,44 +31,57 @@ export async function claim(pool: Pool, decodeId: string): Promise<Claimed | nul
   return rows[0] ?? null;
 }
 
-/** False where another worker has taken the decode over. */
+/** False where another worker has taken the decode over, or it is to run no more. */
 export async function renew(pool: Pool, { id, attempt }: Claimed): Promise<boolean> {
   const { rowCount } = await pool.query(`update decodes set leased_until = now() + $3 * interval '1 second' where id = $1 and attempt = $2 and state = 'running'`, [id, attempt, LEASE_S]);
   return rowCount === 1;
 }
 
-/** Decodes whose worker was killed: their lease has run out. */
-export async function abandoned(pool: Pool): Promise<string[]> {
-  const { rows } = await pool.query<{ id: string }>(`select id from decodes where state = 'running' and leased_until < now()`);
-  return rows.map(({ id }) => id);
+/** Gives up the lease, so that the next worker takes the decode over at once. */
+export async function release(pool: Pool, { id, attempt }: Claimed): Promise<void> {
+  await pool.query(`update decodes set leased_until = now() where id = $1 and attempt = $2 and state = 'running'`, [id, attempt]);
 }
 
 export async function reportProgress(pool: Pool, claimed: Claimed, { step, fraction }: { step: string; fraction: number }): Promise<void> {
-  const known = (DECODE_STEPS as readonly string[]).includes(step) ? step : 'reading';
-  const { rowCount } = await pool.query(`update decodes set step = $3, progress = $4 where id = $1 and attempt = $2 and state = 'running'`, [claimed.id, claimed.attempt, known, Math.min(1, Math.max(0, fraction))]);
-  if (rowCount === 1) await announce(pool, claimed, { topic: 'decode', step: known, progress: fraction });
+  if (!(DECODE_STEPS as readonly string[]).includes(step)) return;
+  const progress = Math.min(1, Math.max(0, fraction));
+  const { rowCount } = await pool.query(`update decodes set step = $3, progress = $4 where id = $1 and attempt = $2 and state = 'running'`, [claimed.id, claimed.attempt, step, progress]);
+  if (rowCount === 1) await announce(pool, claimed, { topic: 'decode', step, progress });
 }
 
-async function announce(client: Pool | PoolClient, claimed: Claimed, event: { topic: 'decode' | 'issue'; step: string; progress: number }): Promise<void> {
+async function announce(client: Pool | PoolClient, claimed: Claimed, event: { topic: 'decode' | 'issue'; step: string | null; progress: number | null }): Promise<void> {
   await client.query('insert into live_events (programme_id, issue_id, decode_id, party_id, topic, step, progress) values ($1, $2, $3, $4, $5, $6, $7)',
     [claimed.programmeId, claimed.issueId, claimed.id, claimed.reach === 'my-party' ? claimed.partyId : null, event.topic, event.step, event.progress]);
 }
 
-/** Runs once: a result of an attempt that was taken over is dropped whole. */
+/**
+ * Runs once: what an attempt says that was taken over is dropped whole. Under the issue's lock, so
+ * that a file is either withdrawn before (and there is nothing to record) or after (and the record goes).
+ */
 async function once(pool: Pool, claimed: Claimed, work: (client: PoolClient) => Promise<boolean>): Promise<boolean> {
   const client = await pool.connect();
   try {
     await client.query('begin');
+    await client.query('select access.lock_issue($1)', [claimed.issueId]);
     const done = await work(client);
-    if (done) await announce(client, claimed, { topic: 'issue', step: 'done', progress: 1 });
+    if (done) await tellReaders(client, claimed);
     await client.query(done ? 'commit' : 'rollback');
     return done;
   } catch (error) {
-    await client.query('rollback');
+    await client.query('rollback').catch(() => undefined);
     throw error;
   } finally {
     client.release();
   }
+}
+
+async function tellReaders(client: PoolClient, claimed: Claimed): Promise<void> {
+  if (claimed.reach === 'everyone') {
+    await client.query('select access.mark_likely($1)', [claimed.issueId]);
+    await client.query('update issues set updated_at = now() where id = $1', [claimed.issueId]);
+  }
+  await announce(client, claimed, { topic: 'decode', step: 'done', progress: 1 });
+  await announce(client, claimed, { topic: 'issue', step: null, progress: null });
 }
 
 /** Stores the result once an audience, the hints, and what the register shows of them. */
@@ -80,14 +93,9 @@ export function storeResult(pool: Pool, claimed: Claimed, result: DecodeResult):
     if (rowCount !== 1) return false;
     for (const { partyId, view } of audiencesOf(claimed, await rightsOf(client, claimed.id))) {
       await client.query('insert into decode_results (decode_id, programme_id, attempt, audience_party_id, result) values ($1, $2, $3, $4, $5)',
-        [claimed.id, claimed.programmeId, claimed.attempt, partyId, JSON.stringify(redactResult(result, view))]);
+        [claimed.id, claimed.programmeId, claimed.attempt, partyId, JSON.stringify(resultFor(result, view))]);
     }
-    for (const [rank, hint] of result.hints.entries()) {
-      await client.query('insert into hints (decode_id, programme_id, issue_id, rank, code, side, confidence) values ($1, $2, $3, $4, $5, $6, $7)',
-        [claimed.id, claimed.programmeId, claimed.issueId, rank, hint.code, hint.side, hint.confidence]);
-    }
-    const [best] = result.hints;
-    await remember(client, claimed, { state: best ? 'hint' : 'clean', code: best?.code ?? null, side: best?.side ?? null, confidence: best?.confidence ?? null });
+    await keepHints(client, claimed, result.hints);
     const found = result.hints.length;
     await history(client, claimed, found === 0 ? `decode ${claimed.number} found no mismatch` : `decode ${claimed.number} found ${found === 1 ? 'one likely mismatch' : `${found} likely mismatches`}`);
     return true;
@@ -100,19 +108,9 @@ export function storeFailure(pool: Pool, claimed: Claimed, failure: { code: stri
       update decodes set state = 'failed', finished_at = now(), leased_until = null, error_code = $3, error_message = $4
       where id = $1 and attempt = $2 and state = 'running'`, [claimed.id, claimed.attempt, failure.code, failure.message]);
     if (rowCount !== 1) return false;
-    await remember(client, claimed, { state: 'failed', code: null, side: null, confidence: null });
     await history(client, claimed, `decode ${claimed.number} could not run`);
     return true;
   });
-}
-
-/** The register shows the latest decode that reaches everyone. */
-async function remember(client: PoolClient, claimed: Claimed, likely: { state: string; code: string | null; side: string | null; confidence: number | null }): Promise<void> {
-  if (claimed.reach !== 'everyone') return;
-  await client.query(`
-    update issues i set decode_state = $3, likely_code = $4, likely_side = $5, likely_confidence = $6, updated_at = now()
-    where i.id = $1 and not exists (select 1 from decodes d where d.issue_id = i.id and d.reach = 'everyone' and d.queued_at > (select queued_at from decodes where id = $2))`,
-  [claimed.issueId, claimed.id, likely.state, likely.code, likely.side, likely.confidence]);
 }
 
 async function history(client: PoolClient, claimed: Claimed, text: string): Promise<void> {

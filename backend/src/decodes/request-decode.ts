@@ -6,12 +6,14 @@ import type { Caller, Services } from '../http/services.js';
 import { recordEvent } from '../issues/record.js';
 
 interface Wanted { issueId: string; programmeId: string; inputs: Pick<NewDecode, 'captureFileId' | 'snapshotAFileId' | 'snapshotBFileId' | 'transmitter'> }
-interface Input { role: string; fileId: string; reach: string; partyId: string | null; side: string | null }
+interface Input { role: 'capture' | 'snapshot-a' | 'snapshot-b'; fileId: string; reach: string; partyId: string | null; side: string | null }
 
 /** Records a decode and its inputs and puts the job in the queue, all in the caller's transaction. */
 export async function enqueueDecode(services: Services, by: { caller: Caller; standing: Standing }, { issueId, programmeId, inputs }: Wanted): Promise<string> {
   const files = await inputsOf(services, issueId, inputs);
   if (files.length === 0) throw invalid('captureFileId', 'name at least a capture or one snapshot');
+  // Two people may ask at once: each decode gets a number of its own.
+  await services.database.rows('select access.lock_issue($1)', [issueId]);
   // What only my party may see makes a decode that only my party may see.
   const onlyMine = files.some(({ reach }) => reach === 'my-party');
   const id = crypto.randomUUID();
@@ -32,17 +34,26 @@ export async function enqueueDecode(services: Services, by: { caller: Caller; st
 
 /** The files by role. A compare-only snapshot of the other side is reached through its veil. */
 async function inputsOf(services: Services, issueId: string, inputs: Wanted['inputs']): Promise<Input[]> {
-  const roles = [['capture', inputs.captureFileId], ['snapshot-a', inputs.snapshotAFileId], ['snapshot-b', inputs.snapshotBFileId]] as const;
+  const roles = [['capture', 'captureFileId'], ['snapshot-a', 'snapshotAFileId'], ['snapshot-b', 'snapshotBFileId']] as const;
   const found: Input[] = [];
-  for (const [role, fileId] of roles) {
+  for (const [role, field] of roles) {
+    const fileId = inputs[field];
     if (!fileId) continue;
-    const file = await services.database.row<{ reach: string; partyId: string; side: string | null }>(`
-      select reach, party_id as "partyId", side from files where id = $1 and issue_id = $2 and withdrawn_at is null
-      union all select 'compare-only', v.party_id, v.side from access.veiled_snapshots($2) v where v.file_id = $1 limit 1`, [fileId, issueId]);
+    const file = await services.database.row<{ kind: string; reach: string; partyId: string; side: string | null }>(`
+      select kind, reach, party_id as "partyId", side from files where id = $1 and issue_id = $2 and withdrawn_at is null
+      union all select 'snapshot', 'compare-only', v.party_id, v.side from access.veiled_snapshots($2) v where v.file_id = $1 limit 1`, [fileId, issueId]);
     if (!file) throw notFound();
+    refuseOtherUse(role, field, file);
     found.push({ role, fileId, ...file });
   }
+  if (inputs.snapshotAFileId && inputs.snapshotAFileId === inputs.snapshotBFileId) throw invalid('snapshotBFileId', 'a snapshot compared with itself says nothing');
   return found;
+}
+
+/** Laid beside itself a compare-only snapshot would be told value by value, and read as samples it would be shown. */
+function refuseOtherUse(role: Input['role'], field: string, file: { kind: string; side: string | null }): void {
+  if (file.kind !== (role === 'capture' ? 'capture' : 'snapshot')) throw invalid(field, `this file is a ${file.kind}`);
+  if (role !== 'capture' && file.side !== null && file.side !== role.slice(-1)) throw invalid(field, `this snapshot was filed as side ${file.side.toUpperCase()}'s`);
 }
 
 /** Somebody may probe with invented snapshots: each comparison against a compare-only one stands in its owner's record. */

@@ -3,7 +3,7 @@ import type { Services } from '../http/services.js';
 
 interface FileRow extends Omit<StoredFile, 'owner' | 'uploadedAt' | 'withdrawnAt' | 'unreadable' | 'actions'> {
   ownerId: string; ownerName: string; ownerShort: string; uploadedAt: Date; withdrawnAt: Date | null;
-  unreadableCode: string | null; unreadableMessage: string | null; mine: boolean; filed: boolean;
+  unreadableCode: string | null; unreadableMessage: string | null; mine: boolean; owned: boolean; filed: boolean;
 }
 
 /** Whole files with what was read from them. Derived rows of a withdrawn file are gone, so they read null. */
@@ -11,7 +11,7 @@ const FILE = `
   select f.id, f.kind, f.name, f.size, f.sha256, f.side, f.reach, f.uploaded_by_name as "uploadedBy", f.uploaded_at as "uploadedAt", f.withdrawn_at as "withdrawnAt",
     p.id as "ownerId", p.name as "ownerName", p.short_name as "ownerShort",
     f.unreadable_code as "unreadableCode", f.unreadable_message as "unreadableMessage",
-    (f.party_id = any(access.my_parties()) or f.uploader_party_id = any(access.my_parties())) as mine, f.issue_id is not null as filed,
+    (f.party_id = any(access.my_parties()) or f.uploader_party_id = any(access.my_parties())) as mine, f.party_id = any(access.my_parties()) as owned, f.issue_id is not null as filed,
     (select json_build_object('facts', c.facts, 'spectrum', c.spectrum, 'warnings', c.warnings) from captures c where c.file_id = f.id) as capture,
     (select json_build_object('syntax', s.syntax, 'vocabularies', s.vocabularies, 'notUnderstood', s.not_understood, 'problems', s.problems, 'missing', s.missing,
       'parameters', coalesce((select json_agg(json_build_object('parameter', v.parameter, 'value', v.value, 'path', v.path, 'raw', v.raw, 'line', v.line) order by v.line, v.path)
@@ -22,9 +22,10 @@ const FILE = `
 const NARROWER = { everyone: ['compare-only', 'my-party'], 'compare-only': ['my-party'], 'my-party': [] } as const;
 
 function shape(row: FileRow, mayChange: boolean): StoredFile {
-  const { ownerId, ownerName, ownerShort, uploadedAt, withdrawnAt, unreadableCode, unreadableMessage, mine, filed, ...file } = row;
+  const { ownerId, ownerName, ownerShort, uploadedAt, withdrawnAt, unreadableCode, unreadableMessage, mine, owned, filed, ...file } = row;
   const changeable = mayChange && mine && withdrawnAt === null;
-  const narrower = NARROWER[file.reach].filter((reach) => reach !== 'compare-only' || file.kind === 'snapshot');
+  // To its party alone a file is narrowed by that party: whoever sent it for them loses sight of it then.
+  const narrower = NARROWER[file.reach].filter((reach) => (reach === 'compare-only' ? file.kind === 'snapshot' || file.kind === 'glossary' : owned));
   return {
     ...file, size: Number(file.size), owner: { id: ownerId, name: ownerName, shortName: ownerShort },
     uploadedAt: uploadedAt.toISOString(), withdrawnAt: withdrawnAt?.toISOString() ?? null,

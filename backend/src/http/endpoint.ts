@@ -19,6 +19,8 @@ export interface Asked<N extends EndpointName, C> {
   readonly body: Parsed<N, 'body'>;
   /** What the rule established: the membership, the issue, the file. */
   readonly granted: C;
+  /** Work outside the database that must wait until the transaction has been committed. */
+  afterwards(work: () => Promise<void>): void;
 }
 
 export interface Mounted {
@@ -40,11 +42,13 @@ export function endpoint<N extends EndpointName, C>(name: N, rule: Rule<C>, hand
     const query = schema('query')?.parse(request.query);
     const body = schema('body')?.parse(request.body ?? {});
     const params = request.params as Record<string, string>;
+    const later: (() => Promise<void>)[] = [];
     try {
       const reply = await services.database.asPerson(caller.personId, async () => {
         const granted = await rule({ services, caller, params });
-        return handle({ services, caller, params, granted, query: query as Parsed<N, 'query'>, body: body as Parsed<N, 'body'> });
+        return handle({ services, caller, params, granted, query: query as Parsed<N, 'query'>, body: body as Parsed<N, 'body'>, afterwards: (work) => later.push(work) });
       });
+      for (const work of later) await work().catch((error: unknown) => services.log.warn({ error }, 'what a request leaves to do could not be done'));
       if (reply === undefined) response.status(204).end();
       else response.json(definition.reply.parse(reply));
     } catch (error) {

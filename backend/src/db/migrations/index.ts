@@ -5,6 +5,8 @@ import { up as filesDecodes } from './0004-files-decodes.js';
 import { up as threadMoves } from './0005-thread-moves.js';
 import { up as outboxAudit } from './0006-outbox-audit.js';
 import { up as queue } from './0007-queue.js';
+import { up as derivedValues } from './0008-derived-values.js';
+import { up as narrowerPolicies } from './0009-narrower-policies.js';
 
 /** Numbered and append-only: a migration that has landed is never edited, a later one corrects it. */
 export const MIGRATIONS: readonly { name: string; up: string }[] = [
@@ -15,4 +17,6 @@ export const MIGRATIONS: readonly { name: string; up: string }[] = [
   { name: '0005-thread-moves', up: threadMoves },
   { name: '0006-outbox-audit', up: outboxAudit },
   { name: '0007-queue', up: queue },
+  { name: '0008-derived-values', up: derivedValues },
+  { name: '0009-narrower-policies', up: narrowerPolicies },
 ];
