@@ -21,6 +21,13 @@ async function localDatabase(secrets, guard) {
   return { part: undefined, addresses: databaseAddresses({ url: clusterUrl(readState().databasePort) }, secrets) };
 }
 
+/** Where a local instance was last reached, unless the environment says otherwise. */
+function ofLastStart(local) {
+  const { issuer, publicUrl } = readState();
+  if (process.env.PORT || process.env.PUBLIC_URL) return {};
+  return { ...(publicUrl && { PUBLIC_URL: publicUrl }), ...(local.provider && issuer && { OIDC_ISSUER: issuer }) };
+}
+
 async function run(command, { needs, args }, guard) {
   makeLocalFolders();
   const settled = settle();
@@ -28,7 +35,7 @@ async function run(command, { needs, args }, guard) {
   await ensurePackages();
   await ensureBuilt(['backend']);
   const database = settled.local.database ? await localDatabase(settled.secrets, guard) : { addresses: {} };
-  const env = withDatabase({ ...settled.env, ...database.addresses }, [needs]);
+  const env = withDatabase({ ...settled.env, ...ofLastStart(settled.local), ...database.addresses }, [needs]);
   try {
     const { code } = await runCommand(process.execPath, [resolve(CLONE, `dist/backend/src/cli/${command}.js`), ...args], { env, show: true, cwd: process.env.INIT_CWD });
     process.exitCode = code;

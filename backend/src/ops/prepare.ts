@@ -1,40 +1,22 @@
-import { Client } from 'pg';
 import { z } from 'zod';
 import { Database } from '../db/database.js';
 import { migrate } from '../db/migrate.js';
 import { refuseOtherVersion, UnsafeDatabase } from '../db/safe-role.js';
 import { seedDemo } from '../demo/seed-demo.js';
+import { moveLocalIssuer } from './move-issuer.js';
 
 /** The database before a start: migrated by its owner, or found to be of this version. */
 const settings = z.object({
   DATABASE_URL: z.string(),
   DATABASE_OWNER_URL: z.string().optional(),
   OIDC_ISSUER: z.string(),
-  CROSSTIE_EARLIER_ISSUER: z.string().default(''),
-  CROSSTIE_SEED: z.enum(['true', 'false']).default('false'),
+  /** Database and provider are both this clone's own: the demo belongs here. */
+  CROSSTIE_LOCAL_INSTANCE: z.enum(['true', 'false']).default('false'),
   STORAGE_DIR: z.string().optional(),
 }).parse(process.env);
 
 function say(line: string): void {
   process.stdout.write(`${line}\n`);
-}
-
-async function asOwner<T>(ownerUrl: string, work: (owner: Client) => Promise<T>): Promise<T> {
-  const owner = new Client({ connectionString: ownerUrl });
-  await owner.connect();
-  try {
-    return await work(owner);
-  } finally {
-    await owner.end();
-  }
-}
-
-/** The demo's provider moved to another port: its people are the same, so their issuer moves along. */
-function moveIssuer(ownerUrl: string, from: string, to: string): Promise<void> {
-  return asOwner(ownerUrl, async (owner) => {
-    await owner.query('update people set issuer = $2 where issuer = $1', [from, to]);
-    await owner.query('update parties set issuer = $2 where issuer = $1', [from, to]);
-  });
 }
 
 async function checkVersion(): Promise<void> {
@@ -53,12 +35,14 @@ async function seed(ownerUrl: string, storageDir: string): Promise<void> {
 }
 
 async function prepare(): Promise<void> {
-  const { DATABASE_OWNER_URL: ownerUrl, CROSSTIE_EARLIER_ISSUER: earlier, OIDC_ISSUER: issuer } = settings;
+  const { DATABASE_OWNER_URL: ownerUrl, STORAGE_DIR: storageDir, OIDC_ISSUER: issuer } = settings;
   if (ownerUrl) {
     const applied = await migrate(ownerUrl);
     if (applied.length > 0) say(`Migrated the database to ${applied.at(-1)}`);
-    if (earlier && earlier !== issuer) await moveIssuer(ownerUrl, earlier, issuer);
-    if (settings.CROSSTIE_SEED === 'true' && settings.STORAGE_DIR) await seed(ownerUrl, settings.STORAGE_DIR);
+    if (settings.CROSSTIE_LOCAL_INSTANCE === 'true' && storageDir) {
+      await moveLocalIssuer(ownerUrl, issuer);
+      await seed(ownerUrl, storageDir);
+    }
   }
   await checkVersion();
 }
