@@ -10,7 +10,7 @@ await launcher.run(async () => {
   const parts = ['first', 'second'].map((name) => launcher.start(name, {
     args: ['-e', "process.stdout.write('at work\\n'); setInterval(() => {}, 1000)"], env: process.env, logFile: join(folder, `${name}.log`),
   }));
-  while (parts.some(({ logFile }) => !lastLines(logFile))) await delay(20);
+  while (parts.some((part) => !lastLines(part))) await delay(20);
   process.stdout.write(`${JSON.stringify(parts.map(({ child }) => child.pid))}\n`);
 });
 process.exit(process.exitCode ?? 0);

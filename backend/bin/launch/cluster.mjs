@@ -114,7 +114,7 @@ export async function openCluster({ home, password, port, settings = {}, logFile
       env: environment(home), cwd: home, logFile, guard, stopSignal: 'SIGINT', ...runAs(),
     });
     if (await ready(part, data)) return { part, port: chosen, url: clusterUrl(chosen) };
-    if (await isFree(chosen)) throw new PlainError(`The database did not start (${part.ended}). Its log, ${logFile}, ends:\n${lastLines(logFile)}`);
+    if (await isFree(chosen)) throw new PlainError(`The database did not start (${part.ended}). Its log, ${logFile}, ends:\n${lastLines(part)}`);
     chosen = await freePortFrom(chosen + 1);
   }
   throw new PlainError(`The database found no free port near ${chosen}.`);

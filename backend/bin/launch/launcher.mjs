@@ -73,7 +73,7 @@ export class Launcher {
 
   #onCrash(part) {
     if (this.stopping) return;
-    complain(`\nThe ${part.name} ended unexpectedly (${part.ended}); everything else is being stopped. Its log, ${part.logFile}, ends:\n${lastLines(part.logFile)}`);
+    complain(`\nThe ${part.name} ended unexpectedly (${part.ended}); everything else is being stopped. Its log, ${part.logFile}, ends:\n${lastLines(part)}`);
     process.exitCode = 1;
     this.stopping = true;
     void this.stop();

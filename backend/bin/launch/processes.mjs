@@ -1,6 +1,6 @@
 /** Long-lived child processes: started in groups of their own, watched, stopped in order. */
 import { spawn } from 'node:child_process';
-import { closeSync, existsSync, openSync, renameSync, statSync } from 'node:fs';
+import { closeSync, existsSync, fstatSync, openSync, renameSync, statSync } from 'node:fs';
 import { once } from 'node:events';
 import { fileURLToPath } from 'node:url';
 
@@ -36,9 +36,10 @@ function openLog(file) {
  */
 export function startProcess(name, { command = process.execPath, args, env, logFile, guard, stopSignal = 'SIGTERM', ...options }) {
   const log = openLog(logFile);
+  const logStart = fstatSync(log).size;
   const child = spawn(command, args, { stdio: ['ignore', log, log], env, detached: true, ...options });
   closeSync(log);
-  const part = { name, logFile, child, stopping: false, ended: undefined, onUnexpectedEnd: undefined };
+  const part = { name, logFile, logStart, child, stopping: false, ended: undefined, onUnexpectedEnd: undefined };
   if (child.pid) guard?.watch(child.pid, stopSignal);
   part.exited = new Promise((resolve) => {
     const finish = (how) => {

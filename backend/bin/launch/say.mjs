@@ -18,13 +18,13 @@ export function fail(error) {
   process.exitCode = 1;
 }
 
-/** The last lines of a log, read from its end so that its length does not matter. */
-export function lastLines(file, count = 15) {
+/** The last lines of a log that were written after its first `from` bytes; read from its end, whatever its length. */
+export function lastLines({ logFile: file, logStart: from = 0 }, count = 15) {
   if (!file || !existsSync(file)) return '';
   const handle = openSync(file, 'r');
   try {
     const { size } = fstatSync(handle);
-    const bytes = Buffer.alloc(Math.min(size, 8192));
+    const bytes = Buffer.alloc(Math.min(Math.max(size - from, 0), 8192));
     readSync(handle, bytes, 0, bytes.length, size - bytes.length);
     return bytes.toString('utf8').trimEnd().split('\n').slice(-count).join('\n');
   } finally {

@@ -15,7 +15,7 @@ export async function waitFor(url, { part, launcher, seconds = 60 }) {
   const end = Date.now() + seconds * 1000;
   while (!(await answers(url))) {
     if (launcher.stopping) throw new PlainError('stopping');
-    if (Date.now() > end) throw new PlainError(`The ${part.name} does not answer at ${url} after ${seconds} s. Its log, ${part.logFile}, ends:\n${lastLines(part.logFile)}`);
+    if (Date.now() > end) throw new PlainError(`The ${part.name} does not answer at ${url} after ${seconds} s. Its log, ${part.logFile}, ends:\n${lastLines(part)}`);
     await delay(100);
   }
 }
