@@ -134,7 +134,7 @@ export const DECLARED_FAULTS: readonly DeclaredFault[] = [
   },
   {
     name: 'half subcarrier', code: 'half-subcarrier-shift', kinds: ['lte-uplink'], wish: (random) => ({ uplink: true, halfSubcarrierShift: random.chance(0.5) }), must: ['halfSubcarrierShift'], standard: false, told: 'air',
-    deviate: ({ declared }) => ({ ...declared, halfSubcarrierShift: !declared.halfSubcarrierShift }),
+    deviate: ({ declared, air }) => (air.halfSubcarrierShift ? { ...declared, halfSubcarrierShift: !declared.halfSubcarrierShift } : null),
   },
   {
     name: 'advance', code: 'timing-offset', kinds: ['nr'], must: ['nTaOffset'], standard: true, told: 'nothing',

@@ -77,8 +77,11 @@ function downlinkAir(spec: LteSpec, capture: CaptureSpec): Record<string, AirExp
   };
 }
 
+/** Below, a recorder's ±2 ppm stay under half of the 7.5 kHz, and the shift can be told from an offset. */
+const TELLING_MHZ = 1600;
+
 function drawUplink(random: Random, wish: Wish): Drawn {
-  const band = random.pick(BANDS);
+  const band = random.pick(wish.halfSubcarrierShift === undefined ? BANDS : BANDS.filter((b) => b.upLow < TELLING_MHZ));
   const resourceBlocks = random.pick([25, 50, 100].filter((n) => n === 25 || LTE_BANDWIDTH_HZ[n] * 1.1 <= (wish.maxRateHz ?? Infinity)));
   const earfcn = band.upFirst + random.integer(100, 10 * (band.high - band.low) - 100);
   const allocatedBlocks = random.pick([15, 20, 25, 50, 75, 100].filter((n) => n <= resourceBlocks));
@@ -101,7 +104,7 @@ function drawUplink(random: Random, wish: Wish): Drawn {
       technology: { oneOf: ['lte', 'ofdm'] },
       subcarrierSpacingHz: { value: 15000, tol: 75 },
       cyclicPrefix: { oneOf: [spec.prefix] },
-      halfSubcarrierShift: { oneOf: [spec.halfSubcarrierShift] },
+      ...(spec.carrierHz < TELLING_MHZ * 1e6 ? { halfSubcarrierShift: { oneOf: [spec.halfSubcarrierShift] } } : {}),
     },
   };
 }

@@ -15,7 +15,7 @@ import { drawSide, type SideWish } from './sides.js';
 
 export const KINDS = ['nr', 'lte', 'lte-uplink', 'wifi', 'ofdm', 'nothing'] as const;
 export type ScenarioKind = (typeof KINDS)[number];
-export const RELATIONS = ['clean', 'one-wrong', 'agreed', 'one-sided', 'capture', 'snapshots-only', 'capture-only'] as const;
+export const RELATIONS = ['clean', 'one-wrong', 'both-wrong', 'agreed', 'one-sided', 'capture', 'snapshots-only', 'capture-only'] as const;
 export type Relation = (typeof RELATIONS)[number];
 
 export interface ScenarioOptions extends Wish {
@@ -30,7 +30,7 @@ export function randomScenario(seed: number, options: ScenarioOptions = {}): Sce
   const random = new Random(seed, 'scenario');
   for (let tries = 0; tries < 500; tries++) {
     const kind = options.kind ?? random.pick(['nr', 'nr', 'nr', 'nr', 'nr', 'lte', 'wifi', 'ofdm', 'lte-uplink', 'nothing'] as const);
-    const relation = options.relation ?? random.pick(['clean', 'clean', 'one-wrong', 'one-wrong', 'one-wrong', 'one-wrong', 'agreed', 'one-sided', 'capture', 'snapshots-only', 'capture-only'] as const);
+    const relation = options.relation ?? random.pick(['clean', 'clean', 'one-wrong', 'one-wrong', 'one-wrong', 'one-wrong', 'both-wrong', 'agreed', 'one-sided', 'capture', 'snapshots-only', 'capture-only'] as const);
     const spec = attempt(random, { kind, relation, options, id: `s${seed}` });
     if (spec) return spec;
   }
@@ -93,21 +93,34 @@ function clean(random: Random, drawn: Drawn, id: string): ScenarioSpec {
 function withFault(random: Random, { drawn, fault, relation, id }: { drawn: Drawn; fault: DeclaredFault; relation: Relation; id: string }): ScenarioSpec | null {
   const wrong = fault.deviate(drawn, random);
   if (!wrong || (fault.told === 'nothing' && relation !== 'one-wrong' && relation !== 'snapshots-only')) return null;
+  const alsoWrong = relation === 'both-wrong' ? secondWrong(random, { drawn, fault, wrong }) : null;
+  if (relation === 'both-wrong' && !alsoWrong) return null;
   const wish: SideWish = { must: fault.must, never: fault.never ?? [], standard: fault.standard };
   const letter = random.pick(['a', 'b'] as const);
   const side = (declared: Declared): SideSpec => drawSide(random, declared, wish);
   const base = frame(random, drawn, { id, group: fault.code, about: `${fault.name}: ${relation}, side ${letter}` });
   const isAgreed = relation === 'agreed';
-  const other = relation === 'one-sided' ? null : side(isAgreed ? wrong : drawn.declared);
+  const other = relation === 'one-sided' ? null : side(alsoWrong ?? (isAgreed ? wrong : drawn.declared));
   const sides = letter === 'a' ? { sideA: side(wrong), sideB: other } : { sideA: other, sideB: side(wrong) };
   const isAlone = relation === 'snapshots-only';
-  const found: HintSide[] = isAgreed ? [base.transmitter ?? 'unknown'] : sidesOf(fault, letter, isAlone);
+  const found: HintSide[] = alsoWrong ? ['both'] : isAgreed ? [base.transmitter ?? 'unknown'] : sidesOf(fault, letter, isAlone);
   const expect: Expectation = {
     hint: { code: fault.code, side: found },
     allowed: (fault.allowed ?? []).map((code) => ({ code, side: found })),
     air: isAlone ? {} : drawn.air,
   };
   return { ...base, capture: isAlone ? null : base.capture, ...(isAlone ? { transmitter: null } : {}), ...sides, expect };
+}
+
+/** A wrong setting that differs from the first; only where the air shows that both are. */
+function secondWrong(random: Random, { drawn, fault, wrong }: { drawn: Drawn; fault: DeclaredFault; wrong: Declared }): Declared | null {
+  if (fault.told !== 'air' || fault.code === 'not-permitted') return null;
+  const [name] = fault.must;
+  for (let tries = 0; tries < 10; tries++) {
+    const other = fault.deviate(drawn, random);
+    if (other && other[name] !== wrong[name]) return other;
+  }
+  return null;
 }
 
 function sidesOf(fault: DeclaredFault, letter: Side, isAlone: boolean): HintSide[] {
