@@ -14,6 +14,8 @@ interface LinkRow { id: string; programmeId: string; interface: LinkInterface; n
 
 /** Files an issue, in one transaction: the issue, its files, the first decode, the next move, the mail. */
 export async function fileIssue(services: Services, caller: Caller, issue: NewIssue): Promise<{ programme: string; number: string }> {
+  // Sent twice at once, the second waits for the first and answers the same.
+  await services.database.rows("select pg_advisory_xact_lock(hashtextextended('crosstie.file.' || $1, 0))", [issue.fileKey]);
   const earlier = await services.database.row<{ programme: string; number: string }>(
     'select g.code as programme, i.number from issues i join programmes g on g.id = i.programme_id where i.raised_by = access.person() and i.file_key = $1', [issue.fileKey]);
   if (earlier) return earlier;
@@ -25,7 +27,7 @@ export async function fileIssue(services: Services, caller: Caller, issue: NewIs
   const filed = await insertIssue(services, by, { issue, link });
   await attachAll(services, filed.id, issue);
   const eventId = await recordEvent(services, by, { issueId: filed.id, programmeId: link.programmeId, kind: 'filed', text: `filed the issue on ${link.name}` });
-  await setNextMove(services, by, { issueId: filed.id, programmeId: link.programmeId, partyAId: link.partyAId, partyBId: link.partyBId, move: issue.nextMove ?? firstMove(standing, link) });
+  await setNextMove(services, by, { issueId: filed.id, programmeId: link.programmeId, partyAId: link.partyAId, partyBId: link.partyBId, move: issue.nextMove ?? firstMove(standing, link), withoutLetter: true });
   await services.database.change('insert into followers (issue_id, programme_id, person_id, party_id) values ($1, $2, access.person(), $3)', [filed.id, link.programmeId, standing.partyId]);
   if (issue.captureFileId || issue.snapshotAFileId || issue.snapshotBFileId) {
     await enqueueDecode(services, by, { issueId: filed.id, programmeId: link.programmeId, inputs: issue });

@@ -10,10 +10,12 @@ export interface MoveTarget {
   readonly partyAId: string;
   readonly partyBId: string;
   readonly move: { partyId: string; ask: string; due: string | null; cause?: WaitingCause | undefined };
+  /** Another letter of the same happening says it too. */
+  readonly withoutLetter?: boolean;
 }
 
 /** Ends the current waiting interval and starts the next: one party at a time has the next move. */
-export async function setNextMove(services: Services, by: { caller: Caller; standing: Standing }, { issueId, programmeId, partyAId, partyBId, move }: MoveTarget): Promise<void> {
+export async function setNextMove(services: Services, by: { caller: Caller; standing: Standing }, { issueId, programmeId, partyAId, partyBId, move, withoutLetter }: MoveTarget): Promise<void> {
   const { database } = services;
   const party = await database.row<{ name: string }>('select p.name from shares s join parties p on p.id = s.party_id where s.issue_id = $1 and s.party_id = $2', [issueId, move.partyId]);
   if (!party) throw notFound();
@@ -24,7 +26,7 @@ export async function setNextMove(services: Services, by: { caller: Caller; stan
   [programmeId, issueId, move.partyId, move.ask, cause, move.due]);
   const side = move.partyId === partyAId ? 'a' : move.partyId === partyBId ? 'b' : null;
   const eventId = await recordEvent(services, by, { issueId, programmeId, kind: 'next-move', side, text: `asked ${party.name} to ${move.ask}${move.due ? `, due ${move.due}` : ''}` });
-  await queueMail(services, { issueId, kind: 'next-move', eventId });
+  if (!withoutLetter) await queueMail(services, { issueId, kind: 'next-move', eventId });
 }
 
 export async function endNextMove(services: Services, issueId: string): Promise<void> {

@@ -7,6 +7,7 @@ import { up as outboxAudit } from './0006-outbox-audit.js';
 import { up as queue } from './0007-queue.js';
 import { up as derivedValues } from './0008-derived-values.js';
 import { up as narrowerPolicies } from './0009-narrower-policies.js';
+import { up as mailReaders } from './0010-mail-readers.js';
 
 /** Numbered and append-only: a migration that has landed is never edited, a later one corrects it. */
 export const MIGRATIONS: readonly { name: string; up: string }[] = [
@@ -19,4 +20,5 @@ export const MIGRATIONS: readonly { name: string; up: string }[] = [
   { name: '0007-queue', up: queue },
   { name: '0008-derived-values', up: derivedValues },
   { name: '0009-narrower-policies', up: narrowerPolicies },
+  { name: '0010-mail-readers', up: mailReaders },
 ];
