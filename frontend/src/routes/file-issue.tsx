@@ -1,7 +1,7 @@
 import { useQuery } from '@tanstack/react-query';
 import { useState, type FormEvent } from 'react';
 import { useNavigate, useSearchParams } from 'react-router-dom';
-import { useMe } from '../app/me.js';
+import { useMe, usePartyIds } from '../app/me.js';
 import { Cautions } from '../components/ui/cautions.js';
 import { Refused } from '../components/ui/refused.js';
 import { useTitle } from '../components/ui/title.js';
@@ -32,7 +32,8 @@ export function FileIssuePage() {
   const uploads = useUploads(code);
   const files = storedOf(uploads.items);
   const { draft, link, filled, builds, set } = useDraft(files, links?.items ?? [], search.get('link'));
-  const sending = useSending(uploads, link);
+  const ownPartyIds = usePartyIds(code);
+  const sending = useSending(uploads, link, ownPartyIds);
   const file = useFileIssue();
   const navigate = useNavigate();
   const [fileKey] = useState(newKey);
@@ -58,7 +59,7 @@ export function FileIssuePage() {
         <DroppedFiles uploads={uploads} link={link} sending={sending} />
       </section>
       <form className="filing-form" onSubmit={send}>
-        <IssueForm draft={draft} set={set} links={links?.items ?? []} link={link} filled={filled} builds={builds} parties={people?.parties ?? []} refused={file.error instanceof Refusal ? file.error : null} />
+        <IssueForm draft={draft} set={set} links={links?.items ?? []} link={link} filled={filled} builds={builds} parties={people?.parties ?? []} ownPartyIds={ownPartyIds} refused={file.error instanceof Refusal ? file.error : null} />
         <Refused error={file.error} />
         {unsided && <p className="notice waits">Say for each snapshot which side it describes; without that it takes no part in the comparison.</p>}
         {stuck > 0 && <p className="notice waits">{stuck === 1 ? 'One file is' : `${stuck} files are`} not here yet and will not be part of the issue.</p>}

@@ -1,5 +1,5 @@
 import { useState } from 'react';
-import { REACHES, type Reach, type Side } from '#shared/vocabulary';
+import { REACHES, type FileKind, type Reach, type Side } from '#shared/vocabulary';
 import { Cautions } from '../../components/ui/cautions.js';
 import { Select } from '../../components/ui/field.js';
 import { Refused } from '../../components/ui/refused.js';
@@ -11,7 +11,8 @@ import { UploadLine } from '../../components/uploads/upload-line.js';
 import { isRaw } from '../../lib/uploads/kinds.js';
 import { useUploads } from '../../lib/uploads/use-uploads.js';
 
-const REACH_WORDS: Record<Reach, string> = { everyone: 'everyone on the issue', 'my-party': 'my party only', 'compare-only': 'compare only (snapshots)' };
+const REACH_WORDS: Record<Reach | 'usual', string> = { usual: 'as usual: snapshots compare only, the rest everyone', everyone: 'everyone on the issue', 'my-party': 'my party only', 'compare-only': 'compare only (snapshots)' };
+const isSided = (kind: FileKind): boolean => kind === 'snapshot' || kind === 'glossary';
 
 /** More files for an issue: sent, read and shown first, then put on it. */
 export function AddFiles({ programme, sides, attach, close }: {
@@ -20,18 +21,18 @@ export function AddFiles({ programme, sides, attach, close }: {
 }) {
   const uploads = useUploads(programme);
   const [side, setSide] = useState<Side | ''>('');
-  const [reach, setReach] = useState<Reach>('everyone');
+  const [reach, setReach] = useState<Reach | 'usual'>('usual');
   const ready = uploads.items.flatMap((i) => (i.state === 'done' && i.stored ? [i.stored.id] : []));
   const busy = uploads.items.some((i) => i.state === 'sending' || i.state === 'reading');
   const add = (files: File[]): void => uploads.add(files, (item) => ({
-    ...(side ? { side } : {}), ...(side && item.kind === 'snapshot' ? { ownerPartyId: sides[side].id } : {}),
-    ...(reach === 'compare-only' && item.kind !== 'snapshot' ? {} : { reach }),
+    ...(side && isSided(item.kind) ? { side, ownerPartyId: sides[side].id } : {}),
+    ...(reach === 'usual' || (reach === 'compare-only' && !isSided(item.kind)) ? {} : { reach }),
   }));
   return (
     <div className="panel mb-4">
       <div className="fields">
         <Select label="Describes or comes from" none="neither side in particular" value={side} options={[['a', `side A, ${sides.a.name}`], ['b', `side B, ${sides.b.name}`]]} onChange={(e) => setSide(e.target.value as Side)} />
-        <Select label="Reaches" value={reach} options={REACHES.map((r) => [r, REACH_WORDS[r]] as const)} onChange={(e) => setReach(e.target.value as Reach)} />
+        <Select label="Reaches" value={reach} options={(['usual', ...REACHES] as const).map((r) => [r, REACH_WORDS[r]] as const)} onChange={(e) => setReach(e.target.value as Reach)} />
       </div>
       <DropZone small onFiles={add}><p>Drop captures, snapshots or other files here.</p></DropZone>
       {uploads.items.map((item) => (

@@ -7,7 +7,7 @@ import { UploadLine } from '../../components/uploads/upload-line.js';
 import { isRaw, isWav, KIND_LABELS } from '../../lib/uploads/kinds.js';
 import type { UploadItem } from '../../lib/uploads/queue.js';
 import type { Uploads } from '../../lib/uploads/use-uploads.js';
-import type { Sending } from './sending.js';
+import { usualReach, type Sending } from './sending.js';
 
 interface FilesProps { uploads: Uploads; link: Link | null; sending: Sending }
 
@@ -30,10 +30,10 @@ function Taken({ item, link, sending }: { item: UploadItem; link: Link | null; s
           <option value="b">side B{link ? `, ${link.b.party.name}` : ''}</option>
         </select><span className="hidden-text"> {name}</span></label>
       )}
-      <label>reaches <select className="input" value={reach ?? 'everyone'} onChange={(e) => sending.take(item, { reach: e.target.value as Reach })}>
+      <label>reaches <select className="input" value={reach ?? usualReach(item.kind)} onChange={(e) => sending.take(item, { reach: e.target.value as Reach })}>
         <option value="everyone">everyone on the issue</option>
-        {item.kind === 'snapshot' && <option value="compare-only">compare only</option>}
-        <option value="my-party">its owner only</option>
+        {sided && <option value="compare-only">compare only</option>}
+        {sending.ownedByReader(item) && <option value="my-party">my party only</option>}
       </select><span className="hidden-text"> {name}</span></label>
     </div>
   );

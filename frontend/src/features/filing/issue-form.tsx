@@ -10,7 +10,7 @@ import type { Draft } from './draft.js';
 
 interface FormProps {
   draft: Draft; set: (change: Partial<Draft>) => void; links: readonly Link[]; link: Link | null; filled: ReadonlySet<string>;
-  builds: { a: readonly Option[]; b: readonly Option[] }; parties: readonly PartyRef[]; refused: Refusal | null;
+  builds: { a: readonly Option[]; b: readonly Option[] }; ownPartyIds: ReadonlySet<string>; parties: readonly PartyRef[]; refused: Refusal | null;
 }
 
 const fromFiles = (filled: ReadonlySet<string>, name: string): string | undefined => (filled.has(name) ? 'Read from the files; change it where they are wrong.' : undefined);
@@ -26,9 +26,9 @@ function LinkPart({ draft, set, links, link, filled, builds, refused }: FormProp
   );
 }
 
-function SharePart({ draft, set, link, parties }: FormProps) {
+function SharePart({ draft, set, link, parties, ownPartyIds }: FormProps) {
   const sides = new Set(link ? [link.a.party.id, link.b.party.id] : []);
-  const others = parties.filter((p) => !sides.has(p.id));
+  const others = parties.filter((p) => !sides.has(p.id) && !ownPartyIds.has(p.id));
   const toggle = (id: string, on: boolean): void => set({ shareWith: on ? [...draft.shareWith, id] : draft.shareWith.filter((x) => x !== id) });
   return (
     <fieldset className="fieldset">
@@ -43,7 +43,7 @@ function MovePart({ draft, set, parties }: FormProps) {
   return (
     <fieldset className="fields">
       <legend className="legend">Who moves next</legend>
-      <Select label="Party" none="nobody yet" value={draft.movePartyId} options={parties.map((p): Option => [p.id, p.name])} onChange={(e) => set({ movePartyId: e.target.value })} />
+      <Select label="Party" none="the other end of the link, to take it up" value={draft.movePartyId} options={parties.map((p): Option => [p.id, p.name])} onChange={(e) => set({ movePartyId: e.target.value })} />
       {draft.movePartyId && <TextField label="Asked to" required maxLength={500} value={draft.moveAsk} onChange={(e) => set({ moveAsk: e.target.value })} />}
       {draft.movePartyId && <TextField label="By" type="date" value={draft.moveDue} onChange={(e) => set({ moveDue: e.target.value })} />}
     </fieldset>

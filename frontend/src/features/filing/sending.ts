@@ -1,4 +1,4 @@
-import { useEffect, useRef } from 'react';
+import { useEffect } from 'react';
 import type { UploadFields } from '#shared/api/files';
 import type { Link } from '#shared/api/links';
 import type { FileKind, Reach, Side } from '#shared/vocabulary';
@@ -6,10 +6,19 @@ import { sideByName } from '../../lib/uploads/kinds.js';
 import type { UploadItem } from '../../lib/uploads/queue.js';
 import type { Uploads } from '../../lib/uploads/use-uploads.js';
 
+/** What the reader said of one file; the rest of its fields follows from the link and from the other files. */
+export interface Taken { kind: FileKind; side: Side | undefined; reach: Reach }
 export interface Sending {
   add: (files: File[]) => void;
-  take: (item: UploadItem, change: { kind?: FileKind; side?: Side | undefined; reach?: Reach }) => void;
+  take: (item: UploadItem, change: Partial<Taken>) => void;
+  /** Whether a file would belong to the reader's own party, which alone may keep it to itself. */
+  ownedByReader: (item: UploadItem) => boolean;
 }
+
+const isSided = (kind: FileKind): boolean => kind === 'snapshot' || kind === 'glossary';
+/** A configuration shows no more than the comparison needs until its sender says otherwise. */
+export const usualReach = (kind: FileKind): Reach => (isSided(kind) ? 'compare-only' : 'everyone');
+const allowedReach = (kind: FileKind, reach: Reach | undefined): Reach => (!reach || (reach === 'compare-only' && !isSided(kind)) ? usualReach(kind) : reach);
 
 const wordsOf = (link: Link | null, side: Side): string[] => {
   if (!link) return [];
@@ -17,53 +26,64 @@ const wordsOf = (link: Link | null, side: Side): string[] => {
   return [party.shortName, party.name, unit.name.replace(/[^\w]/g, '')];
 };
 
-/** A snapshot belongs to the party whose unit it describes, whoever sends it. */
-function fieldsFor(kind: FileKind, side: Side | undefined, reach: Reach | undefined, link: Link | null): Partial<UploadFields> {
-  const owned = link && side && kind !== 'capture' ? { ownerPartyId: link[side].party.id } : {};
-  const allowed = reach === 'compare-only' && kind !== 'snapshot' ? 'everyone' : reach;
-  return { ...(side && kind !== 'capture' ? { side } : {}), ...(allowed ? { reach: allowed } : {}), ...owned };
-}
-
-/** The side that a snapshot speaks of by its name; else the one that has none yet. */
-function guessSide(name: string, link: Link | null, taken: readonly (Side | undefined)[]): Side | undefined {
-  const byName = sideByName(name, { a: wordsOf(link, 'a'), b: wordsOf(link, 'b') });
-  if (byName) return byName;
+/** The side that a file speaks of by its name; else, for a snapshot, the one that has none yet. */
+function guessSide(item: UploadItem, link: Link | null, taken: readonly (Side | undefined)[]): Side | undefined {
+  const byName = sideByName(item.name, { a: wordsOf(link, 'a'), b: wordsOf(link, 'b') });
+  if (byName || item.kind !== 'snapshot') return byName ?? undefined;
   if (!taken.includes('a')) return 'a';
   return taken.includes('b') ? undefined : 'b';
 }
 
+/** A side's glossary that has arrived; its snapshot is read with it. */
+const glossaryOf = (items: readonly UploadItem[], side: Side | undefined): string | undefined =>
+  items.findLast((i) => i.kind === 'glossary' && i.state === 'done' && i.fields.side === side)?.stored?.id;
+
+/** A snapshot belongs to the party whose unit it describes, whoever sends it. */
+function fieldsOf({ kind, side, reach }: Taken, link: Link | null, items: readonly UploadItem[]): Partial<UploadFields> {
+  if (!isSided(kind)) return { reach: allowedReach(kind, reach) };
+  const glossaryFileId = kind === 'snapshot' && side ? glossaryOf(items, side) : undefined;
+  return {
+    reach: allowedReach(kind, reach), ...(side ? { side } : {}), ...(link && side ? { ownerPartyId: link[side].party.id } : {}),
+    ...(glossaryFileId ? { glossaryFileId } : {}),
+  };
+}
+
+const takenAs = (item: UploadItem): Taken => ({ kind: item.kind, side: item.fields.side, reach: allowedReach(item.kind, item.fields.reach) });
+const sameFields = (x: Partial<UploadFields>, y: Partial<UploadFields>): boolean =>
+  x.side === y.side && x.reach === y.reach && x.ownerPartyId === y.ownerPartyId && x.glossaryFileId === y.glossaryFileId;
+
 /**
- * Sends dropped files with side, owner and reach. Side and owner hang on the link, which may be
- * chosen after the drop: snapshots whose owner changes by it are sent again.
+ * Sends dropped files with side, owner, reach and glossary. Owner and glossary may only be known after
+ * the drop, once the link is chosen or the glossary has arrived: what was sent without is sent again.
  */
-export function useSending(uploads: Uploads, link: Link | null): Sending {
+export function useSending(uploads: Uploads, link: Link | null, ownPartyIds: ReadonlySet<string>): Sending {
   const { items, resend } = uploads;
-  const linkId = link?.id ?? null;
-  const sentFor = useRef(linkId);
   useEffect(() => {
-    if (sentFor.current === linkId) return;
-    sentFor.current = linkId;
     for (const item of items) {
-      const { side, reach, ownerPartyId } = item.fields;
-      const fields = fieldsFor(item.kind, side, reach, link);
-      if (item.state === 'done' && fields.ownerPartyId !== ownerPartyId) resend(item.key, { fields });
+      if (item.state !== 'done') continue;
+      const fields = fieldsOf(takenAs(item), link, items);
+      if (!sameFields(fields, item.fields)) resend(item.key, { fields });
     }
-  }, [linkId, link, items, resend]);
+  }, [items, link, resend]);
 
   return {
     add: (files) => {
       const taken = items.filter((i) => i.kind === 'snapshot').map((i) => i.fields.side);
       uploads.add(files, (item) => {
-        const sided = item.kind === 'snapshot' || item.kind === 'glossary';
-        const side = sided ? guessSide(item.name, link, item.kind === 'snapshot' ? taken : []) : undefined;
+        const side = isSided(item.kind) ? guessSide(item, link, item.kind === 'snapshot' ? taken : []) : undefined;
         if (item.kind === 'snapshot') taken.push(side);
-        return fieldsFor(item.kind, side, undefined, link);
+        return fieldsOf({ kind: item.kind, side, reach: usualReach(item.kind) }, link, items);
       });
     },
     take: (item, change) => {
       const kind = change.kind ?? item.kind;
-      const side = 'side' in change ? change.side : item.fields.side;
-      resend(item.key, { kind, fields: fieldsFor(kind, side, change.reach ?? item.fields.reach, link) });
+      const before = takenAs(item);
+      const taken: Taken = { kind, side: 'side' in change ? change.side : before.side, reach: change.reach ?? (change.kind ? usualReach(kind) : before.reach) };
+      resend(item.key, { kind, fields: fieldsOf(taken, link, items) });
+    },
+    ownedByReader: (item) => {
+      const { side } = item.fields;
+      return !isSided(item.kind) || (link !== null && side !== undefined && ownPartyIds.has(link[side].party.id));
     },
   };
 }

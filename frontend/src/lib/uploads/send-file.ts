@@ -1,15 +1,14 @@
 import { ENDPOINTS } from '#shared/api/endpoints';
 import { storedFile, type StoredFile, type UploadFields } from '#shared/api/files';
+import { searchOf } from '../call.js';
 import { noConnection, refusalFrom } from '../refusal.js';
 
 export type UploadEndpoint = 'uploadCapture' | 'uploadSnapshot' | 'uploadGlossary' | 'uploadAttachment';
 export interface Upload { endpoint: UploadEndpoint; file: File; fields: UploadFields; onProgress: (sentBytes: number, totalBytes: number) => void }
 export interface RunningUpload { done: Promise<StoredFile>; cancel: () => void }
 
-/** The fields go first: the server checks access and quota before it takes a byte of the file. */
-function formOf({ file, fields }: Upload): FormData {
+function formOf(file: File): FormData {
   const form = new FormData();
-  for (const [name, value] of Object.entries(fields)) if (value !== undefined) form.append(name, String(value));
   form.append('file', file, file.name);
   return form;
 }
@@ -26,10 +25,11 @@ export function sendFile(given: Upload): RunningUpload {
       if (request.status >= 200 && request.status < 300) resolve(storedFile.parse(body));
       else reject(refusalFrom(request.status, body));
     });
-    request.open('POST', ENDPOINTS[given.endpoint].path);
+    // What the file is for stands in the address: the server decides on it before it takes a byte.
+    request.open('POST', ENDPOINTS[given.endpoint].path + searchOf(given.fields));
     request.setRequestHeader('accept', 'application/json');
     request.setRequestHeader('x-crosstie', '1');
-    request.send(formOf(given));
+    request.send(formOf(given.file));
   });
   return { done, cancel: () => request.abort() };
 }
