@@ -1,6 +1,7 @@
 import type { DetectionContext, TechnologyFinding, Tried } from '../types.js';
 import { findTraining } from './bursts.js';
 import { nameOtherFrames } from './dsss.js';
+import { credibleFrames } from './evidence.js';
 import { wifiFinding } from './finding.js';
 import { readFrame } from './frame.js';
 import type { Frame } from './frame.js';
@@ -18,11 +19,6 @@ const MOST_CANDIDATES = 40;
 const MOST_MISSES = 16;
 /** Preamble and every signalling field, nominal µs. */
 const PREAMBLE_US = 52;
-
-/** One frame whose long training stands out this far needs no second: some 10⁻⁶ by chance in 40 candidates. */
-const SURE_SCORE = 4.5;
-/** Two frames with less must agree in frequency, Hz. */
-const AGREE_HZ = 60_000;
 
 export interface WifiSurvey {
   readonly finding: TechnologyFinding | null;
@@ -61,11 +57,11 @@ function framesWithClock(context: DetectionContext, clock: ClockDivisor): Frame[
     const iq = source.read(start, Math.min(span + overlap, source.samples - start));
     if (w > 0 && frames.length === 0 && isSteady(iq)) break;
     frames.push(...framesIn(context, { iq, start, clock }));
-    const believed = credible(frames);
+    const believed = credibleFrames(frames);
     if (believed.length >= ENOUGH_FRAMES || (w > 0 && believed.length > 0)) break;
     frames = [...frames].slice(0, 4 * ENOUGH_FRAMES);
   }
-  return credible(frames);
+  return credibleFrames(frames);
 }
 
 /** A level without gaps: the frames of a shared channel come in bursts, so looking on is of no use. */
@@ -107,18 +103,4 @@ const SAME_FRAME_US = 16;
 
 function startSample({ preamble }: Frame, perUs: number): number {
   return preamble.piece.startSample + preamble.startUs * perUs;
-}
-
-/** Frames that chance does not explain: a sure one, or two at the same frequency; and those that agree with them. */
-function credible(frames: readonly Frame[]): Frame[] {
-  const near = (a: Frame, b: Frame) => a.preamble.piece.inverted === b.preamble.piece.inverted
-    && Math.abs(centredOffset(a) - centredOffset(b)) < AGREE_HZ;
-  return frames.filter((a) => a.preamble.score >= SURE_SCORE || frames.some((b) => b !== a && near(a, b)));
-}
-
-/** Offset of the frame's 20 MHz raster: subchannels of one wide channel count as one place. */
-function centredOffset(frame: Frame): number {
-  const { offsetHz, clock } = frame.preamble.piece;
-  const raster = 20e6 / clock;
-  return offsetHz - raster * Math.round(offsetHz / raster);
 }

@@ -1,7 +1,10 @@
 import type { AirValue } from '#shared/decode';
 import type { DetectionContext, SymbolGrid, TechnologyFinding, Tried } from '../types.js';
 import { encodedTones, knownSymbolFit, softSymbol } from './field.js';
-import type { CarrierRest, Frame } from './frame.js';
+import { placeChannel } from './channel.js';
+import type { ChannelPlace } from './channel.js';
+import { frameEvidence } from './evidence.js';
+import type { Frame } from './frame.js';
 import { measureGuard } from './guard-interval.js';
 import type { GuardMeasurement } from './guard-interval.js';
 import { LAYOUT, TONE_SPACING_HZ } from './training.js';
@@ -23,27 +26,28 @@ export function wifiFinding(context: DetectionContext, frames: readonly Frame[])
   const { clock, inverted } = lead.preamble.piece;
   const wide = lead.format === 'he' || lead.format === 'eht';
   const spacingHz = (wide ? TONE_SPACING_HZ / 4 : TONE_SPACING_HZ) / clock;
-  const carrier = carrierOffset(group, guard);
+  const place = placeChannel(group.slice(0, MOST_MEASURED), guard, lead.signal?.channels ?? null);
   const bursts = `${frames.length} preamble${frames.length > 1 ? 's' : ''}`;
   const air: Record<string, AirValue> = {
     technology: known('wifi', `short and long training of ${bursts}`),
     subcarrierSpacingHz: known(spacingHz, wide ? 'repeated L-SIG: HE or EHT data' : `training at ${20 / clock} MHz clock, ${formatName(lead)} frames`),
     usefulSymbolS: known(1 / spacingHz, 'format of the frames'),
     ...prefixValues(guard, { clock, known, absent }),
-    carrierOffsetHz: known(carrier.hz, carrier.method),
+    carrierOffsetHz: known(place.hz, place.placed ? 'DC tone of the long training, refined by known symbols and guard intervals'
+      : 'fractional: the capture does not show where in its channel the preamble lies'),
     spectrumInverted: known(inverted, 'sense in which the long training fits'),
     ...qualityValues(group, known, absent),
     sampleClockOffsetPpm: absent('the frames are too short to measure a drift of their symbols'),
     frameFormat: known(formatName(lead), 'rotation, repetition and parity of the signalling fields'),
   };
-  if (carrier.channelHz !== null) air.channelBandwidthHz = known(carrier.channelHz, 'subchannels that carry the preamble');
+  if (place.widthHz !== null) air.channelBandwidthHz = known(place.widthHz, 'subchannels that carry the preamble');
   return {
     technology: 'wifi', confidence, spectrumInverted: inverted, air,
-    announced: announced(lead), grid: grid(context, lead, { guard, carrierHz: carrier.hz, spacingHz }), tried: notes(frames, lead, guard),
+    announced: announced(lead), grid: grid(context, lead, { guard, place, spacingHz }), tried: notes(frames, lead, guard),
   };
 }
 
-/** Frames of the format that counts: the newest present, and of it the variant with the most data time. */
+/** Frames of the format that counts: the newest present, and of it the variant with the most data time; those whose field was not read go with it. */
 function mainGroup(frames: readonly Frame[]): Frame[] {
   const newer = frames.filter((frame) => frame.format !== 'legacy');
   const groups = new Map<string, Frame[]>();
@@ -51,15 +55,17 @@ function mainGroup(frames: readonly Frame[]): Frame[] {
     const key = JSON.stringify([frame.format, announced(frame)]);
     groups.set(key, [...(groups.get(key) ?? []), frame]);
   }
-  const time = (group: readonly Frame[]) => group.reduce((sum, { dataStartUs, dataEndUs }) => sum + dataEndUs - dataStartUs, 0);
+  const time = (group: readonly Frame[]) => group.reduce((sum, { dataStartUs, dataEndUs, signal }) => sum + (dataEndUs - dataStartUs) * (signal ? 1 : 0.01), 0);
   const best = [...groups.values()].reduce((a, b) => (time(b) > time(a) ? b : a));
-  return [...best].sort((a, b) => b.preamble.score - a.preamble.score);
+  const unread = best[0].signal ? newer.filter((frame) => frame.format === best[0].format && !frame.signal) : [];
+  const rank = ({ signal, preamble }: Frame) => (signal ? 100 : 0) + preamble.score;
+  return [...best, ...unread].sort((a, b) => rank(b) - rank(a));
 }
 
-/** Against chance: long training of a frame among 40 candidates and 150 places, L-SIG's checks an eighth; frames are independent. */
+/** Frames are independent: their evidence adds. */
 function presence(frames: readonly Frame[]): number {
-  const log = frames.reduce((sum, frame) => sum + Math.min(0, Math.log(6000) - frame.preamble.score ** 2 - (frame.legacy ? 2 : 0) - (frame.signal ? 3 : 0)), 0);
-  return Math.min(0.9995, 1 - 0.0005 - Math.min(0.5, Math.exp(log)));
+  const nats = frames.reduce((sum, frame) => sum + Math.max(0, frameEvidence(frame)), 0);
+  return 0.9995 - Math.min(0.5, Math.exp(-nats));
 }
 
 function prefixValues(guard: GuardMeasurement | null, at: { clock: number; known: Known; absent: (reason: string) => AirValue }): Record<string, AirValue> {
@@ -74,40 +80,6 @@ function prefixValues(guard: GuardMeasurement | null, at: { clock: number; known
     cyclicPrefix: at.known(PREFIX_NAMES[guardUs], method, guard.confidence),
     cyclicPrefixS: at.known(guardUs * 1e-6 * at.clock, method, guard.confidence),
   };
-}
-
-function channelsAnnounced(frame: Frame): number | null {
-  return frame.signal ? frame.signal.channels : null;
-}
-
-/** DC tone of the whole channel: the middle of its subchannels; the data's prefix refines the frequency. Median over frames. */
-function carrierOffset(group: readonly Frame[], guard: GuardMeasurement | null): { hz: number; method: string; channelHz: number | null } {
-  const { piece, channels } = group[0].preamble;
-  const width = 20e6 / piece.clock;
-  const told = channelsAnnounced(group[0]) ?? channels.length;
-  const hz = weightedMean(group.slice(0, MOST_MEASURED).flatMap((frame, i) => {
-    const seen = told < frame.preamble.channels.length ? [0] : frame.preamble.channels;
-    const coarse = frame.preamble.piece.offsetHz + ((seen[0] + seen[seen.length - 1]) / 2) * width;
-    return [frame.rest, guard?.rest[i]].flatMap((rest) => (rest ? [{ hz: coarse + rest.hz, varianceHz2: rest.varianceHz2 }] : [{ hz: coarse, varianceHz2: 1e8 }]));
-  }));
-  if (told > channels.length) {
-    const raster = TONE_SPACING_HZ / piece.clock;
-    return { hz: hz - raster * Math.round(hz / raster), method: 'fractional: the channel reaches beyond what the capture shows', channelHz: null };
-  }
-  return { hz, method: 'DC tone of the long training, refined by the data\'s guard intervals', channelHz: told * width };
-}
-
-/** Frames that lie elsewhere (another transmitter, a subchannel missed) are left out: the mean is of those near the median. */
-function weightedMean(values: readonly CarrierRest[]): number {
-  const sorted = values.map(({ hz }) => hz).sort((a, b) => a - b);
-  const middle = sorted[sorted.length >> 1];
-  let sum = 0, weights = 0;
-  for (const { hz, varianceHz2 } of values) {
-    if (Math.abs(hz - middle) > 20_000) continue;
-    sum += hz / (varianceHz2 + 1);
-    weights += 1 / (varianceHz2 + 1);
-  }
-  return sum / weights;
 }
 
 function qualityValues(group: readonly Frame[], known: Known, absent: (reason: string) => AirValue): Record<string, AirValue> {
@@ -149,7 +121,7 @@ function formatName(frame: Frame): string {
   return { legacy: 'legacy', ht: 'HT mixed', 'ht-greenfield': 'HT greenfield', vht: 'VHT', he: 'HE', eht: 'EHT', unknown: 'unknown' }[frame.format];
 }
 
-function grid(context: DetectionContext, frame: Frame, at: { guard: GuardMeasurement | null; carrierHz: number; spacingHz: number }): SymbolGrid | null {
+function grid(context: DetectionContext, frame: Frame, at: { guard: GuardMeasurement | null; place: ChannelPlace; spacingHz: number }): SymbolGrid | null {
   if (!at.guard || at.guard.confidence < 0.8) return null;
   const rate = context.source.sampleRateHz;
   const { piece, startUs } = frame.preamble;
@@ -159,8 +131,8 @@ function grid(context: DetectionContext, frame: Frame, at: { guard: GuardMeasure
     usefulSamples: rate / at.spacingHz,
     prefixSamples: [at.guard.hypothesis.guardUs * perUs],
     subcarrierSpacingHz: at.spacingHz,
-    referenceHz: at.carrierHz,
-    placed: true,
+    referenceHz: at.place.hz,
+    placed: at.place.placed,
   };
 }
 

@@ -101,7 +101,7 @@ function readNewer(read: Reading): Frame | null {
   if (read.legacy.rateMbps !== 6) return null;
   const [one, two] = [20, 24].map((us) => softSymbol(read.preamble, read.channel, { us, phase: read.phase(us) }));
   if (!one || !two) return null;
-  return heFrame(read, one) ?? htFrame(read, [one, two]) ?? vhtFrame(read, [one, two]);
+  return heFrame(read, one) ?? htFrame(read, [one, two]) ?? vhtFrame(read, [one, two]) ?? unread(read, axis(one), axis(two));
 }
 
 /** End of the frame as L-SIG spoofs it: 20 µs and four for every three octets (IEEE 802.11-2016 clause 19.3.9.3.5). */
@@ -126,6 +126,16 @@ function vhtFrame(read: Reading, symbols: readonly SoftSymbol[]): Frame | null {
   const signal = decodeVhtSignal(join(symbols, 'legacy', [false, true]));
   if (!signal) return null;
   return { ...read, format: 'vht', signal, dataStartUs: 36 + 4 * signal.longTrainings, dataEndUs: spoofedEnd(read.legacy) };
+}
+
+/** Other symbols are 0 ± 0.13 (48 tones); QBPSK stays below −0.35 down to some 2 dB. */
+const CLEAR_AXIS = 0.35;
+
+/** Rotation tells the format even where the field's parity did not pass; the data then start no earlier than after one training. */
+function unread(read: Reading, first: number, second: number): Frame | null {
+  if (second > -CLEAR_AXIS || Math.abs(first) < CLEAR_AXIS) return null;
+  const format = first < 0 ? 'ht' : 'vht';
+  return { ...read, format, signal: null, dataStartUs: first < 0 ? 36 : 40, dataEndUs: spoofedEnd(read.legacy) };
 }
 
 /** L-SIG is sent twice in HE and EHT frames: how alike the next symbol is, −1 to 1. */

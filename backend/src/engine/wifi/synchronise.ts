@@ -1,7 +1,7 @@
 import { transformOf } from '../fourier/fft.js';
 import { shifted, turned } from './piece.js';
 import type { Piece } from './piece.js';
-import { LAYOUT, LONG_TRAINING, TONE_SPACING_HZ } from './training.js';
+import { LAYOUT, LONG_TRAINING, SHORT_TRAINING, TONE_SPACING_HZ } from './training.js';
 import { tonePlace, toneSpectrum } from './tones.js';
 
 /** A frame's legacy preamble, located. */
@@ -12,8 +12,11 @@ export interface Preamble {
   readonly startUs: number;
   /** Subchannels that carry the preamble, relative to the strongest (which is 0), rising. */
   readonly channels: readonly number[];
-  /** Its square is exponential with mean 1 for other signals. */
+  /** How the long training fits on every subchannel that the band holds, likewise relative: squares of scores. */
+  readonly fits: ReadonlyMap<number, number>;
+  /** Of the long training, and of the short one through the same channel: each square is exponential with mean 1 for other signals. */
   readonly score: number;
+  readonly shortScore: number;
 }
 
 /** The transform begins this early, so that paths before the centre of gravity stay inside the guard. */
@@ -38,7 +41,35 @@ export function synchronise(piece: Piece, nearUs: number): Preamble | null {
   const bin = best.inverted ? -best.bin : best.bin;
   const settled = shifted(upright, bin * (TONE_SPACING_HZ / piece.clock));
   const startUs = rough.atUs + best.delayUs - LAYOUT.longTrainingUs;
-  return { piece: settled, startUs, channels: occupiedChannels(settled, startUs), score: best.score };
+  const fits = channelFits(settled, startUs);
+  const channels = occupiedChannels(fits);
+  return {
+    piece: settled, startUs, channels, fits: new Map([...fits].map(([channel, { score }]) => [channel, score ** 2])),
+    score: best.score, shortScore: shortTrainingScore(settled, startUs, channels),
+  };
+}
+
+/** The twelve known tones of the short training against the channel that the long one shows. */
+function shortTrainingScore(piece: Piece, startUs: number, channels: readonly number[]): number {
+  const long = longSpectrum(piece, startUs + LAYOUT.longTrainingUs);
+  // Two stretches of four periods each, whole periods after the field's start.
+  const parts = [0.8, 4].map((us) => toneSpectrum(piece, startUs + us - EARLY_US));
+  const [first, second] = parts;
+  if (!long || !first || !second) return 0;
+  let re = 0, im = 0, energy = 1e-30;
+  for (const channel of channels) {
+    for (const [k, sign] of SHORT_TRAINING) {
+      const at = tonePlace(k, channel, long.length >> 1);
+      const known = sign * LONG_TRAINING[k + 26];
+      const yr = first[at] + second[at], yi = first[at + 1] + second[at + 1];
+      const pr = known * (yr * long[at] + yi * long[at + 1]);
+      const pi = known * (yi * long[at] - yr * long[at + 1]);
+      re += pr;
+      im += pi;
+      energy += pr * pr + pi * pi;
+    }
+  }
+  return Math.hypot(re, im) / Math.sqrt(energy);
 }
 
 /** Where 3.2 µs repeat: the field's guard and two symbols make a plateau of 1.6 µs. */
@@ -154,24 +185,33 @@ function searchTones(spectrum: Float64Array, inverted: boolean): ToneMatch[] {
   return out;
 }
 
-/** Subchannels 20 MHz apart that hold the sequence coherently, joined to the strongest without a gap. */
-function occupiedChannels(piece: Piece, startUs: number): number[] {
+interface ChannelFit { readonly score: number; readonly power: number }
+
+/** Every subchannel 20 MHz apart that the band holds; beyond its edge the bins are those of the other side. */
+function channelFits(piece: Piece, startUs: number): Map<number, ChannelFit> {
   const spectrum = longSpectrum(piece, startUs + LAYOUT.longTrainingUs);
-  if (!spectrum) return [0];
   const width = 20e6 / piece.clock;
-  const fits = (channel: number) => {
-    // Beyond the edge of the band the bins are those of the other side.
-    if (Math.abs(piece.offsetHz + channel * width) + 0.41 * width > piece.rateHz / 2) return false;
-    const { score, power } = channelFit(spectrum, channel);
-    return score > 3 && power > 0.05 * channelFit(spectrum, 0).power;
-  };
-  const out = [0];
-  for (let c = 1; c < 8 && fits(c); c++) out.push(c);
-  for (let c = -1; c > -8 && fits(c); c--) out.unshift(c);
+  const out = new Map<number, ChannelFit>();
+  for (let c = -7; c <= 7; c++) {
+    if (spectrum && Math.abs(piece.offsetHz + c * width) + 0.41 * width <= piece.rateHz / 2) out.set(c, channelFit(spectrum, c));
+  }
   return out;
 }
 
-function channelFit(spectrum: Float64Array, channel: number): { score: number; power: number } {
+/** Those that hold the sequence coherently, joined to the strongest without a gap. */
+function occupiedChannels(all: ReadonlyMap<number, ChannelFit>): number[] {
+  const least = 0.05 * (all.get(0)?.power ?? 0);
+  const fits = (channel: number) => {
+    const fit = all.get(channel);
+    return fit !== undefined && fit.score > 3 && fit.power > least;
+  };
+  const out = [0];
+  for (let c = 1; fits(c); c++) out.push(c);
+  for (let c = -1; fits(c); c--) out.unshift(c);
+  return out;
+}
+
+function channelFit(spectrum: Float64Array, channel: number): ChannelFit {
   const size = spectrum.length >> 1;
   let re = 0, im = 0, squares = 1e-30, power = 0;
   for (let k = -26; k < 26; k++) {
