@@ -29,12 +29,14 @@ export interface Parts {
   readonly services: Services;
   readonly storage: Storage;
   readonly hub: LiveHub;
+  /** How often a quiet stream of events is checked. */
+  readonly heartbeatMs?: number;
   /** The built pages; absent in API tests and in development, where Vite serves them. */
   readonly pages?: string;
 }
 
 /** The features in the order in which data flows: files, decodes, issues, thread, overview. */
-export function createApp({ services, storage, hub, pages }: Parts): Express {
+export function createApp({ services, storage, hub, heartbeatMs, pages }: Parts): Express {
   const { config, database, log } = services;
   const sessions = sqlSessionStore(database.query);
   const app = express();
@@ -54,7 +56,7 @@ export function createApp({ services, storage, hub, pages }: Parts): Express {
   app.use(downloadRouter(services, storage));
   app.use('/api', express.json({ limit: '256kb' }));
   app.use(exportRouter(services));
-  app.use(liveRouter(services, hub));
+  app.use(liveRouter(services, hub, heartbeatMs));
 
   const router = express.Router();
   const endpoints = [

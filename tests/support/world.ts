@@ -48,7 +48,7 @@ type Method = 'get' | 'post' | 'patch' | 'put' | 'delete';
 export type Requests = Record<Method, (path: string) => Test>;
 
 /** An application on a database of its own, with a programme, parties, people, links and sessions. */
-export async function createWorld(env: Record<string, string> = {}): Promise<World> {
+export async function createWorld(env: Record<string, string> = {}, live: { heartbeatMs?: number } = {}): Promise<World> {
   const database = await createTestDatabase();
   const folder = mkdtempSync(join(tmpdir(), 'crosstie-world-'));
   const config: Config = readConfig('server', {
@@ -60,7 +60,7 @@ export async function createWorld(env: Record<string, string> = {}): Promise<Wor
   await storage.prepare();
   const hub = new LiveHub(config.database.app, log);
   await hub.start();
-  const app = createApp({ services, storage, hub });
+  const app = createApp({ services, storage, hub, ...live });
   const admin = new Client({ connectionString: database.adminUrl });
   await admin.connect();
   const tenants = await plantTenants(admin);

@@ -1,7 +1,8 @@
 import pg from 'pg';
 import type { Logger } from 'pino';
 
-type Listener = (eventId: string) => void;
+/** An event's id, or null where some may have been missed. */
+type Listener = (eventId: string | null) => void;
 const CHANNEL = 'crosstie_live';
 const RETRY_MS = 1000;
 
@@ -19,7 +20,7 @@ export class LiveHub {
   async start(): Promise<void> {
     const client = new pg.Client({ connectionString: this.url, keepAlive: true });
     client.on('notification', ({ payload }) => {
-      if (payload && /^[0-9a-f-]{36}$/.test(payload)) for (const listener of this.#listeners) listener(payload);
+      if (payload && /^[0-9a-f-]{36}$/.test(payload)) this.#tell(payload);
     });
     client.on('error', (error) => this.#again(error));
     client.on('end', () => this.#again(null));
@@ -38,20 +39,25 @@ export class LiveHub {
     await this.#client?.end().catch(() => undefined);
   }
 
-  /** A lost connection comes back by itself; pages that missed something resume by their last event. */
+  #tell(eventId: string | null): void {
+    for (const listener of this.#listeners) listener(eventId);
+  }
+
+  /** A lost connection comes back by itself; what happened meanwhile nobody heard. */
   #again(error: Error | null): void {
     if (this.#stopped || !this.#client) return;
     this.#client = null;
-    if (error) this.log.warn({ error: error.message }, 'the live connection broke and is opened again');
-    setTimeout(() => {
-      this.start().catch((failed: Error) => this.#retryLater(failed));
-    }, RETRY_MS);
+    this.log.warn({ error: error?.message }, 'the live connection broke and is opened again');
+    this.#retryLater();
   }
 
-  #retryLater(error: Error): void {
-    this.log.warn({ error: error.message }, 'the live connection cannot be opened yet');
+  #retryLater(): void {
     setTimeout(() => {
-      if (!this.#stopped) this.start().catch((failed: Error) => this.#retryLater(failed));
-    }, RETRY_MS);
+      if (this.#stopped) return;
+      this.start().then(() => this.#tell(null), (failed: Error) => {
+        this.log.warn({ error: failed.message }, 'the live connection cannot be opened yet');
+        this.#retryLater();
+      });
+    }, RETRY_MS).unref();
   }
 }
