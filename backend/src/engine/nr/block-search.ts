@@ -73,7 +73,7 @@ function firstBlock(senses: BothSenses, { scan, tried, hits }: { scan: PrimarySc
     if (tried.has(key)) continue;
     tried.add(key);
     const block = blockAt(senses, scan.spacingHz, hit);
-    if (block) return block;
+    if (block) return strongerSense(senses, block, hit);
   }
   return null;
 }
@@ -99,6 +99,16 @@ export function blockAt(senses: BothSenses, spacingHz: number, hit: Pick<Primary
     secondaryStatistic: cell.statistic,
     grid,
   };
+}
+
+/** Unequal mixer arms leave a weak mirror image of a block: of the two senses the stronger is the signal. */
+function strongerSense(senses: BothSenses, block: FoundBlock, hit: PrimaryHit): FoundBlock {
+  const mirrored = blockAt(senses, block.spacingHz, { ...hit, inverted: !hit.inverted, referenceHz: -hit.referenceHz });
+  return mirrored && powerOf(mirrored) > powerOf(block) ? mirrored : block;
+}
+
+function powerOf(block: FoundBlock): number {
+  return block.grid.reduce((total, points) => total + points.reduce((sum, part) => sum + part * part, 0), 0);
 }
 
 function bestReference(grid: readonly Float64Array[], cellId: number): ReferenceMatch {
