@@ -6,8 +6,8 @@ export const PRIORS = {
   /** Two snapshots differ: one of them is at odds far more often than both. */
   bothAtOdds: 0.03,
   /** Two snapshots agree, or only one speaks: how often the radio does something else all the same. */
-  agreedButOtherwise: 0.02,
-  oneSidedAtOdds: 0.03,
+  agreedButOtherwise: 0.05,
+  oneSidedAtOdds: 0.08,
   /** A difference in the files is a finding even without the air, unless it was misread. */
   differenceIsReal: 0.97,
   /** A measured value is wrong although its own detector was sure: the floor under every likelihood. */

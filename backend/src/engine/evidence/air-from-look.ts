@@ -1,5 +1,6 @@
 import type { AirValue } from '#shared/decode';
 import type { BlindOfdm, LevelFacts, TechnologyFinding } from '../types.js';
+import { halfShift } from './half-shift.js';
 import type { Look } from './look.js';
 
 /** The contract's values from one look: a technology's own first, then what any OFDM shows. */
@@ -16,6 +17,7 @@ export function airFrom(look: Look, level: LevelFacts): Record<string, AirValue>
     ...(level.iqImbalanceDb !== null && { iqImbalanceDb: { value: level.iqImbalanceDb, confidence: 0.95, method: 'mean square of the complex samples: zero for a balanced receiver' } }),
     ...found(choice.finding?.air ?? {}),
     ...(choice.finding && numerologyOf(choice.finding, blind)),
+    ...(choice.finding === null && blind && { halfSubcarrierShift: halfShift(look, blind) }),
   };
 }
 

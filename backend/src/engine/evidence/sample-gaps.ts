@@ -19,6 +19,10 @@ export interface Gap {
 const LEAST_CORRELATION = 0.25;
 /** Stretches on each side of a jump that have to agree. */
 const WITNESSES = 3;
+/** Samples: less is the channel's or the clock's doing. */
+const LEAST_STEP = 4;
+/** Stretches over which the drift of two unlike clocks is read. */
+const DRIFT_SPAN = 8;
 
 /**
  * Samples lost while recording: from one place on all symbols come earlier than the grid says.
@@ -26,7 +30,7 @@ const WITNESSES = 3;
  * where nothing jumps. A loss of whole symbols is not seen where all symbols are equal.
  */
 export function findGap(window: Window, grid: SymbolGrid): Gap | null {
-  const timings = timingsOf(window, grid);
+  const timings = withoutDrift(timingsOf(window, grid));
   const symbol = grid.usefulSamples + grid.prefixSamples.at(-1)!;
   let best: { at: number; step: number; doubt: number } | null = null;
   for (let i = WITNESSES; i + WITNESSES <= timings.length; i += 1) {
@@ -42,13 +46,20 @@ export function findGap(window: Window, grid: SymbolGrid): Gap | null {
   };
 }
 
+/** Two clocks drift apart evenly: the median slope is theirs, a loss is not (Theil 1950). */
+function withoutDrift(timings: readonly Timing[]): Timing[] {
+  const slopes = timings.slice(DRIFT_SPAN).map((t, i) => (t.shift - timings[i]!.shift) / (t.atSample - timings[i]!.atSample));
+  const slope = slopes.length < DRIFT_SPAN ? 0 : median(slopes);
+  return timings.map((t) => ({ ...t, shift: t.shift - slope * t.atSample }));
+}
+
 function stepAt(timings: readonly Timing[], i: number, symbol: number): { step: number; doubt: number } | null {
   const before = timings.slice(Math.max(0, i - 2 * WITNESSES), i).map((t) => t.shift);
   const after = timings.slice(i, i + 2 * WITNESSES).map((t) => around(t.shift, before[0]!, symbol));
   const left = before.map((shift) => around(shift, before[0]!, symbol));
   const step = around(median(after) - median(left), 0, symbol);
   const doubt = Math.max(0.5, spread(left), spread(after));
-  return Math.abs(step) > Math.max(3, 6 * doubt) ? { step, doubt } : null;
+  return Math.abs(step) > Math.max(LEAST_STEP, 8 * doubt) ? { step, doubt } : null;
 }
 
 /** The representative of `value` nearest to `centre`, modulo `period`. */

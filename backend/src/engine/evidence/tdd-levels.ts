@@ -66,9 +66,13 @@ export interface PatternVerdict {
   readonly reason: string;
 }
 
-/** One position in the period that speaks against a pattern, as a log likelihood. */
-const ENERGY_OUTSIDE = -4;
-const QUIET_INSIDE = -1.5;
+/** What speaks against a pattern, as log likelihoods: the first symbol of a kind, and each further one. */
+const ENERGY_OUTSIDE = [-8, -4] as const;
+const QUIET_INSIDE = [-5, -1.5] as const;
+/** Share of periods with energy in a position that counts: a longer true period fills some and not others. */
+const OUTSIDE_SHARE = 0.2;
+/** Periods that have to show the same edge. */
+const LEAST_PERIODS = 2;
 
 /**
  * How well the levels fit a declared pattern. Energy in a symbol that is declared uplink refutes
@@ -77,12 +81,16 @@ const QUIET_INSIDE = -1.5;
  */
 export function patternLikelihood(levels: SymbolLevels, pattern: TddPattern): PatternVerdict {
   const seen = byPosition(levels, pattern);
-  const outside = seen.filter((p) => p.kind === 'uplink' && p.onShare > 0.5);
+  const outside = seen.filter((p) => p.kind === 'uplink' && p.onShare > OUTSIDE_SHARE);
   const downlink = seen.filter((p) => p.kind === 'downlink');
   const filled = downlink.filter((p) => p.onShare > 0.5).length / Math.max(1, downlink.length);
   const quietEdge = levels.contrastDb > 0 && filled > 0.6 ? edgeRun(downlink) : 0;
-  const logLikelihood = Math.max(-40, ENERGY_OUTSIDE * outside.length + QUIET_INSIDE * quietEdge);
+  const logLikelihood = Math.max(-40, penalty(ENERGY_OUTSIDE, outside.length) + penalty(QUIET_INSIDE, quietEdge));
   return { logLikelihood, reason: reasonOf(outside.length, quietEdge) };
+}
+
+function penalty([first, further]: readonly [number, number], count: number): number {
+  return count === 0 ? 0 : first + further * (count - 1);
 }
 
 function reasonOf(outside: number, quiet: number): string {
@@ -117,6 +125,6 @@ function kindAt(index: number, perPeriod: number, { pattern, levels }: { pattern
 /** Silent symbols in a row at the end of the downlink, seen in at least two periods. */
 function edgeRun(downlink: readonly Position[]): number {
   let run = 0;
-  for (let i = downlink.length - 1; i >= 0 && downlink[i]!.onShare < 0.1 && downlink[i]!.count >= 2; i -= 1) run += 1;
+  for (let i = downlink.length - 1; i >= 0 && downlink[i]!.onShare < 0.1 && downlink[i]!.count >= LEAST_PERIODS; i -= 1) run += 1;
   return run;
 }

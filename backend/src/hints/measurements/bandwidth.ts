@@ -1,3 +1,4 @@
+import type { AirValue } from '#shared/decode';
 import { SCATTER } from '../priors.js';
 import type { Measurement } from '../model.js';
 import type { Evidence } from '../types.js';
@@ -38,6 +39,8 @@ export function resourceBlocks(evidence: Evidence): Measurement | null {
  * not be filled.
  */
 export function channelBandwidth(evidence: Evidence): Measurement | null {
+  const frames = airNumber(evidence, 'channelBandwidthHz');
+  if (frames) return ofFrames(frames.value, frames.air);
   const occupied = airNumber(evidence, 'occupiedBandwidthHz');
   if (!occupied) return null;
   const width = occupied.value;
@@ -47,6 +50,13 @@ export function channelBandwidth(evidence: Evidence): Measurement | null {
     otherLogLikelihood: Math.log(0.3),
     logLikelihood: (setting) => (typeof setting === 'number' ? Math.log(fit(setting / width)) : 0),
   };
+}
+
+/** Channel of the frames seen: a wide channel also carries narrow frames, a narrow one no wide frames. */
+function ofFrames(seen: number, air: AirValue): Measurement {
+  const sure = certainty(air);
+  const density = (declared: number): number => (Math.abs(declared / seen - 1) < 0.02 ? sure * 0.9 : declared > seen ? 0.1 : 1 - sure);
+  return { value: seen, method: air.method ?? null, otherLogLikelihood: Math.log(0.3), logLikelihood: (setting) => Math.log(typeof setting === 'number' ? density(setting) : 0.3) };
 }
 
 function fit(ratio: number): number {

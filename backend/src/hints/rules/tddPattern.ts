@@ -1,6 +1,6 @@
 import type { Evidence, Finding, Rule } from '../types.js';
 import { basisOf } from './basis.js';
-import { judgeDifference, type Measurement } from '../model.js';
+import { judgeContradiction, judgeDifference, type Measurement } from '../model.js';
 
 /** The declared downlink-uplink patterns against the level in each symbol of the capture. */
 export const tddPattern: Rule = (evidence) => {
@@ -26,10 +26,12 @@ function fromLevels({ patterns }: Evidence): Measurement | null {
 /** Agreeing or single patterns that the level refutes. */
 function contradictedPattern(evidence: Evidence): Finding[] {
   const row = evidence.comparison.rows.find((r) => r.parameter === 'tddPeriodicity' || r.parameter === 'tddDownlinkSlots');
-  const refuted = evidence.patterns.filter((p) => p.logLikelihood < -12);
-  if (!row || refuted.length === 0 || refuted.length < evidence.patterns.length) return [];
-  const agreed = evidence.patterns.length === 2;
-  const side = agreed ? evidence.transmitter ?? 'unknown' : refuted[0]!.side;
+  if (!row || evidence.patterns.length === 0) return [];
+  const { patterns } = evidence;
+  const best = Math.max(...patterns.map((p) => p.logLikelihood));
+  const measurement: Measurement = { value: null, method: null, otherLogLikelihood: Math.log(0.3), logLikelihood: () => best };
+  const verdict = judgeContradiction(null, measurement, { sides: patterns.map((p) => p.side), transmitter: evidence.transmitter });
+  if (!verdict) return [];
   const basis = basisOf(row, evidence, { pattern: 'pattern-contradicted', measurement: null });
-  return [{ code: 'tdd-pattern', side, probability: 0.9, basis: { ...basis, facts: refuted.map((p) => p.reason) }, consequences: [] }];
+  return [{ code: 'tdd-pattern', side: verdict.side, probability: verdict.probability, basis: { ...basis, facts: [...new Set(patterns.map((p) => p.reason))] }, consequences: [] }];
 }
