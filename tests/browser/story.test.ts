@@ -61,7 +61,7 @@ async function file(page: Page, title: string): Promise<string> {
   return new URL(page.url()).pathname;
 }
 
-describe('the whole story, from a cold database', () => {
+describe('the whole story, from a cold database', { timeout: 240_000 }, () => {
   let path = '';
   let mara: Page;
 
@@ -132,7 +132,7 @@ describe('the whole story, from a cold database', () => {
   });
 });
 
-describe('a capture of each kind', () => {
+describe('a capture of each kind', { timeout: 240_000 }, () => {
   it.each([['sigmf', 'a SigMF pair'], ['wav', 'a WAV file'], ['raw', 'raw I/Q']] as const)('%s is read, filed and decoded: %s', async (format, words) => {
     const page = await openAs('mara', '/issues/new');
     await drop(page, [...sides(), ...capture(format, 600)]);
