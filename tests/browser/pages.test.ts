@@ -111,7 +111,7 @@ describe('the issue page', { timeout: 180_000 }, () => {
     expect(await page.evaluate(() => document.activeElement?.textContent)).toMatch(/skip|main|content/i);
     for (let presses = 0; presses < 60; presses++) {
       await page.keyboard.press('Tab');
-      if (await page.evaluate(() => /\/issues\/SKH\/\d{4}/.test((document.activeElement as HTMLAnchorElement | null)?.href ?? ''))) break;
+      if (await page.evaluate(() => /\/issues\/SKH\/\d{4}/.test((document.activeElement as HTMLElement | null)?.dataset.row ?? (document.activeElement as HTMLAnchorElement | null)?.href ?? ''))) break;
     }
     await page.keyboard.press('Enter');
     await page.waitForURL(/\/issues\/SKH\/\d{4}/);
