@@ -33,11 +33,8 @@ const ACTIONS = {
 } as const satisfies Record<string, readonly Role[]>;
 
 export type Action = keyof typeof ACTIONS;
+export const ACTION_NAMES = Object.keys(ACTIONS) as readonly Action[];
 
 export function may(role: Role, action: Action): boolean {
   return (ACTIONS[action] as readonly Role[]).includes(role);
-}
-
-export function actionsOf(role: Role): Action[] {
-  return (Object.keys(ACTIONS) as Action[]).filter((action) => may(role, action));
 }

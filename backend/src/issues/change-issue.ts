@@ -1,6 +1,6 @@
 import type { ChangeIssue } from '#shared/api/issues';
 import { LADDERS, type LinkInterface } from '#shared/vocabulary';
-import type { GrantedIssue } from '../access/rules.js';
+import { refuseUnless, type GrantedIssue } from '../access/rules.js';
 import { conflict, forbidden, invalid } from '../http/problems.js';
 import type { Caller, Services } from '../http/services.js';
 import { recordEvent } from './record.js';
@@ -26,6 +26,7 @@ export async function changeIssue(services: Services, caller: Caller, { issue, c
   const before = await beforeOf(services, issue.issueId);
   const wanted = changed(before, fields(change));
   if (wanted.length === 0) return;
+  if (wanted.some(([field]) => field !== 'severity')) refuseUnless(issue.standing, 'edit-issue');
   refuseUnknownRungs(wanted, before.interface);
   const bind: unknown[] = [issue.issueId, issue.version];
   const sets = wanted.map(([field, value]) => {

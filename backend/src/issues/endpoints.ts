@@ -19,7 +19,7 @@ export const issueEndpoints: Mounted[] = [
   endpoint('fileIssue', signedIn, ({ services, caller, body }) => fileIssue(services, caller, body)),
   endpoint('readIssue', onIssue('read'), ({ services, granted }) => readIssue(services, granted)),
 
-  endpoint('changeIssue', onIssue('edit-issue'), async ({ services, caller, body, granted }) => {
+  endpoint('changeIssue', onIssue('change-severity'), async ({ services, caller, body, granted }) => {
     await changeIssue(services, caller, { issue: granted, change: body });
     return readIssue(services, granted);
   }),

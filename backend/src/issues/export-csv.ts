@@ -11,7 +11,7 @@ const HEADINGS = ['number', 'what is wrong', 'link', 'side A', 'side B', 'severi
 
 /** A cell that a spreadsheet would take for a formula starts with an apostrophe (OWASP, CSV injection). */
 export function guarded(cell: string): string {
-  return /^[=+\-@\t\r]/.test(cell) ? `'${cell}` : cell;
+  return /^(?:[\t\r\n]|\s*[=+\-@＝＋－＠])/u.test(cell) ? `'${cell}` : cell;
 }
 
 function line(row: RegisterRow): string[] {

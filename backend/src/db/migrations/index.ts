@@ -9,6 +9,7 @@ import { up as derivedValues } from './0008-derived-values.js';
 import { up as narrowerPolicies } from './0009-narrower-policies.js';
 import { up as mailReaders } from './0010-mail-readers.js';
 import { up as missedEvents } from './0011-missed-events.js';
+import { up as rolesInPolicies } from './0012-roles-in-policies.js';
 
 /** Numbered and append-only: a migration that has landed is never edited, a later one corrects it. */
 export const MIGRATIONS: readonly { name: string; up: string }[] = [
@@ -23,4 +24,5 @@ export const MIGRATIONS: readonly { name: string; up: string }[] = [
   { name: '0009-narrower-policies', up: narrowerPolicies },
   { name: '0010-mail-readers', up: mailReaders },
   { name: '0011-missed-events', up: missedEvents },
+  { name: '0012-roles-in-policies', up: rolesInPolicies },
 ];
