@@ -26,6 +26,6 @@ export function evidenceOf(scene: Scene): Evidence {
   const comparison = compareSnapshots(read(scene.a), read(scene.b), { link: 'air', air, announced: scene.announced ?? {}, centreFrequencyHz });
   return {
     comparison, air, given: { a: scene.a !== undefined, b: scene.b !== undefined }, transmitter: scene.transmitter ?? null,
-    capture: scene.air ? { ...FACTS, centreFrequencyHz } : null, announced: scene.announced ?? {}, labels: [], gaps: null, patterns: [], ...scene.rest,
+    capture: scene.air ? { ...FACTS, centreFrequencyHz } : null, announced: scene.announced ?? {}, labels: [], gaps: null, patterns: [], under: [], ...scene.rest,
   };
 }

@@ -5,7 +5,7 @@ import { ENGINE } from '#engine/version';
 import type { OpenedCapture } from '../captures/formats/openCapture.js';
 import { decide } from '../hints/decide.js';
 import { lookNext } from '../hints/look-next.js';
-import { FULL_VIEW, type Evidence } from '../hints/types.js';
+import { FULL_VIEW, type Evidence, type UnderSettings } from '../hints/types.js';
 import { writeHint } from '../hints/wording/writeHint.js';
 import { compareSnapshots } from '../snapshots/compare.js';
 import type { Comparison, SnapshotReading } from '../snapshots/types.js';
@@ -76,7 +76,13 @@ function evidenceOf(inputs: DecodeInputs, comparison: Comparison, analysis: Anal
     labels: analysis?.labels ?? [],
     gaps: analysis?.gaps ?? null,
     patterns: analysis?.patterns ?? [],
+    under: underSettings(analysis),
   };
+}
+
+function underSettings(analysis: Analysis | null): UnderSettings[] {
+  return (analysis?.plots.demodulations ?? []).flatMap(({ under, closes, evmPercent, evmRandomPercent }) =>
+    under === 'air' || evmPercent === null || evmRandomPercent === null ? [] : [{ side: under, closes, evmPercent, evmRandomPercent }]);
 }
 
 /** What the reader of the samples met on the way. */

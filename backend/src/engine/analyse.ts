@@ -8,7 +8,8 @@ import { findGap, type Gap } from './evidence/sample-gaps.js';
 import { declaredPatterns, type SidedPattern } from './evidence/declared-patterns.js';
 import type { TddPattern } from './evidence/tdd-levels.js';
 import { levelFacts } from './level/front-end.js';
-import { plotsOf } from './plots/plots.js';
+import { demodulations } from './plots/demodulations.js';
+import { errorOfData, plotsOf } from './plots/plots.js';
 import type { LevelFacts, Tried } from './types.js';
 
 /** What one side declares of the signal; null where it is silent. */
@@ -47,10 +48,12 @@ export function analyse(recording: Recording, options: AnalyseOptions): Analysis
   const doubted = readThroughDoubt(recording, options);
   const { look } = doubted;
   const level = levelFacts(look.window.iq);
-  const air = complete(airFrom(look, level));
+  const measured = airFrom(look, level);
+  const demodulated = demodulations(look, measured, options);
+  const air = complete(measured['evmPercent']?.value == null ? { ...measured, ...errorOfData(demodulated) } : measured);
   const gaps = gapsIn(recording, look);
   const patterns = declaredPatterns(look, options.declared);
-  const plots = plotsOf(look, options);
+  const plots = plotsOf(look, demodulated);
   return {
     facts: factsOf(recording, doubted, level),
     air,

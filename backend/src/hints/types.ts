@@ -31,6 +31,14 @@ export interface PatternLikelihood {
   readonly reason: string;
 }
 
+/** How the constellation stood under one side's settings. */
+export interface UnderSettings {
+  readonly side: Side;
+  readonly closes: boolean;
+  readonly evmPercent: number;
+  readonly evmRandomPercent: number;
+}
+
 /** Everything that the rules may rest on. Rules read it and never each other. */
 export interface Evidence {
   readonly comparison: Comparison;
@@ -42,6 +50,7 @@ export interface Evidence {
   readonly labels: readonly LabelFinding[];
   readonly gaps: GapFinding | null;
   readonly patterns: readonly PatternLikelihood[];
+  readonly under: readonly UnderSettings[];
 }
 
 /** How the evidence of one finding hangs together; the words are built from it, per reader. */

@@ -26,8 +26,18 @@ export function basisOf(row: ComparisonRow, evidence: Evidence, given: { pattern
     clause: row.clause ?? parameterFacts(row.parameter)?.clause ?? null,
     transmitter: evidence.transmitter,
     facts: [],
-    sideFacts: {},
+    sideFacts: constellationFacts(row.parameter, evidence),
   };
+}
+
+const SEEN_IN_CONSTELLATION = new Set(['subcarrierSpacing', 'numerology', 'cyclicPrefix', 'guardInterval', 'fftSize', 'sampleRate', 'technology']);
+
+/** Where spacing or prefix is at odds, the constellation under each side's settings shows it. */
+function constellationFacts(parameter: string, evidence: Evidence): Basis['sideFacts'] {
+  if (!SEEN_IN_CONSTELLATION.has(parameter)) return {};
+  return Object.fromEntries(evidence.under.map(({ side, closes, evmPercent, evmRandomPercent }) => [side, [
+    `Demodulated under side ${side.toUpperCase()}'s settings the constellation ${closes ? 'closes' : 'stays open'}: EVM ${evmPercent.toFixed(1)} %, random points would give ${evmRandomPercent.toFixed(1)} %`,
+  ]]));
 }
 
 /** The basis of a finding about the recording: the first fact is its summary. */
