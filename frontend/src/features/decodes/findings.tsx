@@ -12,12 +12,12 @@ function Value({ name, found }: { name: string; found: AirValue }) {
 function Known({ names, air }: { names: readonly string[]; air: DecodeResult['air'] }) {
   return (
     <div className="sheet scroller" tabIndex={0} role="group" aria-label="What the air shows">
-      <table className="data tight-rows findings">
-        <thead><tr><th scope="col">Property</th><th scope="col">Value</th><th scope="col" className="n">Sure</th><th scope="col">How it is known</th></tr></thead>
-        <tbody>
+      <table className="data tight-rows findings" role="table">
+        <thead role="rowgroup"><tr role="row"><th role="columnheader" scope="col">Property</th><th role="columnheader" scope="col">Value</th><th role="columnheader" scope="col" className="n">Sure</th><th role="columnheader" scope="col">How it is known</th></tr></thead>
+        <tbody role="rowgroup">
           {names.map((name) => {
             const found = air[name]!;
-            return <tr key={name}><td>{airLabel(name)}</td><td><Value name={name} found={found} /></td><td className="n fig">{found.confidence === undefined ? '' : `${probability(found.confidence)} %`}</td><td className="soft">{found.method ?? ''}</td></tr>;
+            return <tr key={name} role="row"><td role="cell">{airLabel(name)}</td><td role="cell"><Value name={name} found={found} /></td><td role="cell" className="n fig">{found.confidence === undefined ? '' : `${probability(found.confidence)} %`}</td><td role="cell" className="soft">{found.method ?? ''}</td></tr>;
           })}
         </tbody>
       </table>
