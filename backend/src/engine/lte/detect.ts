@@ -15,6 +15,7 @@ import { neighbourCoherence, ReferenceSymbols, slotCoherence } from './reference
 import type { FramePlace } from './reference.js';
 import { resolveSecondary } from './secondary.js';
 import type { CellSync } from './secondary.js';
+import { detectUplink } from './uplink.js';
 import { symbolRows, transformStart } from './rows.js';
 import type { Cut, Rows } from './rows.js';
 
@@ -43,7 +44,7 @@ export interface LteSurvey {
   readonly tried: readonly Tried[];
 }
 
-/** LTE downlink in the capture, or null; see `surveyLte`. */
+/** LTE in the capture, or null; see `surveyLte`. */
 export function detectLte(context: DetectionContext): TechnologyFinding | null {
   return surveyLte(context).finding;
 }
@@ -51,7 +52,8 @@ export function detectLte(context: DetectionContext): TechnologyFinding | null {
 /**
  * Looks for an LTE downlink carrier anywhere in the band, of either duplex mode, prefix and
  * sense: prefix repetition, primary and secondary synchronisation signals, cell-specific
- * reference symbols, broadcast channel. `tried` says what was found or missed on the way.
+ * reference symbols, broadcast channel; where there is none, for a terminal's uplink. `tried`
+ * says what was found or missed on the way.
  */
 export function surveyLte(context: DetectionContext): LteSurvey {
   const { source } = context;
@@ -85,7 +87,9 @@ function look(context: DetectionContext, at: { startSample: number; seconds: num
     if (measured) return { finding: lteFinding(context, window, measured), tried, again: measured.broadcast === null };
     tried.push({ what: `LTE cell ${sync.cellId}`, result: 'synchronisation signals may fit, reference symbols do not' });
   }
-  return { finding: null, tried, again: true };
+  const uplink = detectUplink(context, window, fits);
+  if (!uplink) tried.push({ what: 'LTE uplink', result: 'no reference symbols of a single-carrier allocation' });
+  return { finding: uplink, tried, again: uplink === null };
 }
 
 interface Found { readonly rows: Rows; readonly sync: CellSync }
