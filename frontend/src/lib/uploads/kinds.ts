@@ -3,7 +3,7 @@ import type { UploadEndpoint } from './send-file.js';
 
 /** A first guess by name, for choosing where to send a file; the server decides by content. */
 const RULES: readonly (readonly [RegExp, FileKind])[] = [
-  [/\.(sigmf|sigmf-meta|sigmf-data|wav|pcap|pcapng|iq|cf32|cf64|cs16|ci16|cs8|ci8|cu8|cfile|raw|dat|bin)$/i, 'capture'],
+  [/\.(sigmf|sigmf-meta|sigmf-data|wav|pcap|pcapng|iq|cf32|cf64|cs16|ci16|sc16|cs8|ci8|cu8|cfile|raw|dat|bin)$/i, 'capture'],
   [/glossary[^/]*\.(ya?ml|json)$/i, 'glossary'],
   [/\.(json|ya?ml|xml|conf|cfg|ini|txt|properties)$/i, 'snapshot'],
 ];
@@ -17,12 +17,12 @@ export const KIND_LABELS: Record<FileKind, string> = {
 };
 
 /** Raw I/Q says nothing about itself: format and rate have to be stated before it is sent. */
-export const isRaw = (name: string): boolean => /\.(iq|cf32|cf64|cs16|ci16|cs8|ci8|cu8|cfile|raw|dat|bin)$/i.test(name);
+export const isRaw = (name: string): boolean => /\.(iq|cf32|cf64|cs16|ci16|sc16|cs8|ci8|cu8|cfile|raw|dat|bin)$/i.test(name);
 /** WAV carries its rate and format, not its centre. */
 export const isWav = (name: string): boolean => /\.wav$/i.test(name);
 
 export const DATATYPES = ['cf32_le', 'ci16_le', 'ci16_be', 'ci8', 'cu8', 'cf32_be', 'ci32_le', 'cf64_le', 'cu16_le'] as const;
-const BY_ENDING: Record<string, string> = { cf32: 'cf32_le', cfile: 'cf32_le', cf64: 'cf64_le', cs16: 'ci16_le', ci16: 'ci16_le', cs8: 'ci8', ci8: 'ci8', cu8: 'cu8' };
+const BY_ENDING: Record<string, string> = { cf32: 'cf32_le', cfile: 'cf32_le', cf64: 'cf64_le', cs16: 'ci16_le', ci16: 'ci16_le', sc16: 'ci16_le', cs8: 'ci8', ci8: 'ci8', cu8: 'cu8' };
 export const guessedDatatype = (name: string): string => BY_ENDING[name.split('.').at(-1)?.toLowerCase() ?? ''] ?? '';
 
 export type PairPart = 'data' | 'meta';
