@@ -1,4 +1,4 @@
-import { periodOf, type Hypothesis } from './hypotheses.js';
+import { periodOf, uniformPrefix, type Hypothesis } from './hypotheses.js';
 import { lagSums, type LagSums } from './lag-sums.js';
 import type { Prepared, Stretch } from './prepare.js';
 import { rescore, type Scored } from './score.js';
@@ -18,16 +18,34 @@ export interface Refined {
 const BLOCKS_PER_PREFIX = 24;
 
 export function refine(window: Prepared, coarse: Scored): Refined {
-  const { hypothesis } = coarse;
-  const hop = Math.max(1, Math.floor((hypothesis.cyclicPrefixS * window.rateHz) / BLOCKS_PER_PREFIX));
+  const hop = Math.max(1, Math.floor((coarse.hypothesis.cyclicPrefixS * window.rateHz) / BLOCKS_PER_PREFIX));
   const sums = hop < coarse.sums.hop ? lagSums(window, coarse.sums.lag, hop) : coarse.sums;
   const fine = hop < coarse.sums.hop ? rescore({ sums, rateHz: window.rateHz }, coarse) : coarse;
-  const scored = fine.best && fine.score > 0.6 * coarse.score ? fine : coarse;
+  const placed = fine.best && fine.score > 0.6 * coarse.score ? fine : coarse;
+  const scored = placed.hypothesis.family === 'free' ? withPeriod(window, placed) : placed;
+  const { hypothesis } = scored;
   const { match, origin } = scored.best!;
   const period = (periodOf(hypothesis) * window.rateHz) / scored.sums.hop;
   const start = (origin + match.phase * period) * scored.sums.hop;
   const residueHz = Math.atan2(match.im, match.re) / (2 * Math.PI * hypothesis.usefulS);
   return { scored, start, residueHz, snr: prefixSnr(window, { sums: scored.sums, start, hypothesis, angle: Math.atan2(match.im, match.re) }) };
+}
+
+/** A free hypothesis's period sharpened: an error of a hundredth of the prefix adds up from symbol to symbol. */
+function withPeriod(window: Prepared, placed: Scored): Scored {
+  const { usefulS, longEvery } = placed.hypothesis;
+  if (longEvery !== null) return placed;
+  const length = placed.spans.blocks.reduce((n, s) => Math.max(n, s.to - s.from), 0) * placed.spans.hop;
+  const symbols = Math.max(8, length / (window.rateHz * periodOf(placed.hypothesis)) * placed.hypothesis.prefixesS.length);
+  let best = placed;
+  for (let step = placed.hypothesis.cyclicPrefixS / symbols, i = 0; i < 9; i++) {
+    const around = [-step, step].map((d) => uniformPrefix({ usefulS, cyclicPrefixS: best.hypothesis.cyclicPrefixS + d, family: 'free' }))
+      .map((hypothesis) => rescore({ sums: best.sums, rateHz: window.rateHz }, { ...best, hypothesis }));
+    const better = around.find((s) => s.score > best.score);
+    if (better) best = better;
+    else step /= 2;
+  }
+  return best;
 }
 
 interface Placed { sums: LagSums; start: number; hypothesis: Hypothesis; angle: number }

@@ -1,0 +1,95 @@
+import { transformOf } from '../fourier/fft.js';
+import type { SymbolGrid, Window } from '../types.js';
+import { resample } from '../vector/resample.js';
+
+/** Subcarrier values of consecutive symbols. */
+export interface Symbols {
+  /** Interleaved complex, symbol after symbol, `width` subcarriers each. */
+  readonly values: Float64Array;
+  readonly width: number;
+  readonly count: number;
+  /** Number of the first subcarrier, counted in spacings from the grid's reference frequency. */
+  readonly first: number;
+  readonly subcarrierSpacingHz: number;
+  readonly referenceHz: number;
+}
+
+export interface SymbolRange {
+  /** First sample of the stretch, and how many samples it has, in the capture. */
+  readonly from: number;
+  readonly to: number;
+  /** Band whose subcarriers are wanted, Hz against the capture's zero. */
+  readonly lowHz: number;
+  readonly highHz: number;
+}
+
+/**
+ * Symbols of a grid that lie wholly within a stretch of a window. The stretch is brought to a
+ * rate at which the useful symbol is a whole power of two; the transform begins half-way
+ * through the prefix, and the phase ramp of that is taken out again.
+ */
+export function symbolsOf(window: Window, grid: SymbolGrid, range: SymbolRange): Symbols {
+  const spacing = grid.subcarrierSpacingHz;
+  const size = transformSize(window.sampleRateHz, spacing, range);
+  const middle = grid.referenceHz + spacing * Math.round(((range.lowHz + range.highHz) / 2 - grid.referenceHz) / spacing);
+  const rate = size * spacing;
+  const origin = range.from;
+  const part = window.iq.subarray(2 * (origin - window.startSample), 2 * (range.to - window.startSample));
+  const iq = resample(part, window.sampleRateHz, rate, { shiftHz: -middle, startSample: origin });
+  const lowest = Math.max(-size / 2 + 1, Math.ceil((range.lowHz - middle) / spacing));
+  const highest = Math.min(size / 2 - 1, Math.floor((range.highHz - middle) / spacing));
+  const width = Math.max(0, highest - lowest + 1);
+  const scale = rate / window.sampleRateHz;
+  const places = symbolPlaces(grid, range).map(({ at, prefix }) => ({ at: (at - origin) * scale, prefix: prefix * scale }));
+  const values = transformed(iq, places, { size, lowest, width });
+  return {
+    values, width, count: values.length / (2 * width || 1), first: lowest + Math.round((middle - grid.referenceHz) / spacing),
+    subcarrierSpacingHz: spacing, referenceHz: grid.referenceHz,
+  };
+}
+
+function transformSize(rateHz: number, spacing: number, { lowHz, highHz }: SymbolRange): number {
+  const needed = Math.min(1.02 * rateHz, 1.3 * (highHz - lowHz)) / spacing;
+  return 2 ** Math.max(4, Math.ceil(Math.log2(needed)));
+}
+
+/** Where symbols begin (their prefixes) and how long these are, in the capture's samples. */
+export function symbolPlaces(grid: SymbolGrid, { from, to }: { from: number; to: number }): { at: number; prefix: number; index: number }[] {
+  const { prefixSamples, usefulSamples, startSample } = grid;
+  const period = prefixSamples.reduce((a, b) => a + b, 0) + prefixSamples.length * usefulSamples;
+  const out: { at: number; prefix: number; index: number }[] = [];
+  let round = Math.floor((from - startSample) / period) - 1;
+  for (let at = startSample + round * period; at < to; round++, at = startSample + round * period) {
+    let place = at;
+    prefixSamples.forEach((prefix, l) => {
+      if (place >= from && place + prefix + usefulSamples <= to) out.push({ at: place, prefix, index: round * prefixSamples.length + l });
+      place += prefix + usefulSamples;
+    });
+  }
+  return out;
+}
+
+interface Cut { size: number; lowest: number; width: number }
+
+function transformed(iq: Float32Array, places: { at: number; prefix: number }[], { size, lowest, width }: Cut): Float64Array {
+  const input = new Float64Array(2 * size);
+  const output = new Float64Array(2 * size);
+  const inside = places.filter(({ at, prefix }) => at >= 0 && Math.ceil(at + prefix) + size <= iq.length >> 1);
+  const values = new Float64Array(2 * width * inside.length);
+  inside.forEach(({ at, prefix }, s) => {
+    const begin = Math.round(at + prefix / 2);
+    input.set(iq.subarray(2 * begin, 2 * (begin + size)));
+    transformOf(size).forward(input, output);
+    const early = at + prefix - begin;
+    for (let i = 0; i < width; i++) {
+      const k = lowest + i;
+      const bin = (k + size) % size;
+      const angle = (2 * Math.PI * k * early) / size;
+      const c = Math.cos(angle);
+      const d = Math.sin(angle);
+      values[2 * (s * width + i)] = output[2 * bin] * c - output[2 * bin + 1] * d;
+      values[2 * (s * width + i) + 1] = output[2 * bin] * d + output[2 * bin + 1] * c;
+    }
+  });
+  return values;
+}
