@@ -21,14 +21,16 @@ export async function writeAudit(services: Services, caller: Caller, line: Audit
 }
 
 /**
- * A refusal, in a transaction of its own because the request's is rolled back. It goes to the
- * record of each programme of the caller: which one was meant may be just what was refused.
+ * A refusal, in a transaction of its own because the request's is rolled back. It goes to the record
+ * of the programme that the address names, where the caller is in it, and else to that of each
+ * programme of the caller: which one was meant may be just what was refused.
  */
-export async function writeRefusal(services: Services, caller: Caller, refused: { action: string; path: string; status: number }): Promise<void> {
+export async function writeRefusal(services: Services, caller: Caller, refused: { action: string; path: string; status: number; programme?: string | undefined }): Promise<void> {
   try {
     await services.database.asPerson(caller.personId, async () => {
-      const programmes = await services.database.rows<{ id: string }>('select id from programmes');
-      for (const { id } of programmes) {
+      const programmes = await services.database.rows<{ id: string; code: string }>('select id, code from programmes');
+      const named = programmes.filter(({ code }) => code === refused.programme);
+      for (const { id } of named.length > 0 ? named : programmes) {
         await writeAudit(services, caller, { programmeId: id, partyId: null, action: refused.action, object: refused.path, detail: `answered ${refused.status}`, outcome: 'refused' });
       }
     });

@@ -1,8 +1,8 @@
 import contentDisposition from 'content-disposition';
-import { Router, type Response } from 'express';
+import { Router, type Request, type Response } from 'express';
 import { writeAudit } from '../access/audit.js';
 import { idParam } from '../access/rules.js';
-import { callerOf } from '../http/endpoint.js';
+import { callerOf, recordRefusal } from '../http/endpoint.js';
 import { notFound } from '../http/problems.js';
 import type { Services } from '../http/services.js';
 import type { Storage } from './storage.js';
@@ -13,14 +13,9 @@ interface Row { storageId: string; name: string; programmeId: string; partyId: s
 export function downloadRouter(services: Services, storage: Storage): Router {
   const router = Router();
   router.get('/api/files/:fileId/content', async (request, response) => {
-    const caller = callerOf(request);
-    const fileId = idParam(request.params as Record<string, string>, 'fileId');
-    const file = await services.database.asPerson(caller.personId, async () => {
-      const row = await services.database.row<Row>(`
-        select storage_id as "storageId", name, programme_id as "programmeId", party_id as "partyId", kind, withdrawn_at is not null as withdrawn from files where id = $1`, [fileId]);
-      if (!row || row.withdrawn) throw notFound();
-      await writeAudit(services, caller, { programmeId: row.programmeId, partyId: row.partyId, action: 'download', object: `${row.kind} ${row.name}`, detail: request.headers.range ?? 'whole' });
-      return row;
+    const file = await granted(services, request).catch(async (error: unknown) => {
+      await recordRefusal(services, request, { name: 'download', error });
+      throw error;
     });
     protect(response, file.name);
     // The transaction has ended: none stays open while bytes are sent.
@@ -32,6 +27,18 @@ export function downloadRouter(services: Services, storage: Storage): Router {
     });
   });
   return router;
+}
+
+async function granted(services: Services, request: Request): Promise<Row> {
+  const caller = callerOf(request);
+  const fileId = idParam(request.params as Record<string, string>, 'fileId');
+  return services.database.asPerson(caller.personId, async () => {
+    const row = await services.database.row<Row>(`
+      select storage_id as "storageId", name, programme_id as "programmeId", party_id as "partyId", kind, withdrawn_at is not null as withdrawn from files where id = $1`, [fileId]);
+    if (!row || row.withdrawn) throw notFound();
+    await writeAudit(services, caller, { programmeId: row.programmeId, partyId: row.partyId, action: 'download', object: `${row.kind} ${row.name}`, detail: request.headers.range ?? 'whole' });
+    return row;
+  });
 }
 
 function protect(response: Response, name: string): void {

@@ -21,6 +21,9 @@ export interface Received {
  * An upload lies in `incoming/` until it is whole, so that a half-sent file leaves nothing.
  */
 export class Storage {
+  /** Bytes announced by uploads that are on their way. */
+  #promised = 0;
+
   constructor(private readonly root: string) {}
 
   async prepare(): Promise<void> {
@@ -32,9 +35,14 @@ export class Storage {
     }
   }
 
-  async freeBytes(): Promise<number> {
+  /** Keeps room for bytes that are to come, beside what must stay free; answers how to give it back, or null. */
+  async promise(bytes: number, leaveFree: number): Promise<(() => void) | null> {
     const { bavail, bsize } = await statfs(this.root);
-    return bavail * bsize;
+    if (bavail * bsize < this.#promised + bytes + leaveFree) return null;
+    this.#promised += bytes;
+    return () => {
+      this.#promised -= bytes;
+    };
   }
 
   /** Takes a stream to disk, hashing on the way; past `limit` it stops and leaves nothing. */

@@ -52,9 +52,7 @@ export function endpoint<N extends EndpointName, C>(name: N, rule: Rule<C>, hand
       if (reply === undefined) response.status(204).end();
       else response.json(definition.reply.parse(reply));
     } catch (error) {
-      // Written in a transaction of its own: the request's has been rolled back.
-      const refusal = asRefusal(error);
-      if (refusal && (refusal.status === 403 || refusal.status === 404)) await writeRefusal(services, caller, { action: name, path: request.path, status: refusal.status });
+      await recordRefusal(services, request, { name, error, programme: params['programme'] });
       throw error;
     }
   };
@@ -65,6 +63,12 @@ export function endpoint<N extends EndpointName, C>(name: N, rule: Rule<C>, hand
       router[method](definition.path, (request, response) => answer(services, request, response));
     },
   };
+}
+
+/** What was refused stands in the audit record, in a transaction of its own: the request's has been rolled back. */
+export async function recordRefusal(services: Services, request: Request, { name, error, programme }: { name: string; error: unknown; programme?: string | undefined }): Promise<void> {
+  const refusal = asRefusal(error);
+  if (refusal && (refusal.status === 403 || refusal.status === 404)) await writeRefusal(services, callerOf(request), { action: name, path: request.path, status: refusal.status, programme });
 }
 
 /** The caller that the session middleware found; without one the answer is 401 whatever the path. */

@@ -10,8 +10,9 @@ type Part = 'database' | 'worker' | 'identity provider';
 /** GET /api/health: 200 when all parts are up, else 503. Only a signed-in caller learns which. */
 export function healthRouter(services: Services): Router {
   const router = Router();
+  const check = shared(() => checkParts(services));
   router.get('/api/health', async (request, response) => {
-    const parts = await checkParts(services);
+    const parts = await check();
     const up = Object.values(parts).every(Boolean);
     response.set('cache-control', 'no-store');
     response.status(up ? 200 : 503).json(isSignedIn(request) ? { up, parts } : { up });
@@ -37,4 +38,17 @@ function within(check: Promise<boolean>): Promise<boolean> {
     setTimeout(() => resolve(false), PATIENCE_MS).unref();
   });
   return Promise.race([check.catch(() => false), late]);
+}
+
+/** Anyone may ask: who asks within the same second gets the same answer, and the parts are asked once. */
+function shared<T>(ask: () => Promise<T>): () => Promise<T> {
+  let at = -Infinity;
+  let answer: Promise<T>;
+  return () => {
+    if (performance.now() - at > 1000) {
+      at = performance.now();
+      answer = ask();
+    }
+    return answer;
+  };
 }

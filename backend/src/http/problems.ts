@@ -33,6 +33,8 @@ function fromExpress(error: { status?: unknown; type?: unknown }): Refusal | nul
   if (error.status === 413) return new Refusal(413, 'too-large', 'Too large', 'The request is larger than this address takes.');
   if (error.type === 'entity.parse.failed') return new Refusal(400, 'malformed', 'Malformed', 'The body is not valid JSON.');
   if (error instanceof URIError) return notFound();
+  if (error.status === 404) return notFound();
+  if (error.status === 416) return new Refusal(416, 'range', 'No such range', 'The file is shorter than the range that was asked for.');
   if (typeof error.status === 'number' && error.status >= 400 && error.status < 500) return new Refusal(error.status, 'malformed', 'Malformed', 'The request cannot be read.');
   return null;
 }
@@ -43,7 +45,7 @@ function fromDatabase(error: { original?: { code?: string }; parent?: { code?: s
   if (code === '42501' || code === '22P02') return notFound();
   if (code === '23503') return notFound();
   if (code === '23505') return conflict('The same thing is here already.');
-  if (code === '23514' || code === '22001') return new Refusal(422, 'invalid', 'Some fields need a change', 'A value is outside what is allowed.');
+  if (code === '23514' || code === '22001' || code === '22021' || code === '22P05') return new Refusal(422, 'invalid', 'Some fields need a change', 'A value is outside what is allowed.');
   return null;
 }
 

@@ -1,9 +1,10 @@
 import type { ChangeIssue } from '#shared/api/issues';
-import { LADDERS, type LinkInterface } from '#shared/vocabulary';
+import type { LinkInterface } from '#shared/vocabulary';
 import { refuseUnless, type GrantedIssue } from '../access/rules.js';
-import { conflict, forbidden, invalid } from '../http/problems.js';
+import { conflict, forbidden } from '../http/problems.js';
 import type { Caller, Services } from '../http/services.js';
 import { recordEvent } from './record.js';
+import { refuseUnknownRungs } from './rungs.js';
 import { standingOnLink } from './standing.js';
 
 interface Before { title: string; description: string; severity: string; downlink: string | null; uplink: string | null; signalPath: string; baseline: string; buildAId: string | null; buildBId: string | null; transmitter: string | null; interface: LinkInterface }
@@ -27,7 +28,7 @@ export async function changeIssue(services: Services, caller: Caller, { issue, c
   const wanted = changed(before, fields(change));
   if (wanted.length === 0) return;
   if (wanted.some(([field]) => field !== 'severity')) refuseUnless(issue.standing, 'edit-issue');
-  refuseUnknownRungs(wanted, before.interface);
+  if (change.lastRung) refuseUnknownRungs(change.lastRung, before.interface);
   const bind: unknown[] = [issue.issueId, issue.version];
   const sets = wanted.map(([field, value]) => {
     bind.push(field === 'signalPath' ? JSON.stringify(value) : value);
@@ -57,14 +58,6 @@ function fields({ version: _version, lastRung, ...rest }: ChangeIssue): [Field, 
 function changed(before: Before, wanted: [Field, unknown][]): [Field, unknown][] {
   return wanted.filter(([field, value]) => value !== undefined
     && (field === 'signalPath' ? JSON.stringify(JSON.parse(before.signalPath)) !== JSON.stringify(value) : before[field] !== value));
-}
-
-function refuseUnknownRungs(wanted: [Field, unknown][], on: LinkInterface): void {
-  for (const [field, value] of wanted) {
-    if ((field === 'downlink' || field === 'uplink') && typeof value === 'string' && !LADDERS[on].includes(value)) {
-      throw invalid(`lastRung.${field}`, `"${value}" is not a rung of this link; its ladder is ${LADDERS[on].join(', ')}`);
-    }
-  }
 }
 
 function said(field: Field, from: unknown, to: unknown): string {

@@ -1,13 +1,11 @@
-import { onIssue, signedIn } from '../access/rules.js';
 import { writeAudit } from '../access/audit.js';
+import { idParam, onIssue, signedIn } from '../access/rules.js';
 import { attachFile } from '../files/attach-file.js';
-import { notFound } from '../http/problems.js';
 import { endpoint, type Mounted } from '../http/endpoint.js';
+import { conflict, notFound } from '../http/problems.js';
 import { moveIssue, signWaiver, target } from '../moves/move-issue.js';
 import { setNextMove } from '../moves/next-move.js';
 import { recordRetest } from '../moves/retest.js';
-import { conflict } from '../http/problems.js';
-import { idParam } from '../access/rules.js';
 import { changeIssue } from './change-issue.js';
 import { fileIssue } from './file-issue.js';
 import { readIssue } from './read-issue.js';
@@ -29,7 +27,10 @@ export const issueEndpoints: Mounted[] = [
   }),
   endpoint('setNextMove', onIssue('set-next-move'), async ({ services, caller, body, granted }) => {
     const { version, ...move } = body;
-    if (version !== granted.version) throw conflict('Somebody changed this issue while you read it. Read it again, then set the next move.');
+    if (['settled', 'waived', 'withdrawn'].includes(granted.stage)) throw conflict('This issue has ended; nobody has a next move.');
+    // Whoever asks read the issue as it stands: two that ask at once do not both get their way.
+    const taken = await services.database.change('update issues set version = version + 1 where id = $1 and version = $2', [granted.issueId, version]);
+    if (taken === 0) throw conflict('Somebody changed this issue while you read it. Read it again, then set the next move.');
     await setNextMove(services, { caller, standing: granted.standing }, { ...target(granted), move });
     return readIssue(services, granted);
   }),

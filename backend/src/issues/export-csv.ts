@@ -2,6 +2,8 @@ import { stringify } from 'csv-stringify';
 import { Router } from 'express';
 import { registerQuery, type RegisterRow } from '#shared/api/issues';
 import { STAGE_LABELS } from '#shared/vocabulary';
+import { writeAudit } from '../access/audit.js';
+import { standings } from '../access/rules.js';
 import { callerOf } from '../http/endpoint.js';
 import type { Services } from '../http/services.js';
 import { registerRows } from './register-repository.js';
@@ -28,7 +30,12 @@ export function exportRouter(services: Services): Router {
   router.get('/api/issues/export', async (request, response) => {
     const caller = callerOf(request);
     const query = registerQuery.parse({ ...request.query, page: 1, size: BATCH });
-    const first = await services.database.asPerson(caller.personId, () => registerRows(services, query));
+    const first = await services.database.asPerson(caller.personId, async () => {
+      for (const { programmeId, partyId } of await standings(services)) {
+        await writeAudit(services, caller, { programmeId, partyId, action: 'export-register', object: 'the register as CSV', detail: new URLSearchParams(request.query as Record<string, string>).toString() });
+      }
+      return registerRows(services, query);
+    });
     response.set({ 'content-type': 'text/csv; charset=utf-8', 'content-disposition': 'attachment; filename="register.csv"', 'cache-control': 'private, no-store', 'x-content-type-options': 'nosniff' });
     const csv = stringify({ header: true, columns: HEADINGS });
     csv.pipe(response);

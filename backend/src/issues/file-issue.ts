@@ -1,5 +1,5 @@
 import type { NewIssue } from '#shared/api/issues';
-import { LADDERS, type LinkInterface } from '#shared/vocabulary';
+import type { LinkInterface } from '#shared/vocabulary';
 import { writeAudit } from '../access/audit.js';
 import { standingIn, type Standing } from '../access/rules.js';
 import { enqueueDecode } from '../decodes/request-decode.js';
@@ -9,6 +9,7 @@ import type { Caller, Services } from '../http/services.js';
 import { setNextMove } from '../moves/next-move.js';
 import { drawNumber } from './number.js';
 import { queueMail, recordEvent } from './record.js';
+import { refuseUnknownRungs } from './rungs.js';
 
 interface LinkRow { id: string; programmeId: string; interface: LinkInterface; name: string; partyAId: string; partyBId: string; unitAId: string; unitBId: string }
 
@@ -42,12 +43,6 @@ async function linkOf(services: Services, linkId: string): Promise<LinkRow> {
     select id, programme_id as "programmeId", interface, name, party_a_id as "partyAId", party_b_id as "partyBId", unit_a_id as "unitAId", unit_b_id as "unitBId" from links where id = $1`, [linkId]);
   if (!link) throw notFound();
   return link;
-}
-
-function refuseUnknownRungs(rungs: NewIssue['lastRung'], on: LinkInterface): void {
-  for (const [direction, rung] of Object.entries(rungs)) {
-    if (rung !== null && !LADDERS[on].includes(rung)) throw invalid(`lastRung.${direction}`, `"${rung}" is not a rung of this link; its ladder is ${LADDERS[on].join(', ')}`);
-  }
 }
 
 async function refuseForeignBuilds(services: Services, issue: NewIssue, link: LinkRow): Promise<void> {

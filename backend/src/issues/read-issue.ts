@@ -5,6 +5,7 @@ import { decodesOf, hintsOf, resultFor } from '../decodes/decode-queries.js';
 import { filesOn, veiledOn } from '../files/file-queries.js';
 import { notFound } from '../http/problems.js';
 import type { Services } from '../http/services.js';
+import { isOnASide } from '../moves/move-issue.js';
 import { movesFrom } from '../moves/stage-table.js';
 import { currentMove, followingOf, issueRow, partiesOn, retestsOf, waitedByCause, waiverOf, type IssueRow } from './issue-queries.js';
 import { standingOnLink } from './standing.js';
@@ -61,7 +62,7 @@ async function waiver(services: Services, issue: GrantedIssue): Promise<Issue['w
   const inForce = issue.stage === 'waived' && returnedAt === null;
   const signed = rest.signatures.some(({ party }) => party.id === issue.standing.partyId);
   const pending = returnedAt === null && !['settled', 'waived', 'withdrawn'].includes(issue.stage);
-  return { ...rest, inForce, actions: { sign: pending && !signed && standingOnLink(issue) === 'side' && may(issue.standing.role, 'move-issue') } };
+  return { ...rest, inForce, actions: { sign: pending && !signed && isOnASide(issue) && may(issue.standing.role, 'move-issue') } };
 }
 
 /** The moves with what still blocks each, so that the page can say it before anyone tries. */

@@ -2,7 +2,7 @@ import type { NewMove } from '#shared/api/issues';
 import { STAGE_LABELS, type Stage } from '#shared/vocabulary';
 import { writeAudit } from '../access/audit.js';
 import type { GrantedIssue } from '../access/rules.js';
-import { conflict, forbidden, invalid, Refusal } from '../http/problems.js';
+import { conflict, forbidden, invalid, notFound, Refusal } from '../http/problems.js';
 import type { Caller, Services } from '../http/services.js';
 import { queueMail, recordEvent } from '../issues/record.js';
 import { standingOnLink } from '../issues/standing.js';
@@ -81,15 +81,26 @@ async function askForWaiver({ services, caller, issue, asked }: Moving): Promise
   const id = crypto.randomUUID();
   await database.change('insert into waivers (id, programme_id, issue_id, reason, ends_on, asked_by) values ($1, $2, $3, $4, $5, access.person())', [id, issue.standing.programmeId, issue.issueId, asked.reason, asked.endsOn]);
   await recordEvent(services, { caller, standing: issue.standing }, { issueId: issue.issueId, programmeId: issue.standing.programmeId, kind: 'waiver', text: `asked for a waiver until ${asked.endsOn}: ${asked.reason}` });
-  if (standingOnLink(issue) === 'side') await signWaiver({ services, caller, issue }, id);
+  if (isOnASide(issue)) await signWaiver({ services, caller, issue }, id);
 }
+
+/** A test lab whose own unit is one of the link's ends signs for it like any other party. */
+export const isOnASide = ({ standing, partyAId, partyBId }: GrantedIssue) => [partyAId, partyBId].includes(standing.partyId);
+
 
 /** One party's signature; with both, the issue is waived. */
 export async function signWaiver({ services, caller, issue }: Omit<Moving, 'asked'>, waiverId: string): Promise<void> {
   const { database } = services;
-  const waiver = await database.row<{ endsOn: string }>('select ends_on as "endsOn" from waivers where id = $1 and issue_id = $2 and returned_at is null', [waiverId, issue.issueId]);
-  if (!waiver) throw new Refusal(404, 'not-found', 'Not found', 'There is nothing at this address, or you may not see it.');
-  if (standingOnLink(issue) !== 'side') throw forbidden('A waiver is signed by the two parties of the link.');
+  // Two signatures at the same moment: the second must find the first.
+  await database.rows('select access.lock_issue($1)', [issue.issueId]);
+  const waiver = await database.row<{ endsOn: string; latest: boolean; signed: boolean }>(`
+    select w.ends_on as "endsOn", not exists (select 1 from waivers x where x.issue_id = w.issue_id and x.at > w.at) as latest,
+      exists (select 1 from waiver_signatures s where s.waiver_id = w.id and s.party_id = $3) as signed
+    from waivers w where w.id = $1 and w.issue_id = $2 and w.returned_at is null`, [waiverId, issue.issueId, issue.standing.partyId]);
+  if (!waiver) throw notFound();
+  if (!isOnASide(issue)) throw forbidden('A waiver is signed by the two parties of the link.');
+  if (!waiver.latest) throw conflict('Another waiver has been asked for since. Read the issue again and sign that one.');
+  if (waiver.signed) throw conflict('Your party has signed this waiver already.');
   if (['settled', 'waived', 'withdrawn'].includes(issue.stage)) throw conflict('This issue has ended; there is nothing to waive.');
   await database.change('insert into waiver_signatures (waiver_id, party_id, programme_id, person_id, person_name) values ($1, $2, $3, access.person(), $4)', [waiverId, issue.standing.partyId, issue.standing.programmeId, caller.name]);
   const by = { caller, standing: issue.standing };

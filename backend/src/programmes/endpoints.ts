@@ -5,7 +5,7 @@ import { writeAudit } from '../access/audit.js';
 import { may } from '../access/policy.js';
 import { idParam, inProgramme, type Standing } from '../access/rules.js';
 import { endpoint, type Mounted } from '../http/endpoint.js';
-import { invalid, notFound, Refusal } from '../http/problems.js';
+import { conflict, invalid, notFound, Refusal } from '../http/problems.js';
 import type { Services } from '../http/services.js';
 import { auditPage } from './audit-page.js';
 
@@ -30,6 +30,12 @@ async function readProgramme(services: Services, standing: Standing): Promise<Pr
     stuckMail: stuck?.stuck ?? null,
     actions: { invite: may(standing.role, 'invite'), changeRoles: may(standing.role, 'change-roles'), readAudit: may(standing.role, 'read-audit'), addParty: may(standing.role, 'add-party') },
   };
+}
+
+/** Two administrators that remove each other at the same moment must not both succeed. */
+async function refuseWithoutAdministrator(services: Services, programmeId: string): Promise<void> {
+  const left = await services.database.row(`select 1 as found from memberships where programme_id = $1 and left_at is null and role = 'programme-administrator'`, [programmeId]);
+  if (!left) throw new Refusal(409, 'last-administrator', 'The last administrator', 'A programme keeps at least one administrator. Make somebody else one first.');
 }
 
 const party = (row: { partyId: string; partyName: string; partyShort: string }) => ({ id: row.partyId, name: row.partyName, shortName: row.partyShort });
@@ -67,7 +73,10 @@ export const programmeEndpoints: Mounted[] = [
       select m.role, q.name, m.person_id = access.person() as self from memberships m join people q on q.id = m.person_id where m.id = $1 and m.programme_id = $2 and m.left_at is null`, [id, granted.programmeId]);
     if (!before) throw notFound();
     if (before.self) throw new Refusal(409, 'own-membership', 'Not your own', 'Ask another administrator to change your own membership, so that the programme is never left without one.');
-    await services.database.change('update memberships set role = coalesce($2, role), left_at = case when $3 then now() end where id = $1', [id, body.role ?? null, body.leave ?? false]);
+    await services.database.rows("select pg_advisory_xact_lock(hashtextextended('crosstie.members.' || $1, 0))", [granted.programmeId]);
+    const done = await services.database.change('update memberships set role = coalesce($2, role), left_at = case when $3 then now() end where id = $1 and left_at is null', [id, body.role ?? null, body.leave ?? false]);
+    if (done === 0) throw conflict('Somebody changed this membership, or yours, meanwhile. Read the programme again.');
+    await refuseWithoutAdministrator(services, granted.programmeId);
     await writeAudit(services, caller, { programmeId: granted.programmeId, partyId: null, action: 'change-membership', object: before.name, detail: body.leave ? 'left the programme' : `${before.role} to ${body.role ?? before.role}` });
   }),
   endpoint('readAudit', inProgramme('read-audit'), ({ services, query, granted }) => auditPage(services, granted.programmeId, query)),
