@@ -30,7 +30,7 @@ const FEWEST_POINTS = 150;
 /** Training and signalling at the start of a Wi-Fi frame. */
 const PREAMBLE_S = 44e-6;
 /** Below this part of what random points give, the constellation has closed. */
-const CLOSED = 0.75;
+const CLOSED = 0.7;
 const OPEN = 0.85;
 
 /**

@@ -84,7 +84,8 @@ function normalised(blocks: Block[]): Block[] {
 
 const CANDIDATES: readonly Order[] = ORDERS.filter((o) => o !== 'bpsk');
 const FEWEST_POINTS = 40;
-const CLEAR = 0.85;
+/** Openness below which an order counts as seen: a fine grid comes near to any points, so it has to be clearer. */
+const CLEAR: Readonly<Record<Order, number>> = { bpsk: 0.85, qpsk: 0.85, '16qam': 0.83, '64qam': 0.8, '256qam': 0.74 };
 
 /** The order on which most points close; QPSK where none does. */
 export function decideOrder(blocks: readonly Block[]): Order {
@@ -100,10 +101,10 @@ export function decideOrder(blocks: readonly Block[]): Order {
 function orderOf(points: Float64Array): Order | null {
   if (points.length < 2 * FEWEST_POINTS) return null;
   let best: Order | null = null;
-  let least = CLEAR;
+  let least = 1;
   for (const order of CANDIDATES) {
     const open = openness(points, order);
-    if (open < (best ? 0.93 * least : CLEAR)) {
+    if (open < CLEAR[order] && open < (best ? 0.93 * least : 1)) {
       best = order;
       least = open;
     }
