@@ -15,6 +15,7 @@ import { readIssue } from '../features/issues/api/read-issue.js';
 import { useLookAtIssue } from '../features/issues/api/look-at-issue.js';
 import { Thread } from '../features/threads/thread.js';
 import { readProgramme } from '../features/programmes/api/read-programme.js';
+import { statusOf } from '../lib/refusal.js';
 import { IssueDecode } from './issue-decode.js';
 import { IssueFiles } from './issue-files.js';
 
@@ -38,7 +39,9 @@ export function IssuePage() {
 }
 
 function OpenIssue(name: { programme: string; number: string }) {
-  const { data: issue } = useSuspenseQuery(readIssue(name));
+  const { data: issue, error } = useSuspenseQuery(readIssue(name));
+  // The issue may be closed to the reader while the page is open; what was read before must not stay.
+  if (statusOf(error) === 404) throw error;
   const { data: programme } = useQuery(readProgramme(issue.programme.code));
   const [correcting, correct] = useState(false);
   useTitle(`${issue.programme.code}/${issue.number} ${issue.title}`);

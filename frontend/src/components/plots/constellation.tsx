@@ -32,7 +32,7 @@ export function Constellation({ demodulation: d }: { demodulation: Demodulation 
   const evm = d.evmPercent === null ? null : `EVM ${percent(d.evmPercent)}`;
   const tick = MIDDLE / HALF;
   return (
-    <figure className="plot constellation">
+    <figure className="plot constellation" aria-label={name}>
       <figcaption>
         <b>{d.under === 'air' ? name : <SideMark side={d.under} quiet>{name}</SideMark>}</b>
         <span className="fig">{evm ?? 'no EVM'}</span>

@@ -52,7 +52,7 @@ export function LinePlot({ title, traces, height = 226, zeroBased = false, xTick
   };
 
   return (
-    <figure className="plot">
+    <figure className="plot" aria-label={title}>
       <figcaption><b>{title}</b><span className="readout fig">{at === null ? '' : readout(at)}</span></figcaption>
       <div ref={frame} className="plot-frame" role="slider" tabIndex={0} aria-label={`${title}, cursor`} aria-valuemin={0} aria-valuemax={last}
         aria-valuenow={at ?? Math.floor(last / 2)} aria-valuetext={readout(at ?? Math.floor(last / 2))}
