@@ -47,6 +47,7 @@ export class Random {
   }
 
   pick<T>(from: readonly T[]): T {
+    if (from.length === 0) throw new RangeError('nothing to pick from');
     return from[Math.floor(this.unit() * from.length)];
   }
 

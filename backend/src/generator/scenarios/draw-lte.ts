@@ -47,7 +47,7 @@ export function drawLte(random: Random, wish: Wish): Drawn {
   };
   const durationS = Math.min(wish.maxDurationS ?? 0.03, random.uniform(0.012, 0.025));
   const receiver = drawReceiver(random, { carrierHz: spec.carrierHz, widthHz: (12 * resourceBlocks + 1) * 15000, durationS }, wish);
-  const capture: CaptureSpec = { signal: { kind: 'lte', spec }, receiver, impairments: drawImpairments(random, wish), recording: drawRecording(random), seed: random.bits() };
+  const capture: CaptureSpec = { signal: { kind: 'lte', spec }, receiver, impairments: drawImpairments(random, wish, 4.6e-6), recording: drawRecording(random), seed: random.bits() };
   const fftSize = 2 ** Math.ceil(Math.log2(12.2 * resourceBlocks));
   return {
     signal: capture.signal, capture, air: downlinkAir(spec, capture), label: `LTE, ${LTE_BANDWIDTH_HZ[resourceBlocks] / 1e6} MHz in band ${band.band}`,
@@ -93,7 +93,7 @@ function drawUplink(random: Random, wish: Wish): Drawn {
   // The shift shows only against a clock that is better than it: 0.5 ppm of 2 GHz is 1 kHz.
   const ppm = random.uniform(-0.2, 0.2);
   const receiver = { ...drawn, clockPpm: ppm, carrierOffsetHz: spec.carrierHz * ppm * 1e-6 };
-  const capture: CaptureSpec = { signal: { kind: 'lte-uplink', spec }, receiver, impairments: drawImpairments(random, wish), recording: drawRecording(random), seed: random.bits() };
+  const capture: CaptureSpec = { signal: { kind: 'lte-uplink', spec }, receiver, impairments: drawImpairments(random, wish, 4.6e-6), recording: drawRecording(random), seed: random.bits() };
   return {
     signal: capture.signal, capture, label: `LTE uplink, ${LTE_BANDWIDTH_HZ[resourceBlocks] / 1e6} MHz in band ${band.band}`,
     declared: {

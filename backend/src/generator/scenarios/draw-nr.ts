@@ -138,7 +138,7 @@ function drawnFrom(random: Random, wish: Wish, { channel, spec, gscn }: { channe
   const period = spec.blocks!.periodMs / 1000;
   const durationS = Math.min(wish.maxDurationS ?? 0.03, Math.max(period + 0.0055, random.uniform(0.008, 0.024)));
   const receiver = drawReceiver(random, { carrierHz: spec.carrierHz, widthHz: (12 * spec.resourceBlocks + 1) * spec.spacingHz, durationS }, wish);
-  const capture = { signal: { kind: 'nr', spec } as const, receiver, impairments: drawImpairments(random, wish), recording: drawRecording(random), seed: random.bits() };
+  const capture = { signal: { kind: 'nr', spec } as const, receiver, impairments: drawImpairments(random, wish, 9 / 128 / Math.max(spec.spacingHz, blockSpacingHz(channel.blockCase))), recording: drawRecording(random), seed: random.bits() };
   return { signal: capture.signal, capture, declared: nrDeclared(random, { channel, spec, gscn, inverted: wish.inverted === true }), air: nrAir(capture), label: `NR, ${spec.spacingHz / 1000} kHz, ${channel.mhz} MHz in n${channel.band.band}` };
 }
 

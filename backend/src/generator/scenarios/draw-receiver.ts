@@ -1,3 +1,4 @@
+import { PROFILES, type ProfileName } from '../impairments/multipath.js';
 import type { Random } from '../random.js';
 import type { Receiver } from '../receive.js';
 import type { Datatype } from '../quantise.js';
@@ -42,15 +43,16 @@ function tuning(random: Random, roomHz: number): number {
   return step * Math.round(random.uniform(-roomHz, roomHz) / step);
 }
 
-const PROFILES = ['flat', 'indoor', 'pedestrian', 'vehicular', 'urban'] as const;
+const PROFILE_NAMES = Object.keys(PROFILES) as ProfileName[];
 
-/** An honest recorder and an ordinary channel: everything within limits. */
-export function drawImpairments(random: Random, wish: Wish): Impairments {
+/** An honest recorder and an ordinary channel, its echoes within the prefix: everything within limits. */
+export function drawImpairments(random: Random, wish: Wish, prefixS: number): Impairments {
+  const held = PROFILE_NAMES.filter((name) => PROFILES[name].every((path) => path.delayS <= prefixS));
   const isQuiet = random.chance(0.3);
   const [low, high] = wish.snrDb ?? [8, 32];
   return {
     snrDb: random.uniform(low, high),
-    ...(isQuiet ? {} : { channel: { profile: random.pick(PROFILES), dopplerHz: random.chance(0.5) ? 0 : random.uniform(2, 150) } }),
+    ...(isQuiet ? {} : { channel: { profile: random.pick(held), dopplerHz: random.chance(0.5) ? 0 : random.uniform(2, 150) } }),
     ...(random.chance(0.3) ? { phaseNoiseHz: random.uniform(0.5, 20) } : {}),
     ...(random.chance(0.4) ? { imageDb: random.uniform(-60, -40) } : {}),
     ...(random.chance(0.4) ? { dcDb: random.uniform(-60, -38) } : {}),

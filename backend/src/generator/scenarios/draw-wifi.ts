@@ -25,7 +25,7 @@ export function drawWifi(random: Random, wish: Wish): Drawn {
   };
   const durationS = Math.min(wish.maxDurationS ?? 0.02, random.uniform(0.003, 0.012));
   const receiver = drawReceiver(random, { carrierHz: spec.carrierHz, widthHz: 0.92 * mhz * 1e6 * clock, durationS }, wish);
-  const capture: CaptureSpec = { signal: { kind: 'wifi', spec }, receiver: { ...receiver, startS: random.uniform(0, 0.002) }, impairments: wifiImpairments(random, wish), recording: drawRecording(random), seed: random.bits() };
+  const capture: CaptureSpec = { signal: { kind: 'wifi', spec }, receiver: { ...receiver, startS: random.uniform(0, 0.002) }, impairments: drawImpairments(random, wish, (guardUs / clock) * 1e-6), recording: drawRecording(random), seed: random.bits() };
   const spacing = (format === 'he' ? 78_125 : 312_500) * clock;
   return {
     signal: capture.signal, capture, label: `Wi-Fi ${format.toUpperCase()}, ${mhz * clock} MHz`,
@@ -41,10 +41,4 @@ export function drawWifi(random: Random, wish: Wish): Drawn {
       spectrumInverted: { oneOf: [wish.inverted === true] },
     },
   };
-}
-
-/** Indoor delays: the longer profiles outrun a prefix of 0.4 µs. */
-function wifiImpairments(random: Random, wish: Wish): CaptureSpec['impairments'] {
-  const drawn = drawImpairments(random, wish);
-  return drawn.channel ? { ...drawn, channel: { profile: random.pick(['flat', 'indoor'] as const), dopplerHz: random.uniform(0, 20) } } : drawn;
 }
