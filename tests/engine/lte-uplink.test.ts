@@ -11,14 +11,14 @@ const AIR: Reception = { sampleRateHz: 15.36e6, durationS: 0.012, snrDb: 12 };
 
 describe('uplink base sequences (TS 36.211 clause 5.5.1.1)', () => {
   it('have a flat spectrum and the prime\'s cyclic continuation', () => {
-    const r = uplinkBaseSequence(7, 0, 36);
+    const r = uplinkBaseSequence(7, 36);
     for (let n = 0; n < 36; n++) expect(Math.hypot(r[2 * n], r[2 * n + 1])).toBeCloseTo(1, 12);
     // The largest prime below 36 is 31: value 31 is value 0 again.
     for (let n = 31; n < 36; n++) expect([r[2 * n], r[2 * n + 1]]).toEqual([r[2 * (n - 31)], r[2 * (n - 31) + 1]]);
   });
 
   it('are uncorrelated with their own cyclic shifts over the prime\'s length', () => {
-    const r = uplinkBaseSequence(12, 0, 72);
+    const r = uplinkBaseSequence(12, 72);
     for (const shift of [1, 5, 33]) {
       let re = 0, im = 0;
       for (let n = 0; n < 71; n++) {

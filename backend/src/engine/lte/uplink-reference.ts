@@ -1,12 +1,12 @@
 /**
  * Base sequences of the uplink's reference symbols, TS 36.211 clause 5.5.1.1, for three
  * resource blocks and more: Zadoff-Chu sequences of the largest prime below the length,
- * continued cyclically. `length` subcarriers, interleaved; `v` is 1 only from six blocks on.
+ * continued cyclically. `length` subcarriers, interleaved. The first of the two sequences that a
+ * group has from six blocks on: the second only occurs with sequence hopping.
  */
-export function uplinkBaseSequence(group: number, v: 0 | 1, length: number): Float64Array {
+export function uplinkBaseSequence(group: number, length: number): Float64Array {
   const prime = largestPrimeBelow(length);
-  const exact = (prime * (group + 1)) / 31;
-  const q = Math.floor(exact + 0.5) + v * (Math.floor(2 * exact) % 2 === 0 ? 1 : -1);
+  const q = Math.floor((prime * (group + 1)) / 31 + 0.5);
   const out = new Float64Array(2 * length);
   for (let n = 0; n < length; n++) {
     const m = n % prime;

@@ -11,7 +11,6 @@ export interface UplinkFit {
   readonly firstBin: number;
   readonly blocks: number;
   readonly group: number;
-  readonly v: 0 | 1;
   /** Σ of squared scores less their mean by chance, in units of its scatter. */
   readonly score: number;
   /** Rows that carry the reference symbols. */
@@ -19,7 +18,7 @@ export interface UplinkFit {
 }
 
 /** As many reference symbols of each place are looked at. */
-const MOST_ROWS = 12;
+const MOST_ROWS = 8;
 /** Some 10⁴ hypotheses: chance (a sum of exponentials) stays below 10⁻⁹. */
 const LEAST_SCORE = 12;
 
@@ -41,14 +40,12 @@ export function searchUplink(rows: Rows, visible: number): UplinkFit | null {
       return [symbol, chosen.flatMap((s) => neighbourProducts(rows, s, { firstBin, length: 12 * blocks }) ?? [])] as const;
     }));
     for (let group = 0; group < 30; group++) {
-      for (const v of blocks >= 6 ? [0, 1] as const : [0] as const) {
-        const pattern = productsOf(uplinkBaseSequence(group, v, 12 * blocks));
-        for (const [symbol, list] of products) {
-          if (list.length < 2) continue;
-          const score = (list.reduce((sum, p) => sum + squaredScore(p, pattern), 0) - list.length) / Math.sqrt(list.length);
-          if (score > LEAST_SCORE && (!best || score > best.score)) {
-            best = { symbol, firstBin, blocks, group, v, score, symbols: active.filter((s) => (((s % perSlot) + perSlot) % perSlot) === symbol) };
-          }
+      const pattern = productsOf(uplinkBaseSequence(group, 12 * blocks));
+      for (const [symbol, list] of products) {
+        if (list.length < 2) continue;
+        const score = (list.reduce((sum, p) => sum + squaredScore(p, pattern), 0) - list.length) / Math.sqrt(list.length);
+        if (score > LEAST_SCORE && (!best || score > best.score)) {
+          best = { symbol, firstBin, blocks, group, score, symbols: active.filter((s) => (((s % perSlot) + perSlot) % perSlot) === symbol) };
         }
       }
     }

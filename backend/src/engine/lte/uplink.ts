@@ -81,8 +81,8 @@ function halfShift(context: DetectionContext, { fit }: Found, residueHz: number)
 
 /** Reference symbols against the mean of both neighbours: 3/2 of the error's variance. */
 function quality({ rows, uplink }: Found, known: (value: number, method: string) => AirValue, absent: (reason: string) => AirValue): Record<string, AirValue> {
-  const own = neighbourError(rows, uplink, uplinkBaseSequence(uplink.group, uplink.v, 12 * uplink.blocks));
-  const other = neighbourError(rows, uplink, uplinkBaseSequence((uplink.group + 7) % 30, uplink.v, 12 * uplink.blocks));
+  const own = neighbourError(rows, uplink, uplinkBaseSequence(uplink.group, 12 * uplink.blocks));
+  const other = neighbourError(rows, uplink, uplinkBaseSequence((uplink.group + 7) % 30, 12 * uplink.blocks));
   const signal = own.power - own.noise;
   if (!(signal > 0)) return { snrDb: absent('no power above the noise'), evmPercent: absent('no power above the noise') };
   return {
