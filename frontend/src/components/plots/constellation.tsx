@@ -20,9 +20,12 @@ function dots(points: readonly number[]): string {
 
 const NAMES = { a: 'Under A', b: 'Under B', air: 'Under the best found' } as const;
 
+/** `64qam` as the trade writes it. */
+const orderName = (order: string): string => order.toUpperCase().replace(/^(\d+)-?QAM$/, '$1‑QAM');
+
 function verdict(d: Demodulation): string {
   const random = d.evmRandomPercent === null ? '' : `; random points would give ${percent(d.evmRandomPercent)}`;
-  return `${d.closes ? 'Closes' : 'Does not close'}${d.order ? ` as ${d.order}` : ''}${random}.`;
+  return `${d.closes ? 'Closes' : 'Does not close'}${d.order ? ` as ${orderName(d.order)}` : ''}${random}.`;
 }
 
 /** The capture's points as one side's settings would receive them. */
