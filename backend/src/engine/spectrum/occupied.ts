@@ -34,7 +34,7 @@ export function occupancy(density: Density): Occupancy {
   if (floor === null) return nothing(null);
   const scatter = 1 / Math.sqrt(density.averages * Math.max(1, density.power.length / 256));
   const threshold = floor * (1 + Math.max(0.2, 6 * scatter));
-  const runs = bridged(runsAbove(density.power, smooth, threshold), BRIDGE * smooth.length);
+  const runs = bridged(runsAbove(density.power, smooth, Math.max(threshold, skirtLevel(smooth, floor))), BRIDGE * smooth.length);
   const bands = runs.map((run) => toBand(run, { density, floor })).filter((b) => b.power > 0);
   if (bands.length === 0) return nothing(floor);
   const total = bands.reduce((sum, b) => sum + b.power, 0);
@@ -76,6 +76,14 @@ function flatFloor(smooth: Float64Array): number | null {
     return sorted[i + ((end - i) >> 1)];
   }
   return null;
+}
+
+/** Symbols end abruptly, so that a strong carrier has skirts above the noise: what lies 15 dB below it is not the carrier. */
+const SKIRT = 0.03;
+
+function skirtLevel(smooth: Float64Array, floor: number): number {
+  const top = Float64Array.from(smooth).sort()[Math.floor(0.98 * smooth.length)];
+  return floor + SKIRT * Math.max(0, top - floor);
 }
 
 interface Run { from: number; to: number }
