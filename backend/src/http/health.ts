@@ -27,7 +27,7 @@ function isSignedIn(request: Request): boolean {
 async function checkParts(services: Services): Promise<Record<Part, boolean>> {
   const [database, worker, provider] = await Promise.all([
     within(services.database.rows('select 1 as up').then(() => true)),
-    within(services.database.row('select 1 as up from pg_locks where locktype = \'advisory\' and classid = $1 and objid = $2 and granted', [...WORKER_LOCK]).then((row) => row !== null)),
+    within(services.database.row('select 1 as up from pg_locks where locktype = \'advisory\' and database = (select oid from pg_database where datname = current_database()) and classid = $1 and objid = $2 and granted', [...WORKER_LOCK]).then((row) => row !== null)),
     within(fetch(`${services.config.oidc.issuer}/.well-known/openid-configuration`, { signal: AbortSignal.timeout(PATIENCE_MS) }).then(({ ok }) => ok)),
   ]);
   return { database, worker, 'identity provider': provider };
