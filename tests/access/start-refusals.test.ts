@@ -1,5 +1,7 @@
 import { spawn } from 'node:child_process';
 import { once } from 'node:events';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { Client } from 'pg';
 import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
@@ -90,7 +92,7 @@ describe('the server refuses to start', () => {
   it.each(['main', 'worker'])('in one plain line, and the process ends: %s', async (part) => {
     const child = spawn(process.execPath, ['--conditions', 'source', '--import', 'tsx', `backend/src/${part}.ts`], {
       cwd: ROOT, stdio: ['ignore', 'pipe', 'pipe'],
-      env: { ...process.env, DATABASE_URL: database.adminUrl, DATABASE_WORKER_URL: database.workerUrl, OIDC_ISSUER: 'http://127.0.0.1:9', SESSION_SECRET: 's'.repeat(40), STORAGE_DIR: '/tmp/crosstie-nowhere', SMTP_URL: 'smtp://127.0.0.1:9', PORT: '1' },
+      env: { ...process.env, DATABASE_URL: database.adminUrl, DATABASE_WORKER_URL: database.workerUrl, OIDC_ISSUER: 'http://127.0.0.1:9', SESSION_SECRET: 's'.repeat(40), STORAGE_DIR: join(tmpdir(), 'crosstie-nowhere'), SMTP_URL: 'smtp://127.0.0.1:9', PORT: '1' },
     });
     let said = '';
     child.stderr.on('data', (text: Buffer) => { said += text.toString(); });
