@@ -55,6 +55,7 @@ export function decodeInputs(inputs: DecodeInputs): DecodeResult {
 function comparedWithAir(inputs: DecodeInputs, analysis: Analysis): Comparison {
   return compareSnapshots(inputs.a, inputs.b, {
     link: linkOf(inputs), air: analysis.air, announced: analysis.announced, centreFrequencyHz: analysis.facts.centreFrequencyHz,
+    direction: analysis.air['direction']?.value === 'uplink' ? 'uplink' : 'downlink',
   });
 }
 

@@ -1,5 +1,6 @@
 import type { DeclaredSettings } from '../analyse.js';
 import type { Look } from './look.js';
+import { prepare } from '../sync/prepare.js';
 import { patternLikelihood, symbolLevels } from './tdd-levels.js';
 
 export interface SidedPattern {
@@ -13,7 +14,12 @@ export function declaredPatterns(look: Look, declared: { readonly a: DeclaredSet
   const frameStartS = look.choice.finding?.air['frameStartS']?.value;
   const grid = look.choice.finding?.grid;
   if (typeof frameStartS !== 'number' || !grid || (!declared.a?.tddPattern && !declared.b?.tddPattern)) return [];
-  const levels = symbolLevels(look.window, { startSample: frameStartS * look.source.sampleRateHz, spacingHz: grid.subcarrierSpacingHz });
+  const { occupied, noisePower } = look.spectrum;
+  // Only the carrier's own band: noise beside it would hide the pauses.
+  const band = prepare(look.window, { occupied, on: null });
+  const window = { iq: band.iq, startSample: band.startSample / band.decimation, sampleRateHz: band.rateHz };
+  const noise = noisePower > 0 && occupied ? (noisePower * band.rateHz) / (occupied.highHz - occupied.lowHz) : null;
+  const levels = symbolLevels(window, { startSample: frameStartS * band.rateHz, spacingHz: grid.subcarrierSpacingHz, noisePower: noise });
   return (['a', 'b'] as const).flatMap((side) => {
     const pattern = declared[side]?.tddPattern;
     return pattern ? [{ side, ...patternLikelihood(levels, pattern) }] : [];

@@ -15,7 +15,7 @@ export function plausible(source: SampleSource): boolean {
   const q = shape(iq, 1);
   if (!(i.power > 0) || !(q.power > 0)) return false;
   const alike = Math.abs(Math.log(i.power / q.power)) < Math.log(2);
-  return alike && [i, q].every(({ kurtosis }) => kurtosis > 2.05 && kurtosis < 300);
+  return alike && [i, q].every(({ kurtosis }) => kurtosis > 1.9 && kurtosis < 300);
 }
 
 /** Power and the fourth moment over its square, of I (0) or Q (1), without their mean. */

@@ -18,14 +18,24 @@ export interface SymbolLevels {
   readonly on: readonly boolean[];
   /** How far apart the two levels lie, dB; 0 where the signal never pauses. */
   readonly contrastDb: number;
+  /** False where signal and pause could not be told apart: then nothing speaks for or against a pattern. */
+  readonly decided: boolean;
 }
 
 const SYMBOLS = 14;
 /** Less between the two levels is fading or load, not a pause. */
 const LEAST_CONTRAST_DB = 6;
 
+export interface Frame {
+  /** Start of a frame, in samples of the window's rate from the capture's start. */
+  readonly startSample: number;
+  readonly spacingHz: number;
+  /** Power of the noise alone within the window's band; null where it is not known. */
+  readonly noisePower: number | null;
+}
+
 /** Splits the window into symbols from a frame's start on and decides which are on. */
-export function symbolLevels(window: Window, frame: { startSample: number; spacingHz: number }): SymbolLevels {
+export function symbolLevels(window: Window, frame: Frame): SymbolLevels {
   const symbolS = (15e3 / frame.spacingHz) * (1e-3 / SYMBOLS);
   const first = Math.ceil((window.startSample - frame.startSample) / (symbolS * window.sampleRateHz));
   const indices: number[] = [];
@@ -38,7 +48,7 @@ export function symbolLevels(window: Window, frame: { startSample: number; spaci
     indices.push(k);
     levels.push(power(window.iq, Math.floor(from), Math.floor(to)));
   }
-  return { spacingHz: frame.spacingHz, indices, ...decided(levels) };
+  return { spacingHz: frame.spacingHz, indices, ...onOrOff(levels, frame.noisePower) };
 }
 
 function power(iq: Float32Array, from: number, to: number): number {
@@ -47,17 +57,18 @@ function power(iq: Float32Array, from: number, to: number): number {
   return sum / Math.max(1, to - from);
 }
 
-/** Two levels by the widest step between sorted levels near the middle of the scale. */
-function decided(levels: readonly number[]): { on: boolean[]; contrastDb: number } {
+/** Two levels, low and high, and which symbols stand clear of the pauses' own scatter. */
+function onOrOff(levels: readonly number[], noisePower: number | null): Pick<SymbolLevels, 'on' | 'contrastDb' | 'decided'> {
   const db = levels.map((level) => 10 * Math.log10(Math.max(level, 1e-20)));
   const sorted = [...db].sort((a, b) => a - b);
   const low = sorted[Math.floor(0.02 * sorted.length)] ?? 0;
   const high = sorted[Math.floor(0.9 * sorted.length)] ?? 0;
   const contrastDb = high - low;
-  if (contrastDb < LEAST_CONTRAST_DB) return { on: db.map(() => true), contrastDb: 0 };
-  // Energy counts where it stands clear of the pauses' own scatter.
+  const aboveNoise = noisePower === null ? 0 : high - 10 * Math.log10(noisePower);
+  // Never a pause: known only where the noise alone would be seen to be lower.
+  if (contrastDb < LEAST_CONTRAST_DB) return { on: db.map(() => true), contrastDb: 0, decided: aboveNoise > LEAST_CONTRAST_DB + 2 };
   const threshold = low + Math.max(3, contrastDb / 2.5);
-  return { on: db.map((level) => level > threshold), contrastDb };
+  return { on: db.map((level) => level > threshold), contrastDb, decided: true };
 }
 
 export interface PatternVerdict {
@@ -80,6 +91,7 @@ const LEAST_PERIODS = 2;
  * the downlink is filled and every period shows the same.
  */
 export function patternLikelihood(levels: SymbolLevels, pattern: TddPattern): PatternVerdict {
+  if (!levels.decided) return { logLikelihood: 0, reason: 'signal and pauses cannot be told apart by level' };
   const seen = byPosition(levels, pattern);
   const outside = seen.filter((p) => p.kind === 'uplink' && p.onShare > OUTSIDE_SHARE);
   const downlink = seen.filter((p) => p.kind === 'downlink');

@@ -21,7 +21,9 @@ export function carrierWithClock(evidence: Evidence, share: number): Measurement
   const offset = airNumber(evidence, 'carrierOffsetHz');
   const centre = evidence.capture?.centreFrequencyHz ?? null;
   if (!offset || centre === null) return null;
-  const value = centre + offset.value;
+  // The half subcarrier of an uplink is a setting of its own, not a part of the carrier's frequency.
+  const shifted = evidence.air['halfSubcarrierShift']?.value === true ? 7500 : 0;
+  const value = centre + offset.value - shifted;
   const method = offset.air.method ?? null;
   const spacing = method?.startsWith('fractional') ? airNumber(evidence, 'subcarrierSpacingHz')?.value : undefined;
   const range = spacing ?? evidence.capture?.sampleRateHz ?? 1e7;

@@ -77,10 +77,12 @@ const MEASURES: Readonly<Record<string, Measure>> = {
 };
 
 export function measure(parameter: string, evidence: Evidence): Measurement | null {
-  return MEASURES[parameter]?.(evidence) ?? null;
+  const name = inDirection(parameter, evidence);
+  return name === null ? null : MEASURES[name]?.(evidence) ?? null;
 }
 
-/** True where the parameter can be seen on the air at all. */
-export function isMeasurable(parameter: string): boolean {
-  return parameter in MEASURES;
+/** A capture holds one direction: an uplink's own settings are seen in an uplink capture alone. */
+function inDirection(parameter: string, evidence: Evidence): string | null {
+  if (!parameter.startsWith('uplink')) return parameter;
+  return evidence.air['direction']?.value === 'uplink' ? parameter[6]!.toLowerCase() + parameter.slice(7) : null;
 }

@@ -1,3 +1,4 @@
+import type { ComparisonRow } from '#shared/decode';
 import { carrierFrequency, carrierWithClock, clockPpm, folded } from '../measurements/carrier.js';
 import { airNumber } from '../measurements/numbers.js';
 import { judgeContradiction } from '../model.js';
@@ -11,6 +12,7 @@ import { basisOf, declaredBy, recordingBasis } from './basis.js';
  * where it is a few parts in a million (and the sample clock says the same).
  */
 export const carrier: Rule = (evidence) => {
+  if (evidence.air['direction']?.value === 'uplink' && evidence.air['halfSubcarrierShift']?.value === null) return [];
   const shift = shiftFromDeclared(evidence);
   if (shift === null) return clockAlone(evidence);
   const limitHz = shift.fc * clockPpm(evidence) * 1e-6 + 3 * SCATTER.carrierFrequencyHz;
@@ -24,13 +26,27 @@ interface Shift { readonly hz: number; readonly fc: number }
 
 /** Measured carrier minus the nearest declared one; null where nothing is declared or measured. */
 function shiftFromDeclared(evidence: Evidence): Shift | null {
-  const row = evidence.comparison.rows.find((r) => r.parameter === 'carrierFrequency');
+  const row = carrierRow(evidence);
   const measured = carrierFrequency(evidence);
   if (!row || !measured) return null;
   const spacing = measured.method?.startsWith('fractional') ? airNumber(evidence, 'subcarrierSpacingHz')?.value : undefined;
   const shifts = declaredBy(row).map((side) => Number(measured.value) - Number(row[side]!.value)).filter(Number.isFinite)
     .map((hz) => (spacing ? folded(hz, spacing) : hz)).sort((x, y) => Math.abs(x) - Math.abs(y));
   return shifts.length === 0 ? null : { hz: shifts[0]!, fc: Number(measured.value) };
+}
+
+/**
+ * The row of the direction that was captured. An uplink capture is not held against a carrier far
+ * outside it: without a name of its own that is the downlink's.
+ */
+function carrierRow(evidence: Evidence): ComparisonRow | null {
+  const named = (name: string): ComparisonRow | null => evidence.comparison.rows.find((r) => r.parameter === name) ?? null;
+  const plain = named('carrierFrequency');
+  if (evidence.air['direction']?.value !== 'uplink') return plain;
+  const own = named('uplinkCarrierFrequency');
+  const centre = evidence.capture?.centreFrequencyHz ?? 0;
+  const far = (row: ComparisonRow): boolean => declaredBy(row).every((side) => Math.abs(Number(row[side]!.value) - centre) > (evidence.capture?.sampleRateHz ?? 0));
+  return own ?? (plain && !far(plain) ? plain : null);
 }
 
 /** Probability that a shift beyond the limits is a clock's and not a channel's. */
@@ -49,7 +65,7 @@ function clockShare(evidence: Evidence, shift: Shift): number {
 }
 
 function wrongCarrier(evidence: Evidence, share: number): Finding[] {
-  const row = evidence.comparison.rows.find((r) => r.parameter === 'carrierFrequency')!;
+  const row = carrierRow(evidence)!;
   if (row.verdict === 'differ') return [];
   const measurement = carrierWithClock(evidence, 0)!;
   const sides = declaredBy(row);

@@ -1,5 +1,5 @@
 import type { ComparisonRow } from '#shared/decode';
-import { hintCodeFor, type ParameterName } from '#shared/parameters';
+import { hintCodeFor, uplinkName, type ParameterName } from '#shared/parameters';
 import { impliedSpacing } from '../measurements/impliedSpacing.js';
 import { measure } from '../measurements/measure.js';
 import { judgeContradiction } from '../model.js';
@@ -7,7 +7,7 @@ import type { Evidence, Finding, Rule } from '../types.js';
 import { basisOf, declaredBy } from './basis.js';
 
 /** Parameters with a rule of their own, or that are seen only through others. */
-const ELSEWHERE = new Set(['numerology', 'fftSize', 'sampleRate', 'carrierFrequency']);
+const ELSEWHERE = new Set(['numerology', 'fftSize', 'sampleRate', 'carrierFrequency', 'uplinkCarrierFrequency']);
 
 /** What agreeing snapshots, or the one that speaks, declare against what the air shows. */
 export const contradictions: Rule = (evidence) => [
@@ -16,7 +16,7 @@ export const contradictions: Rule = (evidence) => [
 ];
 
 function againstAir(row: ComparisonRow, evidence: Evidence): Finding | null {
-  if (ELSEWHERE.has(row.parameter) || row.verdict === 'differ') return null;
+  if (ELSEWHERE.has(row.parameter) || row.verdict === 'differ' || otherDirection(row.parameter, evidence)) return null;
   const sides = declaredBy(row);
   const measurement = measure(row.parameter, evidence);
   if (!measurement || sides.length === 0) return null;
@@ -30,6 +30,11 @@ function againstAir(row: ComparisonRow, evidence: Evidence): Finding | null {
     basis: basisOf(row, evidence, { pattern: verdict.pattern, measurement }),
     consequences: [],
   };
+}
+
+/** Where a snapshot states the uplink apart, its plain names speak of the downlink. */
+function otherDirection(parameter: string, evidence: Evidence): boolean {
+  return evidence.air['direction']?.value === 'uplink' && evidence.comparison.rows.some((row) => row.parameter === uplinkName(parameter as ParameterName));
 }
 
 /** Rate over transform size gives a spacing that the air does not show, on the sides that declare both. */
