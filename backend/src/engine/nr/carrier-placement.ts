@@ -8,6 +8,8 @@ export interface CarrierPlacement {
   readonly resourceBlocks: number;
   /** Subcarrier 6·N_RB, Hz against the capture's zero. */
   readonly referenceHz: number;
+  /** Power of the weaker outermost block against the usual one: near 1 where the edges are the carrier's own. */
+  readonly edgeShare: number;
   /** True where N_RB is one of TS 38.104 Table 5.3.2-1 or -2 for the spacing. */
   readonly inTable: boolean;
   readonly lowHz: number;
@@ -54,12 +56,12 @@ export function placeCarrier(work: WorkSignal, grid: Grid): CarrierPlacement | n
     const span = occupiedBlocks(powers, first, floor);
     if (!span || span.score <= best.score) continue;
     best.score = span.score;
-    best.placement = placement(firstHz + (first + BLOCK * span.from) * grid.spacingHz, span.to - span.from, grid.spacingHz);
+    best.placement = { ...placement(firstHz + (first + BLOCK * span.from) * grid.spacingHz, span.to - span.from, grid.spacingHz), edgeShare: span.edgeShare };
   }
   return best.placement;
 }
 
-function placement(lowHz: number, resourceBlocks: number, spacingHz: number): CarrierPlacement {
+function placement(lowHz: number, resourceBlocks: number, spacingHz: number): Omit<CarrierPlacement, 'edgeShare'> {
   return {
     resourceBlocks,
     referenceHz: lowHz + 6 * resourceBlocks * spacingHz,
@@ -123,7 +125,7 @@ function blockPowers(powers: Float64Array, first: number): number[] {
 }
 
 /** The run of blocks from the first to the last that stand out; the score is how sharply the two edges stand. */
-function occupiedBlocks(powers: Float64Array, first: number, floor: number): { from: number; to: number; score: number } | null {
+function occupiedBlocks(powers: Float64Array, first: number, floor: number): { from: number; to: number; score: number; edgeShare: number } | null {
   const blocks = blockPowers(powers, first);
   const typical = [...blocks].sort((a, b) => a - b)[Math.floor(blocks.length * 0.9)];
   if (!typical || typical < 1.15 * floor) return null;
@@ -132,7 +134,8 @@ function occupiedBlocks(powers: Float64Array, first: number, floor: number): { f
   const to = blocks.findLastIndex((power) => power > threshold) + 1;
   // An edge without an empty block beside it may lie outside the recording.
   if (from < 1 || to > blocks.length - 1 || to <= from) return null;
-  return { from, to, score: sharpness(powers, first + BLOCK * from, floor) + sharpness([...powers].reverse(), powers.length - first - BLOCK * to, floor) };
+  const edgeShare = (Math.min(blocks[from], blocks[to - 1]) - floor) / (typical - floor);
+  return { from, to, edgeShare, score: sharpness(powers, first + BLOCK * from, floor) + sharpness([...powers].reverse(), powers.length - first - BLOCK * to, floor) };
 }
 
 /** Power of the first three subcarriers inside against that of the three outside. */

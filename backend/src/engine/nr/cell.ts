@@ -64,6 +64,7 @@ export function followCell(reader: BlockReader, first: FoundBlock, decoded: Deco
       const known = knownBlock(payload, { cellId: first.cellId, maxBlocks: hypothesis.maxBlocks, blockIndex: place.blockIndex, halfFrame, systemFrameNumber });
       return [{ usefulS: place.usefulS, blockIndex: place.blockIndex, halfFrame, systemFrameNumber, statistic: place.statistic, grid, known, fit: fitBlock(grid, known) }];
     });
+    blocks = withoutGhosts(blocks);
     estimate = combined(blocks.map((block) => offsetWithinSymbols(block.grid, block.known, { fit: block.fit, spacingHz: first.spacingHz })));
     referenceHz += estimate.hz / (1 - SWALLOWED);
   }
@@ -94,6 +95,16 @@ function placesOf(reader: BlockReader, first: FoundBlock, { hypothesis, halfFram
 
 function range(from: number, to: number): number[] {
   return Array.from({ length: to - from + 1 }, (_, i) => from + i);
+}
+
+/** Noise passes a single reference signal now and then: a block so far below the best, or below this, is none. */
+const GHOST_DB = -8;
+const BELOW_BEST_DB = 15;
+
+function withoutGhosts(blocks: readonly KnownBlock[]): KnownBlock[] {
+  const snrDb = (block: KnownBlock) => 10 * Math.log10(block.fit.signalPower / block.fit.noisePower);
+  const best = Math.max(...blocks.map(snrDb));
+  return blocks.filter((block) => snrDb(block) > Math.min(GHOST_DB, best - 3) && snrDb(block) > best - BELOW_BEST_DB);
 }
 
 /** Mean weighted with the inverse variances. */

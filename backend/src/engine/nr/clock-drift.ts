@@ -10,26 +10,34 @@ export interface ClockDrift {
 /** Delays tried against the first block, useful parts. */
 const REACH = 0.02;
 const STEP = 1 / 2048;
+/** Change of a channel's power over its delays that cannot be excluded. */
+const LEAST_CHANGE = 0.01;
 
 /** Drift of the blocks' delays over the capture, or null with fewer than two blocks at different times. */
 export function clockDrift(cell: Cell): ClockDrift | null {
   const [first, ...rest] = cell.blocks;
   if (!first || rest.length === 0) return null;
-  const points = [{ timeS: 0, delayS: 0, sigmaS: sigmaOf(first, first, cell.spacingHz) }, ...rest.map((block) => {
-    const { delay, changed } = delayBetween(first, block);
-    const wander = spreadOf(first) * Math.sqrt(2 * changed);
-    return {
-      timeS: block.usefulS - first.usefulS,
-      delayS: delay / cell.spacingHz,
-      sigmaS: Math.hypot(sigmaOf(first, block, cell.spacingHz), wander / cell.spacingHz),
-    };
-  })];
+  const compared = rest.map((block) => ({ block, ...delayBetween(first, block) }));
+  const points = [
+    { timeS: 0, delayS: 0, sigmaS: sigmaOf(first, first, cell.spacingHz) },
+    ...compared.map(({ block, delay }) => ({ timeS: block.usefulS - first.usefulS, delayS: delay / cell.spacingHz, sigmaS: sigmaOf(first, block, cell.spacingHz) })),
+  ];
   const weights = points.map((p) => 1 / p.sigmaS ** 2);
   const whole = weights.reduce((a, b) => a + b, 0);
   const meanTime = points.reduce((sum, p, i) => sum + weights[i] * p.timeS, 0) / whole;
   const spread = points.reduce((sum, p, i) => sum + weights[i] * (p.timeS - meanTime) ** 2, 0);
   const slope = points.reduce((sum, p, i) => sum + weights[i] * (p.timeS - meanTime) * p.delayS, 0) / spread;
-  return { ppm: -slope * 1e6, sigmaPpm: 1e6 / Math.sqrt(spread) };
+  return { ppm: -slope * 1e6, sigmaPpm: 1e6 * Math.hypot(1 / Math.sqrt(spread), wanderOf(first, compared) / cell.spacingHz) };
+}
+
+/**
+ * A channel that changes moves its own centre of gravity, by up to its spread, and slowly, so that
+ * more blocks do not help: as a drift, useful parts a second, the largest over the blocks.
+ */
+function wanderOf(first: KnownBlock, compared: readonly { block: KnownBlock; changed: number }[]): number {
+  const spread = spreadOf(first);
+  const last = compared[compared.length - 1].block.usefulS - first.usefulS;
+  return Math.max(...compared.map(({ changed }) => spread * Math.sqrt(2 * changed))) / last;
 }
 
 /**
@@ -49,15 +57,23 @@ function delayBetween(first: KnownBlock, block: KnownBlock): { delay: number; ch
   const at = powers.indexOf(Math.max(...powers));
   const [left, top, right] = [powers[at - 1] ?? 0, powers[at], powers[at + 1] ?? 0];
   const bend = left - 2 * top + right;
-  const likeness = top / (BLOCK_SUBCARRIERS ** 2 * first.fit.signalPower * block.fit.signalPower);
+  const likeness = top / (BLOCK_SUBCARRIERS ** 2 * gainPower(first) * gainPower(block));
   return {
     delay: -REACH + STEP * (at + (bend < 0 ? (0.5 * (left - right)) / bend : 0)),
-    changed: Math.max(0, Math.min(1, 1 - likeness)),
+    changed: Math.max(LEAST_CHANGE, Math.min(1, 1 - likeness)),
   };
 }
 
+/** Mean power of the gains without their noise: 96 subcarriers have three elements, 17 two and 127 four. */
+function gainPower({ fit }: Pick<KnownBlock, 'fit'>): number {
+  let sum = 0;
+  for (let i = 0; i < fit.gains.length; i++) sum += fit.gains[i] ** 2;
+  const noise = (fit.noisePower * (96 / 3 + 17 / 2 + 127 / 4)) / BLOCK_SUBCARRIERS;
+  return Math.max(sum / BLOCK_SUBCARRIERS - noise, 0.05 * fit.signalPower);
+}
+
 /** Root mean square spread of the channel's delays, useful parts, from how fast its gain changes over four subcarriers. */
-function spreadOf({ fit }: KnownBlock): number {
+function spreadOf({ fit }: Pick<KnownBlock, 'fit'>): number {
   const apart = 4;
   let re = 0;
   let im = 0;
@@ -66,7 +82,7 @@ function spreadOf({ fit }: KnownBlock): number {
     re += fit.gains[j] * fit.gains[i] + fit.gains[j + 1] * fit.gains[i + 1];
     im += fit.gains[j + 1] * fit.gains[i] - fit.gains[j] * fit.gains[i + 1];
   }
-  const likeness = Math.hypot(re, im) / ((BLOCK_SUBCARRIERS - apart) * fit.signalPower);
+  const likeness = Math.hypot(re, im) / ((BLOCK_SUBCARRIERS - apart) * gainPower({ fit }));
   return Math.sqrt(2 * Math.max(0, 1 - likeness)) / (2 * Math.PI * apart);
 }
 

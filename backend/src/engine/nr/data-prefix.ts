@@ -1,4 +1,4 @@
-import { numerologyOf, prefixTs, TS_HZ, usefulStartTs, usefulTs } from './numerology.js';
+import { numerologyOf, prefixTs, TS_HZ, usefulStartTs } from './numerology.js';
 import type { FrequencyEstimate } from './frequency-fit.js';
 import type { WorkSignal } from './work-signal.js';
 
@@ -17,8 +17,17 @@ export interface DataPrefix {
 /** Share of each prefix that is left out at its start, where the last symbol's echoes are. */
 const SKIPPED = 0.3;
 
-/** Prefix correlation of a numerology at known times; `subframeS` is the start of any subframe in the capture. */
-export function measurePrefix(work: WorkSignal, subframeS: number, { spacingHz, extended }: { spacingHz: number; extended: boolean }): DataPrefix {
+/** What is known of the frame: the start of any subframe in the capture, and the spans that hold synchronisation blocks, s. */
+export interface FrameTimes {
+  readonly subframeS: number;
+  readonly blocks: readonly { readonly fromS: number; readonly toS: number }[];
+}
+
+/**
+ * Prefix correlation of a numerology at known times. Symbols that meet a synchronisation block
+ * are left out: the block's own prefixes say nothing of the data's.
+ */
+export function measurePrefix(work: WorkSignal, frame: FrameTimes, { spacingHz, extended }: { spacingHz: number; extended: boolean }): DataPrefix {
   const mu = numerologyOf(spacingHz)!;
   const size = work.rateHz / spacingHz;
   const perHalf = (extended ? 6 : 7) * 2 ** mu;
@@ -26,13 +35,15 @@ export function measurePrefix(work: WorkSignal, subframeS: number, { spacingHz, 
   const sums: { re: number; im: number }[] = [];
   let power = 0;
   let counted = 0;
-  const startS = subframeS - work.startS;
+  const startS = frame.subframeS - work.startS;
   const firstHalf = Math.ceil(-startS / 0.0005);
   for (let half = firstHalf; ; half++) {
     if ((startS + (half + 1) * 0.0005) * work.rateHz + size > samples) break;
     const sum = { re: 0, im: 0 };
     for (let l = 0; l < perHalf; l++) {
-      const useful = (startS + half * 0.0005 + usefulStartTs(mu, l, extended) / TS_HZ) * work.rateHz;
+      const usefulS = startS + half * 0.0005 + usefulStartTs(mu, l, extended) / TS_HZ;
+      if (meetsBlock(frame, work.startS + usefulS, 1 / spacingHz)) continue;
+      const useful = usefulS * work.rateHz;
       const prefix = (prefixTs(mu, l, extended) / TS_HZ) * work.rateHz;
       const from = Math.max(0, Math.ceil(useful - prefix * (1 - SKIPPED)));
       for (let n = from; n < Math.floor(useful); n++) {
@@ -60,6 +71,10 @@ export function measurePrefix(work: WorkSignal, subframeS: number, { spacingHz, 
   };
 }
 
+function meetsBlock({ blocks }: FrameTimes, usefulS: number, lengthS: number): boolean {
+  return blocks.some(({ fromS, toS }) => usefulS < toS && usefulS + lengthS > fromS);
+}
+
 /** Standard deviation of the total's phase, from how the half-subframes differ. */
 function scatter(sums: readonly { re: number; im: number }[], { re, im }: { re: number; im: number }): number {
   const strength = Math.hypot(re, im) + 1e-300;
@@ -73,9 +88,4 @@ export function dataNumerologies(blockSpacingHz: number): { spacingHz: number; e
   const spacings = blockSpacingHz <= 30_000 ? [15_000, 30_000, 60_000] : blockSpacingHz <= 240_000 ? [60_000, 120_000] : [120_000, 480_000, 960_000];
   const normal = spacings.map((spacingHz) => ({ spacingHz, extended: false }));
   return spacings.includes(60_000) ? [...normal, { spacingHz: 60_000, extended: true }] : normal;
-}
-
-/** Length of a useful part, s. */
-export function usefulS(mu: number): number {
-  return usefulTs(mu) / TS_HZ;
 }

@@ -14,13 +14,15 @@ export function unknown(reason: string): AirValue {
 }
 
 /** Carrier offset, resource blocks and the data's numerology, each with how it was found. */
-export function carrierValues({ data, placement, placed, commonGrid, reference }: CellMeasurements): Record<string, AirValue> {
+export function carrierValues({ data, placement, placed, fullEdges, commonGrid, reference }: CellMeasurements): Record<string, AirValue> {
   const sigmaHz = reference.estimate.sigmaHz;
   const values: Record<string, AirValue> = {};
   if (placement && placed) {
     const method = `edges of the carrier's power on the grid of common resource blocks that k_SSB gives; ${reference.method}`;
-    values.carrierOffsetHz = { value: placement.referenceHz, confidence: placement.inTable ? 0.98 : 0.9, method, sigmaHz };
-    values.resourceBlocks = { value: placement.resourceBlocks, confidence: placement.inTable ? 0.98 : 0.85, method };
+    values.carrierOffsetHz = { value: placement.referenceHz, confidence: fullEdges ? 0.98 : 0.9, method, sigmaHz };
+    values.resourceBlocks = fullEdges
+      ? { value: placement.resourceBlocks, confidence: placement.inTable ? 0.98 : 0.9, method }
+      : unknown(`the outermost of the ${placement.resourceBlocks} blocks that carry power are weak: there may be more`);
     return values;
   }
   const spacingHz = data?.spacingHz ?? commonGrid?.spacingHz ?? null;

@@ -32,7 +32,9 @@ export function offsetWithinSymbols(grid: readonly Float64Array[], known: readon
     }
   }
   if (norm === 0) return { hz: 0, sigmaHz: spacingHz };
-  return { hz: (product / norm) * spacingHz, sigmaHz: Math.sqrt(fit.noisePower / (2 * norm)) * spacingHz };
+  // The gains' own noise, that of some 3.3 elements each, swells the trace without telling of the offset.
+  const swell = 1 + fit.noisePower / (3.3 * fit.signalPower);
+  return { hz: ((product * swell) / norm) * spacingHz, sigmaHz: swell * Math.sqrt(fit.noisePower / (2 * norm)) * spacingHz };
 }
 
 function through(points: Float64Array, { fit, symbol }: { fit: BlockFit; symbol: number }): Float64Array {

@@ -24,6 +24,8 @@ export interface CellMeasurements {
   readonly placement: CarrierPlacement | null;
   /** True where the placement is believed: a standard bandwidth, or a carrier around the tuner's centre. */
   readonly placed: boolean;
+  /** True where the outermost blocks are full ones, so that the number of blocks is the carrier's. */
+  readonly fullEdges: boolean;
   readonly clock: ClockDrift | null;
   readonly phases: PhaseCompensation;
 }
@@ -44,7 +46,8 @@ export function measureCell(context: DetectionContext, { cell, work, decoded, in
     blockEdgeHz: grid.edgeHz,
     stepHz: 12 * Math.min(grid.spacingHz, data.spacingHz),
   });
-  const placed = placement !== null && (placement.inTable || isCentred(placement, centreHz));
+  const edges = placement !== null && hasFullEdges(placement);
+  const placed = placement !== null && ((placement.inTable && edges) || isCentred(placement, centreHz));
   const carriers = placed ? [placement.referenceHz] : possibleCarriers(context, { placement, commonGrid: grid, inverted });
   const phases = judgePhases(cell, {
     present: lawsWithCompensation({ referenceHz, centreHz, spacingHz: cell.spacingHz }),
@@ -59,6 +62,7 @@ export function measureCell(context: DetectionContext, { cell, work, decoded, in
     commonGrid: grid && { ...grid, edgeHz: grid.edgeHz + moved },
     placement: placement && { ...placement, referenceHz: placement.referenceHz + moved, lowHz: placement.lowHz + moved, highHz: placement.highHz + moved },
     placed,
+    fullEdges: edges,
     clock: clockDrift(cell),
     phases,
   };
@@ -79,6 +83,14 @@ function commonGridOf(cell: Cell, referenceHz: number, { information }: DecodedB
   const unitHz = lower ? 15_000 : spacingHz;
   if (information.kSsb > (lower ? 23 : 11)) return null;
   return { edgeHz: referenceHz - 120 * cell.spacingHz - information.kSsb * unitHz, spacingHz };
+}
+
+/** Share of the usual power in the outermost blocks: fading may weaken those of a standard bandwidth. */
+const LISTED_EDGE = 0.3;
+const UNLISTED_EDGE = 0.6;
+
+function hasFullEdges({ inTable, edgeShare }: CarrierPlacement): boolean {
+  return edgeShare > (inTable ? LISTED_EDGE : UNLISTED_EDGE);
 }
 
 function isCentred(placement: CarrierPlacement, centreHz: number | null): boolean {

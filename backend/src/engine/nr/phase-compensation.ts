@@ -39,6 +39,8 @@ const SIGMAS = 3;
 /** Offsets tried: this many standard deviations each way, in this many steps. */
 const REACH = 3.5;
 const STEPS = 40;
+/** Share from which one law of a set is taken for certain. */
+const SURE_LAW = 0.99;
 /** Natural logarithm of the odds from which one law is believed. */
 const ODDS = 3;
 /** Largest χ² per degree of freedom that still counts as a fit. */
@@ -49,7 +51,7 @@ export function judgePhases(cell: Cell, question: PhaseQuestion): PhaseCompensat
   if (question.present.length === 0 || question.absent.length === 0) {
     return { value: null, confidence: 0, separation: 0, reason: 'neither the tuner’s frequency nor the carrier’s place is known', reference: null };
   }
-  const sigmaHz = Math.hypot(question.reference.sigmaHz, DOPPLER_HZ);
+  const sigmaHz = Math.hypot(1.2 * question.reference.sigmaHz, DOPPLER_HZ);
   const driftHz = question.reference.hz - cell.gridHz;
   const present = explain(cell, question.present, { driftHz, sigmaHz });
   const absent = explain(cell, question.absent, { driftHz, sigmaHz });
@@ -60,9 +62,7 @@ export function judgePhases(cell: Cell, question: PhaseQuestion): PhaseCompensat
   const odds = Math.abs(present.logLikelihood - absent.logLikelihood);
   const separation = single ? separationOf(cell, { from: present.hz, to: absent.hz, sigmaHz }) : Math.sqrt(2 * odds);
   const verdict = { confidence: 1 / (1 + Math.exp(-Math.min(odds, 9))), separation };
-  // Of several possible carriers the likeliest may be a neighbour of the right one, and the offset with it.
-  const alone = (better === present ? question.present : question.absent).length === 1;
-  const reference = (law: Explanation) => (alone ? { hz: question.reference.hz + law.offset.hz, sigmaHz: law.offset.sigmaHz } : null);
+  const reference = (law: Explanation) => (law.share > SURE_LAW ? { hz: question.reference.hz + law.offset.hz, sigmaHz: law.offset.sigmaHz } : null);
   if (single && separation < SIGMAS) {
     const reason = `the phases with and without compensation lie ${separation.toFixed(1)} standard deviations apart at this carrier frequency`;
     return { ...verdict, value: null, reason, reference: fits ? reference(better) : null };
@@ -79,6 +79,8 @@ interface Explanation {
   /** χ² of the best law and offset, the prior's part included. */
   readonly misfit: number;
   readonly hz: number;
+  /** Probability of the best law among its set: a neighbour of the right carrier would drag the offset along. */
+  readonly share: number;
   /** Of SS_REF beside where it was taken to be. */
   readonly offset: FrequencyEstimate;
 }
@@ -94,16 +96,18 @@ function explain(cell: Cell, laws: PhaseLaws, { driftHz, sigmaHz }: { driftHz: n
     }
   }
   const top = terms.reduce((a, b) => (b.log > a.log ? b : a));
-  const weights = terms.map((term) => Math.exp(term.log - top.log));
-  const sum = weights.reduce((a, b) => a + b, 0);
-  const mean = terms.reduce((total, term, i) => total + weights[i] * term.offsetHz, 0) / sum;
-  const variance = terms.reduce((total, term, i) => total + weights[i] * (term.offsetHz - mean) ** 2, 0) / sum;
+  const sum = terms.reduce((total, term) => total + Math.exp(term.log - top.log), 0);
+  const own = terms.filter((term) => term.hz === top.hz).map((term) => ({ ...term, weight: Math.exp(term.log - top.log) }));
+  const ownSum = own.reduce((total, term) => total + term.weight, 0);
+  const mean = own.reduce((total, term) => total + term.weight * term.offsetHz, 0) / ownSum;
+  const variance = own.reduce((total, term) => total + term.weight * (term.offsetHz - mean) ** 2, 0) / ownSum;
   const norm = Math.log(laws.reduce((total, law) => total + law.weight, 0)) + Math.log(2 * STEPS + 1);
   const gridStepHz = (REACH * sigmaHz) / STEPS;
   return {
     logLikelihood: top.log + Math.log(sum) - norm,
     misfit: top.misfit,
     hz: top.hz,
+    share: ownSum / sum,
     offset: { hz: mean, sigmaHz: Math.sqrt(variance + gridStepHz ** 2 / 12) },
   };
 }

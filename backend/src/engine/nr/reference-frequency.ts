@@ -1,4 +1,6 @@
 import type { BlindOfdm } from '../types.js';
+import { BLOCK_PREFIX, blockSymbolS } from './block-grid.js';
+import { BLOCK_SYMBOLS } from './block-layout.js';
 import type { Cell } from './cell.js';
 import { dataNumerologies, measurePrefix, type DataPrefix } from './data-prefix.js';
 import type { FrequencyEstimate } from './frequency-fit.js';
@@ -14,6 +16,8 @@ export interface ReferenceFrequency {
 
 /** Correlation below which no numerology is believed, in multiples of chance. */
 const CLEAR = 5;
+/** A leaking oscillator or a tone repeats at every lag alike: the right one stands out of the others. */
+const AHEAD = 1.5;
 
 /**
  * The numerology whose prefixes fit the slots best, the blind estimate's first where it is one of
@@ -21,9 +25,14 @@ const CLEAR = 5;
  */
 export function dataNumerology(work: WorkSignal, cell: Cell, blind: BlindOfdm | null): DataPrefix | null {
   const all = dataNumerologies(cell.spacingHz).filter(({ spacingHz }) => 16 * spacingHz <= work.rateHz);
-  const measured = all.map((each) => measurePrefix(work, cell.frameStartS, each));
+  const frame = {
+    subframeS: cell.frameStartS,
+    blocks: cell.blocks.map(({ usefulS }) => ({ fromS: usefulS - BLOCK_PREFIX / cell.spacingHz, toS: usefulS + blockSymbolS(cell.spacingHz, BLOCK_SYMBOLS) })),
+  };
+  const measured = all.map((each) => measurePrefix(work, frame, each));
   const best = measured.reduce((a, b) => (b.correlation > a.correlation ? b : a));
-  if (best.correlation < CLEAR * best.chance) return null;
+  const rival = Math.max(...measured.filter((each) => each !== best).map((each) => each.correlation));
+  if (best.correlation < CLEAR * best.chance || best.correlation < AHEAD * rival) return null;
   if (!blind || blind.confidence < 0.9) return best;
   const mu = numerologyOf(blind.subcarrierSpacingHz);
   const same = measured.find((each) => numerologyOf(each.spacingHz) === mu && each.extended === (blind.cyclicPrefix === 'extended'));
