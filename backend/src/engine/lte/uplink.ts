@@ -5,7 +5,6 @@ import { prefixSamples, SPACING_HZ, symbolStart, symbolsPerSlot } from './numero
 import type { PrefixFit } from './prefix-search.js';
 import { symbolRows } from './rows.js';
 import type { Rows } from './rows.js';
-import { uplinkBaseSequence } from './uplink-reference.js';
 import { allocated, searchUplink } from './uplink-search.js';
 import type { UplinkFit } from './uplink-search.js';
 
@@ -24,7 +23,7 @@ export function detectUplink(context: DetectionContext, window: NativeWindow, fi
   if (!fit || fit.score < LEAST_PREFIX_SCORE) return null;
   const early = Math.round(prefixSamples('normal', 1, window.size) / 2);
   const rows = symbolRows(window, { ...fit, offsetHz: fit.fractionHz, early });
-  const uplink = searchUplink(rows, Math.floor((0.97 * window.passHz) / SPACING_HZ));
+  const uplink = searchUplink(rows, Math.floor((0.9 * window.passHz) / SPACING_HZ));
   return uplink && uplinkFinding(context, window, { fit, rows, uplink });
 }
 
@@ -81,8 +80,8 @@ function halfShift(context: DetectionContext, { fit }: Found, residueHz: number)
 
 /** Reference symbols against the mean of both neighbours: 3/2 of the error's variance. */
 function quality({ rows, uplink }: Found, known: (value: number, method: string) => AirValue, absent: (reason: string) => AirValue): Record<string, AirValue> {
-  const own = neighbourError(rows, uplink, uplinkBaseSequence(uplink.group, 12 * uplink.blocks));
-  const other = neighbourError(rows, uplink, uplinkBaseSequence((uplink.group + 7) % 30, 12 * uplink.blocks));
+  const own = neighbourError(rows, uplink, uplink.chirp);
+  const other = neighbourError(rows, uplink, uplink.chirp + 7 / 31);
   const signal = own.power - own.noise;
   if (!(signal > 0)) return { snrDb: absent('no power above the noise'), evmPercent: absent('no power above the noise') };
   return {
@@ -93,10 +92,10 @@ function quality({ rows, uplink }: Found, known: (value: number, method: string)
   };
 }
 
-function neighbourError(rows: Rows, uplink: UplinkFit, sequence: Float64Array): { noise: number; power: number } {
+function neighbourError(rows: Rows, uplink: UplinkFit, chirp: number): { noise: number; power: number } {
   const channels = uplink.symbols.flatMap((s) => {
-    const row = allocated(rows, s, { firstBin: uplink.firstBin, length: 12 * uplink.blocks });
-    return row ? [despread(row, sequence)] : [];
+    const row = allocated(rows, s, uplink);
+    return row ? [despread(row, chirp)] : [];
   });
   let squares = 0, power = 0, count = 0;
   for (const h of channels) {
@@ -111,11 +110,15 @@ function neighbourError(rows: Rows, uplink: UplinkFit, sequence: Float64Array): 
   return { noise: squares / count / 1.5, power: power / count };
 }
 
-function despread(row: Float64Array, sequence: Float64Array): Float64Array {
+/** The row with the chirp taken out; what is left turns evenly. */
+function despread(row: Float64Array, chirp: number): Float64Array {
   const h = new Float64Array(row.length);
   for (let i = 0; i < row.length; i += 2) {
-    h[i] = row[i] * sequence[i] + row[i + 1] * sequence[i + 1];
-    h[i + 1] = row[i + 1] * sequence[i] - row[i] * sequence[i + 1];
+    const k = i / 2;
+    const angle = Math.PI * ((chirp * k * k) % 2);
+    const c = Math.cos(angle), s = Math.sin(angle);
+    h[i] = row[i] * c - row[i + 1] * s;
+    h[i + 1] = row[i + 1] * c + row[i] * s;
   }
   return h;
 }
