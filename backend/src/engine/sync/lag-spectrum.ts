@@ -1,6 +1,6 @@
 import { nextFast, transformOf } from '../fourier/fft.js';
 import { smoothed } from '../spectrum/occupied.js';
-import type { Working } from './lag-sums.js';
+import { sinc, type Working } from './lag-sums.js';
 
 /** Strength of the correlation at every lag, free of the spectrum's own shape. */
 export interface LagSpectrum {
@@ -25,7 +25,8 @@ export function lagSpectrum({ iq, rateHz }: Working, maxLag: number): LagSpectru
   const size = samples <= MOST_POINTS ? nextFast(samples) : MOST_POINTS;
   const power = withoutLines(periodogram(iq, size));
   const weighted = new Float64Array(2 * size);
-  const shape = smoothed(power, Math.max(4, Math.round(size / 400)));
+  const reachBins = Math.max(4, Math.round(size / 110));
+  const shape = smoothed(power, reachBins);
   const sorted = Float64Array.from(shape).sort();
   const floor = sorted[Math.floor(size / 20)];
   const top = sorted[Math.floor(size * 0.95)];
@@ -37,7 +38,7 @@ export function lagSpectrum({ iq, rateHz }: Working, maxLag: number): LagSpectru
   const lags = new Float64Array(2 * size);
   transformOf(size).inverse(weighted, lags);
   const reach = Math.min(maxLag, size >> 1);
-  return { strength: overScatter(lags, reach), rateHz };
+  return { strength: overScatter(lags, { reach, width: (2 * reachBins + 1) / size }), rateHz };
 }
 
 /** The longest single transform; a longer window is averaged piece by piece. */
@@ -80,11 +81,14 @@ function withoutLines(power: Float64Array): Float64Array {
   });
 }
 
-function overScatter(lags: Float64Array, reach: number): Float64Array {
-  const power = Float64Array.from({ length: reach }, (_, i) => lags[2 * i] ** 2 + lags[2 * i + 1] ** 2);
+/** Taking the smoothed shape away weakens the short lags; that is known and made good, and where too little is left nothing is said. */
+function overScatter(lags: Float64Array, { reach, width }: { reach: number; width: number }): Float64Array {
+  const kept = (lag: number) => 1 - sinc(lag * width);
+  const first = Math.min(reach, Array.from({ length: reach }, (_, i) => i).find((i) => kept(i) > 0.2) ?? reach);
+  const power = Float64Array.from({ length: reach }, (_, i) => (i < first ? 0 : (lags[2 * i] ** 2 + lags[2 * i + 1] ** 2) / kept(i) ** 2));
   const block = Math.max(64, Math.ceil(reach / 64));
   const out = new Float64Array(reach);
-  for (let from = 0; from < reach; from += block) {
+  for (let from = first; from < reach; from += block) {
     const part = power.slice(from, Math.min(reach, from + block));
     const scatter = Float64Array.from(part).sort()[part.length >> 1] / Math.LN2;
     for (let i = 0; i < part.length; i++) out[from + i] = scatter > 0 ? part[i] / scatter : 0;

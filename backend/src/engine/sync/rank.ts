@@ -57,7 +57,8 @@ function searchFreely(window: Prepared, { groups, lags, longest }: Search): void
   };
   const peaks = lagPeaks(lags, { from: shortest, least: FREE_PEAK, count: 40 });
   for (const lag of screened(window, peaks.map((p) => p.lag), 5)) add(lag);
-  if (!groups.some(isDecisive)) for (const { lag } of scanLags(window, { from: shortest, to: longest, count: 3 })) add(lag);
+  // Without a peak nothing outshines a prefix, and a scan would find no more than the peaks did.
+  if (peaks.length > 1 && !groups.some(isDecisive)) for (const { lag } of scanLags(window, { from: shortest, to: longest, count: 3 })) add(lag);
   const best = [...groups].sort((x, y) => y.merit - x.merit).find((g) => g.free && g.chosen.score > SEARCHED);
   if (!best) return;
   const { usefulS, cyclicPrefixS } = best.chosen.hypothesis;
@@ -79,11 +80,16 @@ export interface LagGroup {
 /** A hypothesis from a list is kept unless a free one explains the same products clearly better. */
 const KEPT = 0.9;
 const PRESENT = 20;
+/** Evidence by which one pattern of longer prefixes has to beat another: odds of 160,000 to 1. */
+const PATTERN = 12;
 
 function grouped(lag: number, scored: readonly Scored[], free: boolean): LagGroup {
   const most = Math.max(...scored.map((s) => s.score));
   const listed = scored.filter((s) => !isFree(s) && (s.score >= KEPT * most - 2 || (s.score > PRESENT && explains(s, bestOf(scored)))));
-  const chosen = bestOf(listed.length > 0 ? listed : scored);
+  const usual = bestOf(listed.length > 0 ? listed : scored);
+  // The true pattern fits best wherever symbols are sent, so that a little is enough to tell one pattern from another.
+  const pattern = bestOf(scored.filter((s) => s.hypothesis.longEvery !== null).concat(usual));
+  const chosen = usual.hypothesis.longEvery !== null && pattern.score > 1.01 * usual.score + PATTERN ? pattern : usual;
   const alike = scored.filter((s) => s.score >= 0.85 * chosen.score);
   const likeness = Math.max(...alike.map((s) => s.likeness));
   return { lag, scored, chosen, free, merit: chosen.score <= 0 ? chosen.score : chosen.score * Math.sqrt(likeness) * chosen.rho };
