@@ -87,11 +87,13 @@ async function tellReaders(client: PoolClient, claimed: Claimed): Promise<void> 
 /** Stores the result once an audience, the hints, and what the register shows of them. */
 export function storeResult(pool: Pool, claimed: Claimed, result: DecodeResult): Promise<boolean> {
   return once(pool, claimed, async (client) => {
+    const rights = await rightsOf(client, claimed.id);
+    if (claimed.reach === 'everyone' && rights.some(({ reach }) => reach === 'my-party')) return dropped(client, claimed);
     const { rowCount } = await client.query(`
       update decodes set state = 'done', step = 'done', progress = 1, finished_at = now(), leased_until = null, engine_version = $3
       where id = $1 and attempt = $2 and state = 'running'`, [claimed.id, claimed.attempt, result.engine.version]);
     if (rowCount !== 1) return false;
-    for (const { partyId, view } of audiencesOf(claimed, await rightsOf(client, claimed.id))) {
+    for (const { partyId, view } of audiencesOf(claimed, rights)) {
       await client.query('insert into decode_results (decode_id, programme_id, attempt, audience_party_id, result) values ($1, $2, $3, $4, $5)',
         [claimed.id, claimed.programmeId, claimed.attempt, partyId, JSON.stringify(resultFor(result, view))]);
     }
@@ -116,6 +118,15 @@ export function storeFailure(pool: Pool, claimed: Claimed, failure: { code: stri
 async function history(client: PoolClient, claimed: Claimed, text: string): Promise<void> {
   const own = claimed.reach === 'my-party';
   await client.query(`insert into events (programme_id, issue_id, kind, text, reach, party_id) values ($1, $2, 'decode', $3, $4, $5)`, [claimed.programmeId, claimed.issueId, text, claimed.reach, own ? claimed.partyId : null]);
+}
+
+/** A snapshot was kept to its owner while the decode ran: what rests on it, be it only a count, is for nobody else. */
+async function dropped(client: PoolClient, claimed: Claimed): Promise<boolean> {
+  const { rowCount } = await client.query(`
+    update decodes set state = 'failed', finished_at = now(), leased_until = null, input_withdrawn = true, error_code = 'reach-narrowed',
+      error_message = 'A file was taken out of the comparison while this decode ran. Ask for another one.'
+    where id = $1 and attempt = $2 and state = 'running'`, [claimed.id, claimed.attempt]);
+  return rowCount === 1;
 }
 
 /** Read again in the transaction that stores: a reach may have been narrowed while the decode ran. */
