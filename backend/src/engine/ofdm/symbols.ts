@@ -35,7 +35,9 @@ export function symbolsOf(window: Window, grid: SymbolGrid, range: SymbolRange):
   const rate = size * spacing;
   const origin = range.from;
   const part = window.iq.subarray(2 * (origin - window.startSample), 2 * (range.to - window.startSample));
-  const iq = resample(part, window.sampleRateHz, rate, { shiftHz: -middle, startSample: origin });
+  // At a native rate about a centre at zero the samples serve as they are.
+  const asTheyAre = middle === 0 && Math.abs(rate / window.sampleRateHz - 1) < 1e-12;
+  const iq = asTheyAre ? part : resample(part, window.sampleRateHz, rate, { shiftHz: -middle, startSample: origin });
   const lowest = Math.max(-size / 2 + 1, Math.ceil((range.lowHz - middle) / spacing));
   const highest = Math.min(size / 2 - 1, Math.floor((range.highHz - middle) / spacing));
   const width = Math.max(0, highest - lowest + 1);
@@ -49,8 +51,9 @@ export function symbolsOf(window: Window, grid: SymbolGrid, range: SymbolRange):
 }
 
 function transformSize(rateHz: number, spacing: number, { lowHz, highHz }: SymbolRange): number {
-  const needed = Math.min(1.02 * rateHz, 1.3 * (highHz - lowHz)) / spacing;
-  return 2 ** Math.max(4, Math.ceil(Math.log2(needed)));
+  const needed = Math.min(rateHz, 1.3 * (highHz - lowHz)) / spacing;
+  // A native rate stays as it is, whatever the last digit of its quotient.
+  return 2 ** Math.max(4, Math.ceil(Math.log2(needed) - 1e-6));
 }
 
 /** Where symbols begin (their prefixes) and how long these are, in the capture's samples. */
@@ -80,16 +83,23 @@ function transformed(iq: Float32Array, places: { at: number; prefix: number }[],
     const begin = Math.round(at + prefix / 2);
     input.set(iq.subarray(2 * begin, 2 * (begin + size)));
     transformOf(size).forward(input, output);
-    const early = at + prefix - begin;
-    for (let i = 0; i < width; i++) {
-      const k = lowest + i;
-      const bin = (k + size) % size;
-      const angle = (2 * Math.PI * k * early) / size;
-      const c = Math.cos(angle);
-      const d = Math.sin(angle);
-      values[2 * (s * width + i)] = output[2 * bin] * c - output[2 * bin + 1] * d;
-      values[2 * (s * width + i) + 1] = output[2 * bin] * d + output[2 * bin + 1] * c;
-    }
+    copyTurned(output, values.subarray(2 * s * width, 2 * (s + 1) * width), { size, lowest, cycles: (at + prefix - begin) / size });
   });
   return values;
+}
+
+/** The bins from `lowest` on, turned by `cycles` for each subcarrier: the transform began that much before the useful part. */
+function copyTurned(bins: Float64Array, out: Float64Array, { size, lowest, cycles }: { size: number; lowest: number; cycles: number }): void {
+  const stepRe = Math.cos(2 * Math.PI * cycles);
+  const stepIm = Math.sin(2 * Math.PI * cycles);
+  let re = Math.cos(2 * Math.PI * cycles * lowest);
+  let im = Math.sin(2 * Math.PI * cycles * lowest);
+  for (let i = 0, bin = 2 * ((lowest + size) % size); i < out.length; i += 2, bin += 2) {
+    if (bin === 2 * size) bin = 0;
+    out[i] = bins[bin] * re - bins[bin + 1] * im;
+    out[i + 1] = bins[bin] * im + bins[bin + 1] * re;
+    const next = re * stepRe - im * stepIm;
+    im = re * stepIm + im * stepRe;
+    re = next;
+  }
 }

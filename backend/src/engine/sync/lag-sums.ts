@@ -38,11 +38,9 @@ function sums(iq: Float32Array, { late, whole, hop, lag }: Plan): LagSums {
   const blocks = Math.max(0, Math.floor(((iq.length >> 1) - whole - TAPS) / hop));
   const re = new Float64Array(blocks);
   const im = new Float64Array(blocks);
-  const power = new Float64Array(blocks);
   for (let b = 0, i = 0, j = 2 * whole; b < blocks; b++) {
     let sumRe = 0;
     let sumIm = 0;
-    let energy = 0;
     for (const end = i + 2 * hop; i < end; i += 2, j += 2) {
       const ar = iq[i];
       const ai = iq[i + 1];
@@ -50,13 +48,28 @@ function sums(iq: Float32Array, { late, whole, hop, lag }: Plan): LagSums {
       const bi = late[j + 1];
       sumRe += br * ar + bi * ai;
       sumIm += bi * ar - br * ai;
-      energy += ar * ar + ai * ai;
     }
     re[b] = sumRe;
     im[b] = sumIm;
-    power[b] = energy;
   }
-  return { re, im, power, hop, lag };
+  return { re, im, power: blockPower(iq, hop, blocks), hop, lag };
+}
+
+const running = new WeakMap<Float32Array, Float64Array>();
+
+/** |x|² summed over blocks, from running sums that all lags of a window share. */
+function blockPower(iq: Float32Array, hop: number, blocks: number): Float64Array {
+  const sum = running.get(iq) ?? runningPower(iq);
+  running.set(iq, sum);
+  const out = new Float64Array(blocks);
+  for (let b = 0; b < blocks; b++) out[b] = sum[(b + 1) * hop] - sum[b * hop];
+  return out;
+}
+
+function runningPower(iq: Float32Array): Float64Array {
+  const sum = new Float64Array((iq.length >> 1) + 1);
+  for (let n = 0, total = 0; n < sum.length - 1; n++) sum[n + 1] = total += iq[2 * n] * iq[2 * n] + iq[2 * n + 1] * iq[2 * n + 1];
+  return sum;
 }
 
 /** The samples read `part` of a sample later, by the best linear interpolation of a flat band (normal equations). */
