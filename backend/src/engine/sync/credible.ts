@@ -27,7 +27,7 @@ const MOST_UNEVEN = 1.7;
 const FEWEST_SUBCARRIERS = 6;
 /** All of an OFDM signal repeats in its prefix, so that this is S / (S + N), less where two numerologies share the window. */
 const LEAST_RHO = 0.08;
-const LEAST_FREE_RHO = 0.3;
+const LEAST_FREE_RHO = 0.15;
 
 export interface Credibility {
   readonly credible: boolean;
@@ -69,7 +69,7 @@ export function kurtosis({ iq, on }: Prepared): number {
 }
 
 /** A prefix is as strong as the rest of its symbol; pulses that recur are not. */
-function evenPower(window: Prepared, { best, sums, hypothesis, rho }: Scored): boolean {
+function evenPower(window: Prepared, { best, sums, hypothesis, rho, spans }: Scored): boolean {
   if (!best || rho > MOST_RHO) return false;
   const bins = 256;
   const period = (periodOf(hypothesis) * window.rateHz) / sums.hop;
@@ -77,14 +77,15 @@ function evenPower(window: Prepared, { best, sums, hypothesis, rho }: Scored): b
   let inside = 0;
   let insideWeight = 0;
   let all = 0;
-  for (let b = best.span.from; b < best.span.to; b++) {
+  const { from, to } = spans.apart ? best.span : { from: 0, to: sums.power.length };
+  for (let b = from; b < to; b++) {
     const turns = (b + 0.5 - best.origin) / period - best.match.phase;
     const weight = mask[Math.floor((turns - Math.floor(turns)) * bins)];
     inside += weight * sums.power[b];
     insideWeight += weight;
     all += sums.power[b];
   }
-  const ratio = (inside / insideWeight) / (all / (best.span.to - best.span.from));
+  const ratio = (inside / insideWeight) / (all / (to - from));
   return ratio > 1 / MOST_UNEVEN && ratio < MOST_UNEVEN;
 }
 

@@ -34,12 +34,13 @@ export function symbolCurve(scored: Scored, rateHz: number, startSample: number)
   const turns = (startSample / sums.hop - folded.origin) / period;
   const first = Math.round((turns - Math.floor(turns)) * folded.bins);
   const shift = Math.round(0.15 * folded.bins);
+  const level = folded.power.reduce((a, b) => a + b, 0) / folded.bins;
   const x: number[] = [];
   const y: number[] = [];
   for (let i = -shift; i < folded.bins - shift; i++) {
     const b = (first + i + 2 * folded.bins) % folded.bins;
     x.push(Number((((i + 0.5) / folded.bins) * (one.usefulS + mean) * 1e6).toFixed(4)));
-    y.push(Number((Math.hypot(folded.profile[2 * b], folded.profile[2 * b + 1]) / folded.power).toFixed(4)));
+    y.push(Number((Math.hypot(folded.profile[2 * b], folded.profile[2 * b + 1]) / Math.max(1e-300, level)).toFixed(4)));
   }
   const markers = [{ x: 0, label: 'prefix begins' }, { x: Number((hypothesis.cyclicPrefixS * 1e6).toFixed(4)), label: 'prefix ends' }];
   return { title: 'Prefix correlation along the symbol', xLabel: 'Time in the symbol', xUnit: 'µs', yLabel: 'Correlation', yUnit: '', x, y, markers };

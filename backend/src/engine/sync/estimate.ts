@@ -57,11 +57,31 @@ export function analyseWindow(window: Window, options: EstimateOptions = {}): Bl
   const prepared = prepare(window, { occupied: bandOf(window, options), on: onOf(window, options) });
   const ranking = rank(prepared);
   if (ranking.groups.length === 0) return { found: null, prefixCorrelation: null, reason: 'too short for any symbol' };
-  const choice = choose(ranking.groups, prepared.rateHz);
-  const { credible, reason } = credibility(prepared, choice.chosen);
-  if (!credible) return { found: null, prefixCorrelation: lagCurve(ranking.lags, null), reason };
+  const { choice, reason } = credibleChoice(prepared, ranking);
+  if (!choice) return { found: null, prefixCorrelation: lagCurve(ranking.lags, null), reason };
   const refined = refine(prepared, choice.chosen);
   return { found: toEstimate(prepared, { ranking, choice, refined }), prefixCorrelation: lagCurve(ranking.lags, choice.chosen.hypothesis), reason: null };
+}
+
+/** How many lags are looked at before nothing is claimed. */
+const TRIED = 4;
+const WORTH = 20;
+
+/**
+ * The best lag, or a listed one behind it, that stands up to every test: reference signals alone
+ * can be strongest at a lag that is no useful symbol. A free lag behind others is not trusted: a
+ * sweep has many.
+ */
+function credibleChoice(window: Prepared, { groups }: Ranking): { choice: Choice | null; reason: string | null } {
+  let first: string | null = null;
+  for (let skip = 0; skip < Math.min(TRIED, groups.length); skip++) {
+    if (skip > 0 && (groups[skip].chosen.score < WORTH || groups[skip].chosen.hypothesis.family === 'free')) continue;
+    const choice = choose(groups.slice(skip), window.rateHz);
+    const { credible, reason } = credibility(window, choice.chosen);
+    if (credible) return { choice, reason: null };
+    first ??= reason;
+  }
+  return { choice: null, reason: first };
 }
 
 function bandOf(window: Window, { occupied }: EstimateOptions): { lowHz: number; highHz: number } | null {

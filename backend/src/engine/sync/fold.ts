@@ -11,8 +11,8 @@ export interface Folded {
   /** Expected power of each line without structure. */
   readonly scatter: Float64Array;
   readonly bins: number;
-  /** Mean power summed in a bin: what a full correlation would give. */
-  readonly power: number;
+  /** |x|² summed in each bin: what a full correlation would give. */
+  readonly power: Float64Array;
   /** Block at which the first bin of the profile begins. */
   readonly origin: number;
 }
@@ -30,26 +30,26 @@ export function fold(sums: LagSums, plan: FoldPlan): Folded | null {
   if (spans.reduce((n, s) => n + s.to - s.from, 0) < period) return null;
   const bins = fastAtMost(Math.floor(period));
   const origin = spans[0].from;
-  const profile = summed(sums, plan, { bins, origin });
+  const { profile, power } = summed(sums, plan, { bins, origin });
   const lines = new Float64Array(2 * bins);
   transformOf(bins).forward(profile, lines);
   const scatter = Float64Array.from({ length: bins }, (_, k) => scatterAt(spectrum, (k <= bins / 2 ? k : k - bins + period) / period));
-  let power = 0;
-  for (const { from, to } of spans) for (let b = from; b < to; b++) power += sums.power[b];
-  return { profile, lines, scatter, bins, power: power / bins, origin };
+  return { profile, lines, scatter, bins, power, origin };
 }
 
-function summed(sums: LagSums, { period, spans, spectrum }: FoldPlan, { bins, origin }: { bins: number; origin: number }): Float64Array {
+function summed(sums: LagSums, { period, spans, spectrum }: FoldPlan, { bins, origin }: { bins: number; origin: number }): { profile: Float64Array; power: Float64Array } {
   const profile = new Float64Array(2 * bins);
+  const power = new Float64Array(bins);
   for (const { from, to } of spans) {
     for (let b = from; b < to; b++) {
       const turns = (b - origin + 0.5) / period;
       const bin = Math.floor((turns - Math.floor(turns)) * bins);
       profile[2 * bin] += sums.re[b] - spectrum.re;
       profile[2 * bin + 1] += sums.im[b] - spectrum.im;
+      power[bin] += sums.power[b];
     }
   }
-  return profile;
+  return { profile, power };
 }
 
 /** The largest even length of at most `n` made of 2, 3 and 5. */

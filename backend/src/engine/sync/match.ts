@@ -19,6 +19,8 @@ export interface Match {
   readonly likeness: number;
   /** Part of the score that the strongest harmonic alone brings: near 1 for a tone in the products. */
   readonly peakShare: number;
+  /** Power summed in a prefix's worth of bins, at the best placing: what `re` and `im` are to be compared with. */
+  readonly power: number;
   readonly placings: number;
 }
 
@@ -66,7 +68,7 @@ export function match(folded: Folded, hypothesis: Hypothesis): Match {
   return {
     score, phase: best.place / bins, re: placed[at] * scale, im: placed[at + 1] * scale,
     likeness: likeness(folded, { re: placed[at] * scale, im: placed[at + 1] * scale, plain }),
-    peakShare: peakShare(product, best.index), placings: bins,
+    peakShare: peakShare(product, best.index), power: powerUnder(folded.power, template(hypothesis, bins), best.index), placings: bins,
   };
 }
 
@@ -90,6 +92,17 @@ function peakShare(product: Float64Array, place: number): number {
     most = Math.max(most, Math.hypot(a + c, b + d));
   }
   return most / Math.max(1e-300, Math.hypot(re, im));
+}
+
+function powerUnder(power: Float64Array, mask: Float64Array, place: number): number {
+  let inside = 0;
+  let weight = 0;
+  for (let b = 0; b < mask.length; b++) {
+    if (mask[b] === 0) continue;
+    inside += mask[b] * power[(b + place) % power.length];
+    weight += mask[b];
+  }
+  return inside / Math.max(1e-12, weight);
 }
 
 const masks = new Map<string, Float64Array>();

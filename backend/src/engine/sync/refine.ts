@@ -1,6 +1,7 @@
 import { periodOf, uniformPrefix, type Hypothesis } from './hypotheses.js';
 import { lagSums, type LagSums } from './lag-sums.js';
 import type { Prepared, Stretch } from './prepare.js';
+import type { Span } from './product-spectrum.js';
 import { rescore, type Scored } from './score.js';
 
 /** Where the symbols lie and how strong they are, in working samples and Hz about the working zero. */
@@ -22,13 +23,30 @@ export function refine(window: Prepared, coarse: Scored): Refined {
   const sums = hop < coarse.sums.hop ? lagSums(window, coarse.sums.lag, hop) : coarse.sums;
   const fine = hop < coarse.sums.hop ? rescore({ sums, rateHz: window.rateHz }, coarse) : coarse;
   const placed = fine.best && fine.score > 0.6 * coarse.score ? fine : coarse;
-  const scored = placed.hypothesis.family === 'free' ? withPeriod(window, placed) : placed;
+  const scored = placed.hypothesis.family === 'free' ? withPeriod(window, withLag(window, placed)) : placed;
   const { hypothesis } = scored;
-  const { match, origin } = scored.best!;
+  const { match, origin, span } = scored.best!;
   const period = (periodOf(hypothesis) * window.rateHz) / scored.sums.hop;
   const start = (origin + match.phase * period) * scored.sums.hop;
   const residueHz = Math.atan2(match.im, match.re) / (2 * Math.PI * hypothesis.usefulS);
-  return { scored, start, residueHz, snr: prefixSnr(window, { sums: scored.sums, start, hypothesis, angle: Math.atan2(match.im, match.re) }) };
+  return { scored, start, residueHz, snr: prefixSnr(window, { sums: scored.sums, start, hypothesis, angle: Math.atan2(match.im, match.re), span: scored.spans.apart ? span : null }) };
+}
+
+/** A free hypothesis's lag sharpened, its symbol period kept: echoes and a coarse search leave it some tenths of a sample off. */
+function withLag(window: Prepared, placed: Scored): Scored {
+  const { usefulS, cyclicPrefixS, longEvery } = placed.hypothesis;
+  if (longEvery !== null) return placed;
+  const at = (lag: number): Scored => {
+    const hypothesis = uniformPrefix({ usefulS: lag / window.rateHz, cyclicPrefixS: usefulS + cyclicPrefixS - lag / window.rateHz, family: 'free' });
+    return rescore({ sums: lagSums(window, lag, placed.sums.hop), rateHz: window.rateHz }, { ...placed, hypothesis });
+  };
+  let best = placed;
+  for (let step = (0.5 * window.rateHz) / window.bandHz, i = 0; i < 5; i++) {
+    const better = [-step, step].map((d) => at(best.sums.lag + d)).reduce((a, b) => (b.score > a.score ? b : a), best);
+    if (better === best) step /= 2;
+    else best = better;
+  }
+  return best;
 }
 
 /** A free hypothesis's period sharpened: an error of a hundredth of the prefix adds up from symbol to symbol. */
@@ -48,15 +66,17 @@ function withPeriod(window: Prepared, placed: Scored): Scored {
   return best;
 }
 
-interface Placed { sums: LagSums; start: number; hypothesis: Hypothesis; angle: number }
+/** `span`: the burst that the timing belongs to, where bursts have timings of their own. */
+interface Placed { sums: LagSums; start: number; hypothesis: Hypothesis; angle: number; span: Span | null }
 
 /**
  * Signal to noise from the prefixes themselves (van de Beek, Sandell and Börjesson, IEEE Trans.
  * Signal Process. 45 (1997) 1800: the correlation coefficient is S / (S + N)), over their later
  * part, which a channel's echoes reach least, in the symbols that are on.
  */
-function prefixSnr(window: Prepared, { sums, start, hypothesis, angle }: Placed): number | null {
-  const prefixes = prefixBlocks(window, { sums, start, hypothesis, angle })
+function prefixSnr(window: Prepared, { sums, start, hypothesis, angle, span }: Placed): number | null {
+  const prefixes = prefixBlocks(window, { sums, start, hypothesis, angle, span })
+    .filter(({ from, to }) => span === null || (span.from <= from && to <= span.to))
     .filter(({ from, to }) => within(window.on, from * sums.hop, to * sums.hop + sums.lag));
   let product = 0;
   let power = 0;

@@ -44,7 +44,7 @@ export function scoreCoherent({ sums, rateHz }: Products, hypothesis: Hypothesis
   const found = match(folded, hypothesis);
   return {
     hypothesis, score: found.score - Math.log(found.placings), likeness: found.likeness,
-    rho: Math.hypot(found.re, found.im) / Math.max(1e-300, folded.power), best: { match: found, origin: folded.origin, span: spans[0] }, sums,
+    rho: Math.hypot(found.re, found.im) / Math.max(1e-300, found.power), best: { match: found, origin: folded.origin, span: spans[0] }, sums,
     spans: { blocks: spans, hop: sums.hop, apart: false },
   };
 }
