@@ -1,10 +1,10 @@
-import type { ComparisonRow } from '#shared/decode';
-import { carrierFrequency, carrierWithClock, clockPpm, folded } from '../measurements/carrier.js';
+import { carrierWithClock, clockPpm, folded } from '../measurements/carrier.js';
 import { airNumber } from '../measurements/numbers.js';
 import { judgeContradiction } from '../model.js';
 import { CLOCK_BEYOND_PPM, SCATTER } from '../priors.js';
 import type { Evidence, Finding, Rule } from '../types.js';
 import { basisOf, declaredBy, recordingBasis } from './basis.js';
+import { besideBlockRaster, carrierRow, shiftFromDeclared, type Shift } from './carrier-shift.js';
 
 /**
  * The carrier that agreeing snapshots (or the one that speaks) declare, against the one on the
@@ -19,42 +19,15 @@ export const carrier: Rule = (evidence) => {
   if (Math.abs(shift.hz) <= limitHz) return clockAlone(evidence);
   const clock = clockShare(evidence, shift);
   if (clock > 0.5) return [clockFinding(evidence, { ppm: (shift.hz / shift.fc) * 1e6, hz: shift.hz, probability: clock })];
-  return wrongCarrier(evidence, 1 - clock);
+  // A block beside its place has a rule of its own.
+  return shift.blockHz === null ? wrongCarrier(evidence, 1 - clock) : [];
 };
-
-interface Shift { readonly hz: number; readonly fc: number }
-
-/** Measured carrier minus the nearest declared one; null where nothing is declared or measured. */
-function shiftFromDeclared(evidence: Evidence): Shift | null {
-  const row = carrierRow(evidence);
-  const measured = carrierFrequency(evidence);
-  if (!row || !measured) return null;
-  const spacing = measured.method?.startsWith('fractional') ? airNumber(evidence, 'subcarrierSpacingHz')?.value : undefined;
-  const shifts = declaredBy(row).map((side) => Number(measured.value) - Number(row[side]!.value)).filter(Number.isFinite)
-    .map((hz) => (spacing ? folded(hz, spacing) : hz)).sort((x, y) => Math.abs(x) - Math.abs(y));
-  return shifts.length === 0 ? null : { hz: shifts[0]!, fc: Number(measured.value) };
-}
-
-/**
- * The row of the direction that was captured. An uplink capture is not held against a carrier far
- * outside it: without a name of its own that is the downlink's.
- */
-function carrierRow(evidence: Evidence): ComparisonRow | null {
-  const named = (name: string): ComparisonRow | null => evidence.comparison.rows.find((r) => r.parameter === name) ?? null;
-  const plain = named('carrierFrequency');
-  if (evidence.air['direction']?.value !== 'uplink') return plain;
-  const own = named('uplinkCarrierFrequency');
-  const centre = evidence.capture?.centreFrequencyHz ?? 0;
-  const far = (row: ComparisonRow): boolean => declaredBy(row).every((side) => Math.abs(Number(row[side]!.value) - centre) > (evidence.capture?.sampleRateHz ?? 0));
-  return own ?? (plain && !far(plain) ? plain : null);
-}
 
 /** Probability that a shift beyond the limits is a clock's and not a channel's. */
 function clockShare(evidence: Evidence, shift: Shift): number {
   const ppm = (shift.hz / shift.fc) * 1e6;
   const free = Math.exp(-0.5 * (ppm / (2.5 * CLOCK_BEYOND_PPM)) ** 2);
-  const steps = shift.fc < 3e9 ? [100e3, 15e3] : [15e3];
-  const toRaster = Math.min(...steps.filter((step) => Math.abs(shift.hz) > step / 2).map((step) => Math.abs(folded(shift.hz, step))), Infinity);
+  const toRaster = shift.blockHz === null ? besideCarrierRaster(shift) : besideBlockRaster(shift.blockHz);
   const onRaster = Math.exp(-0.5 * (toRaster / (2 * SCATTER.carrierFrequencyHz + 1e-7 * shift.fc)) ** 2);
   const sampled = airNumber(evidence, 'sampleClockOffsetPpm');
   const sigma = sampled ? Math.max(0.5, Number(sampled.air['deviationPpm'] ?? 1)) : Infinity;
@@ -62,6 +35,12 @@ function clockShare(evidence: Evidence, shift: Shift): number {
   const follows = sampled && Math.abs(ppm) > 3 * sigma ? Math.exp(0.5 * ((sampled.value / sigma) ** 2 - ((sampled.value - ppm) / sigma) ** 2)) : 1;
   const clock = free * Math.min(1e6, follows);
   return clock / (clock + 0.02 + 5 * onRaster);
+}
+
+/** How far a shift is from whole steps of the carrier's raster, Hz. */
+function besideCarrierRaster(shift: Shift): number {
+  const steps = shift.fc < 3e9 ? [100e3, 15e3] : [15e3];
+  return Math.min(...steps.filter((step) => Math.abs(shift.hz) > step / 2).map((step) => Math.abs(folded(shift.hz, step))), Infinity);
 }
 
 function wrongCarrier(evidence: Evidence, share: number): Finding[] {
