@@ -1,4 +1,5 @@
 import type { AirValue, CaptureFacts, Plots } from '#shared/decode';
+import { betweenGaps } from './evidence/between-gaps.js';
 import { complete } from './evidence/air-values.js';
 import { airFrom } from './evidence/air-from-look.js';
 import { readThroughDoubt, type ChangedLabel, type Doubted } from './evidence/doubt.js';
@@ -46,12 +47,12 @@ export interface Analysis {
 export function analyse(recording: Recording, options: AnalyseOptions): Analysis {
   options.onProgress?.('reading', 0.02);
   const doubted = readThroughDoubt(recording, options);
-  const { look } = doubted;
-  const level = levelFacts(look.window.iq);
+  const gaps = gapsIn(recording, doubted.look);
+  const look = betweenGaps(doubted.look, gaps, options);
+  const level = levelFacts(doubted.look.window.iq);
   const measured = airFrom(look, level);
   const demodulated = demodulations(look, measured, options);
   const air = complete(measured['evmPercent']?.value == null ? { ...measured, ...errorOfData(demodulated) } : measured);
-  const gaps = gapsIn(recording, look);
   const patterns = declaredPatterns(look, options.declared);
   const plots = plotsOf(look, demodulated);
   return {
@@ -76,7 +77,7 @@ function factsOf(recording: Recording, { labels, look }: Doubted, level: LevelFa
 function gapsIn(recording: Recording, look: Look): Gap | null {
   const [first] = recording.announcedGaps;
   if (first) {
-    return { atSample: first.atSample, lostSamples: first.missing, count: recording.announcedGaps.length, confidence: 0.97, proof: 'the recorder\'s own count of samples jumps (core:global_index)' };
+    return { atSample: first.atSample, lostSamples: first.missing, count: recording.announcedGaps.length, places: recording.announcedGaps.map((g) => g.atSample), confidence: 0.97, proof: 'the recorder\'s own count of samples jumps (core:global_index)' };
   }
   const grid = look.choice.finding?.grid ?? look.blind?.grid ?? null;
   return grid === null || look.choice.technology === 'wifi' || look.choice.technology === null ? null : findGap(look.window, grid);

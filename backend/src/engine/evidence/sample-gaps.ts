@@ -11,6 +11,8 @@ export interface Gap {
   readonly atSample: number;
   readonly lostSamples: number;
   readonly count: number;
+  /** First samples after each loss, in the capture, a stretch's length uncertain. */
+  readonly places: readonly number[];
   readonly confidence: number;
   readonly proof: string;
 }
@@ -21,45 +23,71 @@ const LEAST_CORRELATION = 0.25;
 const WITNESSES = 3;
 /** Samples: less is the channel's or the clock's doing. */
 const LEAST_STEP = 4;
-/** Stretches over which the drift of two unlike clocks is read. */
+/** Changes from which on the drift of two unlike clocks is read. */
 const DRIFT_SPAN = 8;
 
 /**
  * Samples lost while recording: from one place on all symbols come earlier than the grid says.
  * Each stretch of about half a millisecond (at least six symbols) is timed by its prefixes. Null
- * where nothing jumps. A loss of whole symbols is not seen where all symbols are equal.
+ * where nothing jumps. A loss of whole symbols is not seen where all symbols are equal. The first
+ * loss is described, all of them are counted.
  */
 export function findGap(window: Window, grid: SymbolGrid): Gap | null {
   const timings = withoutDrift(timingsOf(window, grid));
   const symbol = grid.usefulSamples + grid.prefixSamples.at(-1)!;
-  let best: { at: number; step: number; doubt: number } | null = null;
-  for (let i = WITNESSES; i + WITNESSES <= timings.length; i += 1) {
-    const step = stepAt(timings, i, symbol);
-    if (step && (!best || Math.abs(step.step) - 4 * step.doubt > Math.abs(best.step) - 4 * best.doubt)) best = { at: timings[i]!.atSample, ...step };
-  }
-  if (!best) return null;
-  const lost = Math.round(best.step < 0 ? -best.step : symbol - best.step);
+  const steps = stepsIn(timings, symbol).sort((a, b) => a.at - b.at);
+  const [first] = steps;
+  if (!first) return null;
   return {
-    atSample: Math.round(best.at), lostSamples: lost, count: 1,
-    confidence: Math.min(0.97, 0.7 + 0.03 * (Math.abs(best.step) / best.doubt)),
-    proof: `From there on every symbol begins ${Math.abs(best.step).toFixed(1)} samples ${best.step < 0 ? 'earlier' : 'later'} than the grid of the symbols before (scatter ${best.doubt.toFixed(2)} samples)`,
+    atSample: Math.round(first.at), lostSamples: Math.round(first.step < 0 ? -first.step : symbol - first.step), count: steps.length, places: steps.map((s) => Math.round(s.at)),
+    confidence: Math.min(0.97, 0.7 + 0.03 * Math.max(...steps.map((s) => Math.abs(s.step) / s.doubt))),
+    proof: `From there on every symbol begins ${Math.abs(first.step).toFixed(1)} samples ${first.step < 0 ? 'earlier' : 'later'} than the grid of the symbols before (scatter ${first.doubt.toFixed(2)} samples)`,
   };
 }
 
-/** Two clocks drift apart evenly: the median slope is theirs, a loss is not (Theil 1950). */
+interface Step { readonly at: number; readonly step: number; readonly doubt: number; readonly left: number }
+
+/** The clearest step, then those before and after it. */
+function stepsIn(timings: readonly Timing[], symbol: number): Step[] {
+  let best: (Step & { index: number }) | null = null;
+  for (let i = WITNESSES; i + WITNESSES <= timings.length; i += 1) {
+    const step = stepAt(timings, i, symbol);
+    if (step && (!best || Math.abs(step.step) - 4 * step.doubt > Math.abs(best.step) - 4 * best.doubt)) best = { at: timings[i]!.atSample, index: i, ...step };
+  }
+  if (!best) return [];
+  best = { ...best, index: firstAfter(timings, best, symbol) };
+  best = { ...best, at: timings[best.index]!.atSample };
+  // The stretch across the loss belongs to neither side.
+  return [best, ...stepsIn(timings.slice(0, best.index), symbol), ...stepsIn(timings.slice(best.index + 1), symbol)];
+}
+
+/** The first stretch that is timed nearer to those after the step than to those before. */
+function firstAfter(timings: readonly Timing[], { index, step, left }: Step & { index: number }, symbol: number): number {
+  for (let i = Math.max(1, index - WITNESSES); i < index + WITNESSES; i += 1) {
+    const moved = Math.abs(around(timings[i]!.shift - left, 0, symbol));
+    if (Math.abs(around(timings[i]!.shift - left - step, 0, symbol)) < moved) return i;
+  }
+  return index;
+}
+
+/** Two clocks drift apart evenly: the mean of the small changes is theirs, a loss is not small. */
 function withoutDrift(timings: readonly Timing[]): Timing[] {
-  const slopes = timings.slice(DRIFT_SPAN).map((t, i) => (t.shift - timings[i]!.shift) / (t.atSample - timings[i]!.atSample));
-  const slope = slopes.length < DRIFT_SPAN ? 0 : median(slopes);
+  const changes = timings.slice(1).map((t, i) => ({ shift: t.shift - timings[i]!.shift, samples: t.atSample - timings[i]!.atSample }));
+  if (changes.length < DRIFT_SPAN) return [...timings];
+  const usual = median(changes.map((c) => c.shift));
+  const reach = Math.max(3, 4.5 * median(changes.map((c) => Math.abs(c.shift - usual))));
+  const small = changes.filter((c) => Math.abs(c.shift - usual) <= reach);
+  const slope = small.reduce((sum, c) => sum + c.shift, 0) / small.reduce((sum, c) => sum + c.samples, 0);
   return timings.map((t) => ({ ...t, shift: t.shift - slope * t.atSample }));
 }
 
-function stepAt(timings: readonly Timing[], i: number, symbol: number): { step: number; doubt: number } | null {
+function stepAt(timings: readonly Timing[], i: number, symbol: number): Omit<Step, 'at'> | null {
   const before = timings.slice(Math.max(0, i - 2 * WITNESSES), i).map((t) => t.shift);
   const after = timings.slice(i, i + 2 * WITNESSES).map((t) => around(t.shift, before[0]!, symbol));
   const left = before.map((shift) => around(shift, before[0]!, symbol));
   const step = around(median(after) - median(left), 0, symbol);
   const doubt = Math.max(0.5, spread(left), spread(after));
-  return Math.abs(step) > Math.max(LEAST_STEP, 8 * doubt) ? { step, doubt } : null;
+  return Math.abs(step) > Math.max(LEAST_STEP, 8 * doubt) ? { step, doubt, left: median(left) } : null;
 }
 
 /** The representative of `value` nearest to `centre`, modulo `period`. */
@@ -73,10 +101,15 @@ function median(values: readonly number[]): number {
   return sorted.length % 2 === 1 ? sorted[middle]! : (sorted[middle - 1]! + sorted[middle]!) / 2;
 }
 
-/** Median distance from the median, as a standard deviation (1.48 for normal scatter). */
+/**
+ * Second greatest distance from the median, as a standard deviation (1.2 of them for six normal
+ * values): one stretch may lie across the loss, but timings that jump to and fro between two
+ * echoes are no steps.
+ */
 function spread(values: readonly number[]): number {
   const centre = median(values);
-  return 1.48 * median(values.map((value) => Math.abs(value - centre)));
+  const away = values.map((value) => Math.abs(value - centre)).sort((a, b) => b - a);
+  return (away[1] ?? 0) / 1.2;
 }
 
 function timingsOf(window: Window, grid: SymbolGrid): Timing[] {

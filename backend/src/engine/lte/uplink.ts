@@ -1,5 +1,6 @@
 import type { AirValue } from '#shared/decode';
 import type { DetectionContext, TechnologyFinding } from '../types.js';
+import { halfShiftOf } from './half-shift.js';
 import type { NativeWindow } from './native.js';
 import { prefixSamples, SPACING_HZ, symbolStart, symbolsPerSlot } from './numerology.js';
 import type { PrefixFit } from './prefix-search.js';
@@ -8,8 +9,6 @@ import type { Rows } from './rows.js';
 import { allocated, searchUplink } from './uplink-search.js';
 import type { UplinkFit } from './uplink-search.js';
 
-/** ±2 ppm for a recorder that does not say, ±0.1 ppm for a terminal (TS 36.101 clause 6.5.1). */
-const CLOCK_TOLERANCE = 2.1e-6;
 /** Fewer pairs of prefix and end cannot hold a reference symbol in every slot. */
 const LEAST_PREFIX_SCORE = 6;
 
@@ -44,7 +43,7 @@ function uplinkFinding(context: DetectionContext, window: NativeWindow, found: F
     cyclicPrefix: known(fit.prefix, 'repetition of the cyclic prefix'),
     cyclicPrefixS: known(prefixS, 'repetition of the cyclic prefix'),
     carrierOffsetHz: known(residue, 'fractional: a subcarrier\'s place modulo the spacing; an allocation does not show the carrier\'s middle'),
-    halfSubcarrierShift: halfShift(context, found, residue),
+    halfSubcarrierShift: halfShift(context, window, found),
     direction: known('uplink', by),
     resourceBlocks: absent('an uplink allocation does not show how wide the carrier is'),
     physicalCellId: absent('an uplink shows the cell modulo 30 at most'),
@@ -64,18 +63,10 @@ function wrapped(hz: number): number {
   return hz - SPACING_HZ * Math.round(hz / SPACING_HZ);
 }
 
-/** Against the stated centre: subcarriers half a spacing beside it, on it, or too near to tell with two clocks' errors. */
-function halfShift(context: DetectionContext, { fit }: Found, residueHz: number): AirValue {
-  const centre = context.source.centreFrequencyHz;
-  if (centre === null) return { value: null, reason: 'the capture\'s centre is not stated' };
-  const scatter = (SPACING_HZ / (2 * Math.PI)) * Math.sqrt(Math.max(0, 1 / fit.coherence ** 2 - 1) / 2) * (fit.coherence / fit.score);
-  const tolerance = CLOCK_TOLERANCE * centre + 3 * scatter;
-  const fromRaster = Math.abs(residueHz);
-  const fromHalf = SPACING_HZ / 2 - fromRaster;
-  const method = `subcarriers ${Math.round(residueHz)} Hz beside the stated centre's raster of 15 kHz, clocks' tolerance ${Math.round(tolerance)} Hz`;
-  if (fromHalf < tolerance && fromRaster > tolerance) return { value: true, confidence: 0.98, method };
-  if (fromRaster < tolerance && fromHalf > tolerance) return { value: false, confidence: 0.98, method };
-  return { value: null, reason: `${method}: an offset explains it as well` };
+function halfShift(context: DetectionContext, window: NativeWindow, { fit, uplink }: Found): AirValue {
+  const edgeHz = uplink.low * SPACING_HZ + fit.fractionHz - window.shiftHz;
+  const scatterHz = (SPACING_HZ / (2 * Math.PI)) * Math.sqrt(Math.max(0, 1 / fit.coherence ** 2 - 1) / 2) * (fit.coherence / fit.score);
+  return halfShiftOf({ residueHz: wrapped(edgeHz), edgeHz, centreHz: context.source.centreFrequencyHz, scatterHz });
 }
 
 /** Reference symbols against the mean of both neighbours: 3/2 of the error's variance. */
