@@ -3,8 +3,8 @@
  * practice") until `calibrate` fits it; none is taken from a sample capture.
  */
 export const PRIORS = {
-  /** Two snapshots differ: one of them is at odds far more often than both. */
-  bothAtOdds: 0.03,
+  /** Two snapshots differ: one of them is at odds more often than both. */
+  bothAtOdds: 0.12,
   /** Two snapshots agree, or only one speaks: how often the radio does something else all the same. */
   agreedButOtherwise: 0.05,
   oneSidedAtOdds: 0.08,

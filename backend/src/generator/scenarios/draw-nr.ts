@@ -37,7 +37,7 @@ function drawChannel(random: Random, wish: Wish): Channel | null {
   const blockCase = random.pick(band.cases);
   const widest = (wish.maxRateHz ?? 62e6) / 1.05;
   const options = Object.entries(channelBlocks(band.lowHz, spacingHz)).map(([mhz, blocks]) => ({ mhz: Number(mhz), blocks }))
-    .filter((o) => 12 * o.blocks * spacingHz >= 240 * blockSpacingHz(blockCase) + 4 * spacingHz && 12 * o.blocks * spacingHz < widest);
+    .filter((o) => o.mhz * 1e6 <= band.highHz - band.lowHz && 12 * o.blocks * spacingHz >= 240 * blockSpacingHz(blockCase) + 4 * spacingHz && 12 * o.blocks * spacingHz < widest);
   if (options.length === 0) return null;
   return { band, spacingHz, blockCase, ...random.pick(options) };
 }

@@ -103,7 +103,7 @@ function withFault(random: Random, { drawn, fault, relation, id }: { drawn: Draw
   const other = relation === 'one-sided' ? null : side(alsoWrong ?? (isAgreed ? wrong : drawn.declared));
   const sides = letter === 'a' ? { sideA: side(wrong), sideB: other } : { sideA: other, sideB: side(wrong) };
   const isAlone = relation === 'snapshots-only';
-  const found: HintSide[] = alsoWrong ? ['both'] : isAgreed ? [base.transmitter ?? 'unknown'] : sidesOf(fault, letter, isAlone);
+  const found: HintSide[] = alsoWrong ? ['both'] : isAgreed ? agreedSides(fault, base.transmitter) : sidesOf(fault, letter, isAlone);
   const expect: Expectation = {
     hint: { code: fault.code, side: found },
     allowed: (fault.allowed ?? []).map((code) => ({ code, side: found })),
@@ -121,6 +121,11 @@ function secondWrong(random: Random, { drawn, fault, wrong }: { drawn: Drawn; fa
     if (other && other[name] !== wrong[name]) return other;
   }
   return null;
+}
+
+/** What the standard does not allow is each side's own; what the air contradicts is the transmitter's. */
+function agreedSides(fault: DeclaredFault, transmitter: Side | null): HintSide[] {
+  return [fault.code === 'not-permitted' ? 'both' : transmitter ?? 'unknown'];
 }
 
 function sidesOf(fault: DeclaredFault, letter: Side, isAlone: boolean): HintSide[] {
