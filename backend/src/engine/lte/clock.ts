@@ -6,7 +6,7 @@ import type { CombChannel } from './reference.js';
  * fast), with its standard deviation: the scatter about the line, and what a channel that
  * changes during the window may add by shifting its centre of gravity.
  */
-export function clockDrift(combs: readonly CombChannel[], at: { size: number; perSlot: number; noise: number }): { ppm: number; deviationPpm: number } | null {
+export function clockDrift(combs: readonly CombChannel[], at: { size: number; perSlot: number; noise: number }): { ppm: number; sigmaPpm: number } | null {
   const { size, perSlot } = at;
   const times: number[] = [], delays: number[] = [];
   for (let c = 0; c + 1 < combs.length; c++) {
@@ -18,7 +18,7 @@ export function clockDrift(combs: readonly CombChannel[], at: { size: number; pe
   const fit = line(times, delays);
   if (!fit) return null;
   const wander = centroidWander(combs, { ...at, slope: fit.slope }) / Math.max(1, times[times.length - 1] - times[0]);
-  return { ppm: -1e6 * fit.slope, deviationPpm: 1e6 * Math.hypot(fit.deviation, wander) };
+  return { ppm: -1e6 * fit.slope, sigmaPpm: 1e6 * Math.hypot(fit.deviation, wander) };
 }
 
 /** Spread of the delays (samples, from how neighbours agree) times how much the channel has changed from the first quarter to the last. */

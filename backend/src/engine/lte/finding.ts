@@ -83,9 +83,9 @@ function qualityValues(cell: CellMeasurement, known: Known, absent: Absent): Rec
   out.snrDb = on > error.noise ? known(10 * Math.log10((on - error.noise) / error.noise), 'power of the carrier while on against the reference symbols\' error')
     : absent('no power above the noise');
   const drift = clockDrift(cell.combs, { size: rows.size, perSlot, noise: error.noise });
-  out.sampleClockOffsetPpm = drift && drift.deviationPpm <= CLOCK_DEVIATION_PPM
-    ? { ...known(drift.ppm, 'drift of the reference symbols\' timing'), deviationPpm: drift.deviationPpm }
-    : absent(`the drift of the timing is known to ${(drift?.deviationPpm ?? Number.POSITIVE_INFINITY).toFixed(1)} ppm only (duration, bandwidth, noise, changing channel)`);
+  out.sampleClockOffsetPpm = drift && drift.sigmaPpm <= CLOCK_DEVIATION_PPM
+    ? { ...known(drift.ppm, 'drift of the reference symbols\' timing'), sigmaPpm: drift.sigmaPpm }
+    : absent(`the drift of the timing is known to ${(drift?.sigmaPpm ?? Number.POSITIVE_INFINITY).toFixed(1)} ppm only (duration, bandwidth, noise, changing channel)`);
   out.duplexMode = known(sync.duplex, 'distance of the two synchronisation signals');
   return out;
 }

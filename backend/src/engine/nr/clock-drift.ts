@@ -31,13 +31,13 @@ export function clockDrift(cell: Cell): ClockDrift | null {
 }
 
 /**
- * A channel that changes moves its own centre of gravity, by up to its spread, and slowly, so that
+ * A channel that changes moves its own centre of gravity, by up to twice its spread in a fade, and slowly, so that
  * more blocks do not help: as a drift, useful parts a second, the largest over the blocks.
  */
 function wanderOf(first: KnownBlock, compared: readonly { block: KnownBlock; changed: number }[]): number {
   const spread = spreadOf(first);
   const last = compared[compared.length - 1].block.usefulS - first.usefulS;
-  return Math.max(...compared.map(({ changed }) => spread * Math.sqrt(2 * changed))) / last;
+  return Math.max(...compared.map(({ changed }) => 2 * spread * Math.sqrt(2 * changed))) / last;
 }
 
 /**
@@ -68,21 +68,33 @@ function delayBetween(first: KnownBlock, block: KnownBlock): { delay: number; ch
 function gainPower({ fit }: Pick<KnownBlock, 'fit'>): number {
   let sum = 0;
   for (let i = 0; i < fit.gains.length; i++) sum += fit.gains[i] ** 2;
-  const noise = (fit.noisePower * (96 / 3 + 17 / 2 + 127 / 4)) / BLOCK_SUBCARRIERS;
-  return Math.max(sum / BLOCK_SUBCARRIERS - noise, 0.05 * fit.signalPower);
+  return Math.max(sum / BLOCK_SUBCARRIERS - noiseOfGains(fit), 0.05 * fit.signalPower);
 }
 
-/** Root mean square spread of the channel's delays, useful parts, from how fast its gain changes over four subcarriers. */
+function noiseOfGains(fit: KnownBlock['fit']): number {
+  return (fit.noisePower * (96 / 3 + 17 / 2 + 127 / 4)) / BLOCK_SUBCARRIERS;
+}
+
+/**
+ * Root mean square spread of the channel's delays, useful parts, from how fast its gain changes over two
+ * resource blocks: over less, the change that a spread of 0.1 us makes would drown in the noise.
+ */
 function spreadOf({ fit }: Pick<KnownBlock, 'fit'>): number {
-  const apart = 4;
+  const apart = 24;
+  const pairs = BLOCK_SUBCARRIERS - apart;
   let re = 0;
   let im = 0;
-  for (let i = 0; i < 2 * (BLOCK_SUBCARRIERS - apart); i += 2) {
+  let lower = 0;
+  let upper = 0;
+  for (let i = 0; i < 2 * pairs; i += 2) {
     const j = i + 2 * apart;
     re += fit.gains[j] * fit.gains[i] + fit.gains[j + 1] * fit.gains[i + 1];
     im += fit.gains[j + 1] * fit.gains[i] - fit.gains[j] * fit.gains[i + 1];
+    lower += fit.gains[i] ** 2 + fit.gains[i + 1] ** 2;
+    upper += fit.gains[j] ** 2 + fit.gains[j + 1] ** 2;
   }
-  const likeness = Math.hypot(re, im) / ((BLOCK_SUBCARRIERS - apart) * gainPower({ fit }));
+  const noise = pairs * noiseOfGains(fit);
+  const likeness = Math.hypot(re, im) / Math.sqrt(Math.max(lower - noise, 0.05 * lower) * Math.max(upper - noise, 0.05 * upper));
   return Math.sqrt(2 * Math.max(0, 1 - likeness)) / (2 * Math.PI * apart);
 }
 

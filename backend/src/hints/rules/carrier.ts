@@ -14,9 +14,9 @@ import { besideBlockRaster, carrierRow, shiftFromDeclared, type Shift } from './
 export const carrier: Rule = (evidence) => {
   if (evidence.air['direction']?.value === 'uplink' && evidence.air['halfSubcarrierShift']?.value === null) return [];
   const shift = shiftFromDeclared(evidence);
-  if (shift === null) return clockAlone(evidence);
+  if (shift === null) return clockAlone(evidence, false);
   const limitHz = shift.fc * clockPpm(evidence) * 1e-6 + 3 * SCATTER.carrierFrequencyHz;
-  if (Math.abs(shift.hz) <= limitHz) return clockAlone(evidence);
+  if (Math.abs(shift.hz) <= limitHz) return clockAlone(evidence, true);
   const clock = clockShare(evidence, shift);
   if (clock > 0.5) return [clockFinding(evidence, { ppm: (shift.hz / shift.fc) * 1e6, hz: shift.hz, probability: clock })];
   // A block beside its place has a rule of its own.
@@ -30,7 +30,7 @@ function clockShare(evidence: Evidence, shift: Shift): number {
   const toRaster = shift.blockHz === null ? besideCarrierRaster(shift) : besideBlockRaster(shift.blockHz);
   const onRaster = Math.exp(-0.5 * (toRaster / (2 * SCATTER.carrierFrequencyHz + 1e-7 * shift.fc)) ** 2);
   const sampled = airNumber(evidence, 'sampleClockOffsetPpm');
-  const sigma = sampled ? Math.max(0.5, Number(sampled.air['deviationPpm'] ?? 1)) : Infinity;
+  const sigma = sampled ? Math.max(0.5, Number(sampled.air['sigmaPpm'] ?? 1)) : Infinity;
   // A common reference moves carrier and samples alike; a wrong channel leaves the samples in step.
   const follows = sampled && Math.abs(ppm) > 3 * sigma ? Math.exp(0.5 * ((sampled.value / sigma) ** 2 - ((sampled.value - ppm) / sigma) ** 2)) : 1;
   const clock = free * Math.min(1e6, follows);
@@ -53,11 +53,14 @@ function wrongCarrier(evidence: Evidence, share: number): Finding[] {
   return [{ code: 'carrier-frequency', side: verdict.side, probability: verdict.probability * share, basis: basisOf(row, evidence, { pattern: verdict.pattern, measurement }), consequences: [] }];
 }
 
-/** No carrier to hold against: the sample clock alone, where it was measured. */
-function clockAlone(evidence: Evidence): Finding[] {
+/** Scatter of the sample clock where the carrier is in step, ppm: the two seldom have references of their own. */
+const SAMPLES_ALONE_PPM = 2;
+
+/** The sample clock alone, where it was measured: the carrier is within limits, or nothing is declared of it. */
+function clockAlone(evidence: Evidence, carrierInStep: boolean): Finding[] {
   const sampled = airNumber(evidence, 'sampleClockOffsetPpm');
   if (!sampled) return [];
-  const sigma = Math.max(0.5, Number(sampled.air['deviationPpm'] ?? 1));
+  const sigma = Math.max(carrierInStep ? SAMPLES_ALONE_PPM : 0.5, Number(sampled.air['sigmaPpm'] ?? 1));
   const excess = Math.abs(sampled.value) - clockPpm(evidence) - 3 * sigma;
   if (excess <= 0) return [];
   return [clockFinding(evidence, { ppm: sampled.value, hz: null, probability: Math.min(0.9, 0.6 + 0.1 * (excess / sigma)) })];
