@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { activity } from '#engine/level/activity';
 import { clippedFraction } from '#engine/level/clipping';
+import { plausible } from '#engine/evidence/plausible';
 import { dcOffsetDb, iqImbalanceDb, levelFacts } from '#engine/level/front-end';
 import { chooseWindows } from '#engine/level/windows';
 import { mulberry, noisy, smallOfdm, white } from '../support/small-ofdm.js';
@@ -23,6 +24,26 @@ describe('level', () => {
     expect(Math.abs(clippedFraction(clipped) - (1 - 0.910314 ** 2))).toBeLessThan(0.003);
     expect(clippedFraction(iq)).toBe(0);
     expect(clippedFraction(iq.map((v) => Math.round(v * 40) / 128))).toBe(0);
+  });
+
+  it('counts both rails of signed integers, of which the lower lies one step further out', () => {
+    const iq = white(100_000, 2);
+    const codes = iq.map((v) => Math.max(-128, Math.min(127, Math.round(v * 128))) / 128);
+    const railed = iq.filter((_, i) => i % 2 === 0).filter((_, n) => [iq[2 * n], iq[2 * n + 1]].some((v) => Math.round(v * 128) >= 127 || Math.round(v * 128) <= -128)).length;
+    expect(clippedFraction(codes)).toBeCloseTo(railed / 100_000, 6);
+    // Of a standard complex Gaussian, P(|I| ≥ 1 or |Q| ≥ 1) = 1 − erf(1)², and erf(1) = 0.842701 (Abramowitz and Stegun, Table 7.1); the rounding moves the rail half a step.
+    expect(Math.abs(railed / 100_000 - (1 - 0.842701 ** 2))).toBeLessThan(0.01);
+  });
+
+  it('tells a received signal from its bytes read in another order', () => {
+    const iq = white(40_000, 3).map((v) => 0.1 * v);
+    const swapped = new Float32Array(Buffer.from(iq.slice().buffer).swap32().buffer);
+    const asSource = (values: Float32Array) => ({ sampleRateHz: 1e6, centreFrequencyHz: null, samples: values.length / 2, read: (start: number, count: number) => values.slice(2 * start, 2 * (start + count)) });
+    expect(plausible(asSource(iq))).toBe(true);
+    // IEEE 754: the exponent then stands in mantissa bits, so that magnitudes run over all decades.
+    expect(plausible(asSource(swapped.map((v) => (Number.isFinite(v) ? v : 0))))).toBe(false);
+    // A pause of four fifths of the time, 60 dB down, is a signal all the same.
+    expect(plausible(asSource(iq.map((v, i) => (i % 10_000 < 2000 ? v : 1e-3 * v))))).toBe(true);
   });
 
   it('measures a DC term and an image that were put in, and claims neither of a clean signal', () => {

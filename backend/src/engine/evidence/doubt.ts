@@ -85,18 +85,45 @@ function rate(hz: number): string {
 const GLANCE_S = 0.006;
 const GLANCE_CONFIDENCE = 0.9;
 
+/** Other readings that are looked at in full. */
+const LOOKED_AT = 3;
+
 function otherFormat(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
-  const glances = likelyFormats(recording).map((datatype) => ({ datatype, ...glance(recording.under({ datatype })) })).filter((g) => g.confidence > GLANCE_CONFIDENCE)
-    .sort((x, y) => y.score - x.score);
-  for (const { datatype } of glances.slice(0, 2)) {
-    const source = recording.under({ datatype });
-    const found = lookAround(source, { ...recording.facts, datatype, samples: source.samples, durationS: source.samples / source.sampleRateHz }, options);
+  const formats = candidates(recording, plain);
+  for (const datatype of formats) {
+    const found = readAs(recording, datatype, options);
     if (found.choice.technology === null) continue;
-    const stated = recording.facts.datatype ?? 'another format';
-    const label: ChangedLabel = { property: 'format', stated, found: datatype, proof: `read as ${stated} nothing repeats as a symbol does; read as ${datatype} it decodes`, confidence: found.choice.finding ? 0.97 : 0.93 };
-    return { look: found, labels: [label], tried: [...plain.tried, { what: `samples read as ${datatype}`, result: `${found.choice.technology} decodes` }, ...found.tried] };
+    const decodes = { confidence: found.choice.finding ? 0.97 : 0.93, proof: 'nothing repeats as a symbol does', result: `${found.choice.technology} decodes`, reads: 'it decodes' };
+    return relabelledFormat(recording, { plain, found, datatype, ...decodes });
   }
-  return null;
+  // Nothing decodes, but the stated format makes no signal of the bytes and one other does.
+  if (formats.length !== 1 || plausible(recording.source)) return null;
+  const looks = { confidence: 0.8, proof: 'the values are no received signal\'s', result: 'values like a received signal\'s', reads: 'they are' };
+  return relabelledFormat(recording, { plain, found: readAs(recording, formats[0], options), datatype: formats[0], ...looks });
+}
+
+/** Readings worth a full look, likeliest first: in which symbols repeat, then, where the stated one makes no sense, any that does. */
+function candidates(recording: Recording, plain: Look): string[] {
+  // What was decoded is as long as its symbols say: only a reading of as many samples can be the right one.
+  const decoded = plain.choice.finding !== null;
+  const formats = likelyFormats(recording).filter((datatype) => !decoded || widthOf(datatype) === widthOf(recording.facts.datatype ?? ''));
+  const glances = formats.map((datatype) => ({ datatype, ...glance(recording.under({ datatype })) })).sort((x, y) => y.score - x.score);
+  const repeating = glances.filter((g) => g.confidence > GLANCE_CONFIDENCE).slice(0, 2);
+  const others = plausible(recording.source) ? [] : glances.filter((g) => !repeating.includes(g));
+  return [...repeating, ...others].slice(0, LOOKED_AT).map(({ datatype }) => datatype);
+}
+
+function readAs(recording: Recording, datatype: string, options: LookOptions): Look {
+  const source = recording.under({ datatype });
+  return lookAround(source, { ...recording.facts, datatype, samples: source.samples, durationS: source.samples / source.sampleRateHz }, options);
+}
+
+interface FormatTrial { plain: Look; found: Look; datatype: string; confidence: number; proof: string; result: string; reads: string }
+
+function relabelledFormat(recording: Recording, { plain, found, datatype, confidence, proof, result, reads }: FormatTrial): Doubted {
+  const stated = recording.facts.datatype ?? 'another format';
+  const label: ChangedLabel = { property: 'format', stated, found: datatype, proof: `read as ${stated} ${proof}; read as ${datatype} ${reads}`, confidence };
+  return { look: found, labels: [label], tried: [...plain.tried, { what: `samples read as ${datatype}`, result }, ...found.tried] };
 }
 
 /**

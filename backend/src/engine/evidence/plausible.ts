@@ -15,7 +15,17 @@ export function plausible(source: SampleSource): boolean {
   const q = shape(iq, 1);
   if (!(i.power > 0) || !(q.power > 0)) return false;
   const alike = Math.abs(Math.log(i.power / q.power)) < Math.log(2);
-  return alike && [i, q].every(({ kurtosis }) => kurtosis > 1.9 && kurtosis < 300);
+  return alike && oneScale(iq) && [i, q].every(({ kurtosis }) => kurtosis > 1.9 && kurtosis < 300);
+}
+
+/** Widest range of magnitudes, from the lowest tenth to the highest: 160 dB is beyond any receiver, pauses included. */
+const WIDEST = 1e8;
+
+/** Floats in the wrong byte order have exponents at random, from the least to the greatest. */
+function oneScale(iq: Float32Array): boolean {
+  const magnitudes = iq.map(Math.abs).filter((x) => x > 0).sort();
+  const at = (share: number): number => magnitudes[Math.floor(share * (magnitudes.length - 1))] ?? 0;
+  return at(0.9) < WIDEST * at(0.1);
 }
 
 /** Power and the fourth moment over its square, of I (0) or Q (1), without their mean. */
