@@ -4,7 +4,7 @@ import { goldBits } from '#engine/coding/gold';
 import { broadcastLayout } from '#engine/nr/block-layout';
 import { BLOCK_PATTERNS } from '#engine/nr/block-pattern';
 import { prefixTs, usefulStartTs, usefulTs } from '#engine/nr/numerology';
-import { nearestOnGlobalRaster, syncRasterResidueHz } from '#engine/nr/raster';
+import { globalRasterWithin, nearestOnGlobalRaster, syncRasterWithin } from '#engine/nr/raster';
 import { broadcastReference, primarySequence, secondarySequence } from '#engine/nr/sequences';
 
 const chips = (sequence: ArrayLike<number>) => Array.from(sequence, (value) => (value > 0 ? '0' : '1')).join('');
@@ -101,11 +101,17 @@ describe('times', () => {
 describe('rasters', () => {
   it('know the synchronisation raster (TS 38.104 Table 5.4.3.1-1)', () => {
     // GSCN 5279, 7884, 22257 and 6252.
-    for (const hz of [2112.05e6, 3554.4e6, 24267.36e6, 2500.95e6]) expect(syncRasterResidueHz(hz)).toBeCloseTo(0, 3);
-    expect(syncRasterResidueHz(3554.4e6 + 4321)).toBeCloseTo(4321, 3);
+    for (const hz of [2112.05e6, 3554.4e6, 24267.36e6, 2500.95e6]) expect(syncRasterWithin(hz - 40e3, hz + 40e3)).toEqual([hz]);
+    // GSCN 5279 to 5281 are three of one cluster, 100 kHz apart; the next cluster is 1.2 MHz on.
+    expect(syncRasterWithin(2111.9e6, 2112.4e6)).toEqual([2112.05e6, 2112.15e6, 2112.25e6]);
+    expect(syncRasterWithin(3554.41e6, 3555.83e6)).toEqual([]);
   });
   it('know the global raster (Table 5.4.2.1-1)', () => {
     expect(nearestOnGlobalRaster(3489.42e6 + 3000)).toBe(3489.42e6);
     expect(nearestOnGlobalRaster(2112.05e6 - 1000)).toBe(2112.05e6);
+    // Steps of 5, 15 and 60 kHz.
+    expect(globalRasterWithin(2112.05e6, 2112.06e6)).toEqual([2112.05e6, 2112.055e6, 2112.06e6]);
+    expect(globalRasterWithin(3489.42e6 - 1, 3489.45e6 + 1)).toEqual([3489.42e6, 3489.435e6, 3489.45e6]);
+    expect(globalRasterWithin(26500.02e6 - 1, 26500.08e6 + 1)).toEqual([26500.02e6, 26500.08e6]);
   });
 });

@@ -49,7 +49,7 @@ export function analyse(recording: Recording, options: AnalyseOptions): Analysis
   const doubted = readThroughDoubt(recording, options);
   const gaps = gapsIn(recording, doubted.look);
   const look = betweenGaps(doubted.look, gaps, options);
-  const level = levelFacts(doubted.look.window.iq);
+  const level = levelFacts(doubted.look.raw.iq);
   const measured = airFrom(look, level);
   const demodulated = demodulations(look, measured, options);
   const air = complete(measured['evmPercent']?.value == null ? { ...measured, ...errorOfData(demodulated) } : measured);

@@ -52,15 +52,33 @@ function lookAround(source: SampleSource, facts: CaptureFacts, options: LookOpti
 /** Spacings of the standards, Hz, that a wrong rate label would hide. */
 const STANDARD_HZ = [15e3, 30e3, 60e3, 120e3, 312.5e3, 78.125e3];
 const RATE_RATIOS = [3 / 4, 4 / 3, 2 / 3, 3 / 2, 4 / 5, 5 / 4];
+/** Under these a spacing of the cellular tables stays one. */
+const CELLULAR_HZ = [15e3, 30e3, 60e3, 120e3];
+const DOUBLINGS = [2, 1 / 2];
 
 function otherRate(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
   const suspicion = suspectRate(plain.blind);
   if (suspicion) return relabelled(recording, { plain, ...suspicion, sure: true }, options);
   if (plain.choice.technology !== 'ofdm' || !plain.blind) return null;
   const spacing = plain.blind.subcarrierSpacingHz;
-  const ratio = RATE_RATIOS.find((r) => STANDARD_HZ.some((hz) => Math.abs((spacing * r) / hz - 1) < 0.004));
-  if (ratio === undefined) return null;
-  return relabelled(recording, { plain, ratio, sure: false, proof: `at the stated rate the symbols would be those of ${(spacing / 1e3).toFixed(3)} kHz, which no standard has` }, options);
+  const ratio = RATE_RATIOS.find((r) => isOneOf(STANDARD_HZ, spacing * r));
+  if (ratio !== undefined) return relabelled(recording, { plain, ratio, sure: false, proof: `at the stated rate the symbols would be those of ${(spacing / 1e3).toFixed(3)} kHz, which no standard has` }, options);
+  return isOneOf(CELLULAR_HZ, spacing) ? doubled(recording, plain, options) : null;
+}
+
+/** A cellular spacing without any synchronisation may be another one under a rate label off by 2: shown only by what then decodes. */
+function doubled(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
+  const spacing = plain.blind!.subcarrierSpacingHz;
+  for (const ratio of DOUBLINGS.filter((r) => isOneOf(CELLULAR_HZ, spacing * r))) {
+    const proof = `at the stated rate the symbols look like those of ${(spacing / 1e3).toFixed(3)} kHz, but nothing of a cell is found; at ${ratio} times the rate a cell's own signals decode`;
+    const found = relabelled(recording, { plain, ratio, sure: false, proof }, options);
+    if (found) return found;
+  }
+  return null;
+}
+
+function isOneOf(list: readonly number[], hz: number): boolean {
+  return list.some((each) => Math.abs(hz / each - 1) < 0.004);
 }
 
 interface RateTrial { readonly plain: Look; readonly ratio: number; readonly proof: string; readonly sure: boolean }

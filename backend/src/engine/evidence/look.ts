@@ -5,15 +5,20 @@ import { surveyLte } from '../lte/detect.js';
 import { surveyWifi } from '../wifi/detect.js';
 import { analyseOfdm, type BlindEstimate, type BlindResult } from '../sync/estimate.js';
 import { chooseWindows, readWindow } from '../level/windows.js';
+import { withoutDc } from '../level/without-dc.js';
 import { spectrumOf, type SpectrumResult } from '../spectrum/spectrum.js';
+import { welch } from '../spectrum/welch.js';
 import type { Window } from '../types.js';
 import { choose, type Choice } from './choose.js';
 
 /** One reading of the samples: what stands out, what repeats, whose signals they are. */
 export interface Look {
+  /** Without a strong DC of the receiver, as is `window`. */
   readonly source: SampleSource;
   readonly facts: CaptureFacts;
   readonly window: Window;
+  /** The window as it was recorded. */
+  readonly raw: Window;
   readonly spectrum: SpectrumResult;
   readonly blind: BlindEstimate | null;
   readonly repetition: BlindResult;
@@ -29,16 +34,24 @@ export interface LookOptions {
 /** The plain reading, from the cheapest to the dearest. */
 export function look(source: SampleSource, facts: CaptureFacts, options: LookOptions): Look {
   const starts = chooseWindows(source);
-  const window = readWindow(source, starts[0]!);
-  const spectrum = spectrumOf(window.iq, source.sampleRateHz);
+  const raw = readWindow(source, starts[0]!);
+  const flat = withoutDc(source, raw.iq);
+  const window = flat === source ? raw : readWindow(flat, starts[0]!);
+  const spectrum = seen(raw, window);
   const { occupied } = spectrum;
   options.onProgress?.('numerology', 0.1);
-  const repetition = analyseOfdm(source, { occupied });
+  const repetition = analyseOfdm(flat, { occupied });
   const blind = repetition.found;
-  const context: DetectionContext = { source, facts, occupied, blind, ...options };
+  const context: DetectionContext = { source: flat, facts, occupied, blind, ...options };
   options.onProgress?.('synchronisation', 0.3);
   const { findings, tried } = survey(context);
-  return { source, facts, window, spectrum, blind, repetition, findings, choice: choose(findings, blind), tried };
+  return { source: flat, facts, window, raw, spectrum, blind, repetition, findings, choice: choose(findings, blind), tried };
+}
+
+/** What stands out is told without the DC; the density that is drawn shows it. */
+function seen(raw: Window, window: Window): SpectrumResult {
+  const spectrum = spectrumOf(window.iq, window.sampleRateHz);
+  return raw === window ? spectrum : { ...spectrum, density: welch(raw.iq, raw.sampleRateHz) };
 }
 
 interface Survey { findings: TechnologyFinding[]; tried: Tried[] }

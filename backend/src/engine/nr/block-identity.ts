@@ -70,42 +70,72 @@ export interface ReferenceMatch {
 /** Delays tried: from −4 % to +8 % of the useful part, in steps of 1/256 (the block's resolution is 1/240). */
 const DELAYS = Array.from({ length: 31 }, (_, i) => (i - 10) / 256);
 
+/** A delay between two of the steps costs up to 3.4 dB: the neighbourhood of the best is looked at again, in halves. */
+const HALF_STEP = 1 / 512;
+
 /** How well the broadcast channel's reference signal of one index fits: the three symbols without their phases. */
 export function matchReference(grid: readonly Float64Array[], cellId: number, index: number): ReferenceMatch {
-  const pilots = broadcastLayout(cellId).reference;
+  const products = referenceProducts(grid, cellId, index);
+  const best = DELAYS.reduce((top, delay) => better(top, { index, delay, statistic: statisticAt(products, delay) }), { index, delay: 0, statistic: 0 });
+  return [best.delay - HALF_STEP, best.delay + HALF_STEP].reduce((top, delay) => better(top, { index, delay, statistic: statisticAt(products, delay) }), best);
+}
+
+function better(a: ReferenceMatch, b: ReferenceMatch): ReferenceMatch {
+  return b.statistic > a.statistic ? b : a;
+}
+
+/** Received times sent elements by symbol (interleaved), their subcarriers, and the power of each symbol. */
+interface Products { readonly values: Float64Array; readonly places: readonly { readonly symbol: number; readonly subcarrier: number }[]; readonly power: Float64Array }
+
+function referenceProducts(grid: readonly Float64Array[], cellId: number, index: number): Products {
+  const places = broadcastLayout(cellId).reference;
   const sent = broadcastReference(cellId, index);
-  const sums = DELAYS.map(() => new Float64Array(8));
+  const values = new Float64Array(2 * places.length);
   const power = new Float64Array(4);
-  pilots.forEach(({ symbol, subcarrier }, i) => {
+  places.forEach(({ symbol, subcarrier }, i) => {
     const a = grid[symbol][2 * subcarrier];
     const b = grid[symbol][2 * subcarrier + 1];
-    const re = a * sent[2 * i] + b * sent[2 * i + 1];
-    const im = b * sent[2 * i] - a * sent[2 * i + 1];
-    power[symbol] += re * re + im * im;
-    DELAYS.forEach((delay, d) => {
-      const { cos, sin } = phasor(delay, subcarrier);
-      sums[d][2 * symbol] += re * cos - im * sin;
-      sums[d][2 * symbol + 1] += re * sin + im * cos;
-    });
+    values[2 * i] = a * sent[2 * i] + b * sent[2 * i + 1];
+    values[2 * i + 1] = b * sent[2 * i] - a * sent[2 * i + 1];
+    power[symbol] += values[2 * i] ** 2 + values[2 * i + 1] ** 2;
   });
-  let best: ReferenceMatch = { index, delay: 0, statistic: 0 };
-  DELAYS.forEach((delay, d) => {
-    let statistic = 0;
-    for (let symbol = 1; symbol < 4; symbol++) {
-      if (power[symbol] > 0) statistic += (sums[d][2 * symbol] ** 2 + sums[d][2 * symbol + 1] ** 2) / power[symbol];
-    }
-    if (statistic > best.statistic) best = { index, delay, statistic };
-  });
+  return { values, places, power };
+}
+
+function statisticAt({ values, places, power }: Products, delay: number): number {
+  const turns = phasorsOf(delay);
+  const sums = new Float64Array(8);
+  for (let i = 0; i < places.length; i++) {
+    const { symbol, subcarrier } = places[i];
+    const cos = turns[2 * subcarrier];
+    const sin = turns[2 * subcarrier + 1];
+    sums[2 * symbol] += values[2 * i] * cos - values[2 * i + 1] * sin;
+    sums[2 * symbol + 1] += values[2 * i] * sin + values[2 * i + 1] * cos;
+  }
+  let statistic = 0;
+  for (let symbol = 1; symbol < 4; symbol++) {
+    if (power[symbol] > 0) statistic += (sums[2 * symbol] ** 2 + sums[2 * symbol + 1] ** 2) / power[symbol];
+  }
+  return statistic;
+}
+
+/** The index of the eight that fits best. */
+export function bestReference(grid: readonly Float64Array[], cellId: number): ReferenceMatch {
+  let best: ReferenceMatch = { index: 0, delay: 0, statistic: 0 };
+  for (let index = 0; index < 8; index++) {
+    const match = matchReference(grid, cellId, index);
+    if (match.statistic > best.statistic) best = match;
+  }
   return best;
 }
 
 const phasors = new Map<number, Float64Array>();
 
-function phasor(delay: number, subcarrier: number): { cos: number; sin: number } {
+function phasorsOf(delay: number): Float64Array {
   let row = phasors.get(delay);
   if (!row) {
     row = Float64Array.from({ length: 2 * BLOCK_SUBCARRIERS }, (_, i) => (i % 2 === 0 ? Math.cos : Math.sin)(2 * Math.PI * delay * (i >> 1)));
     phasors.set(delay, row);
   }
-  return { cos: row[2 * subcarrier], sin: row[2 * subcarrier + 1] };
+  return row;
 }

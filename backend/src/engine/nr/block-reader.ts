@@ -2,7 +2,8 @@ import type { SampleSource } from '../types.js';
 import { conjugate } from '../vector/mix.js';
 import { blockGrid, BLOCK_PREFIX, blockSymbolS } from './block-grid.js';
 import { BLOCK_SYMBOLS } from './block-layout.js';
-import type { BothSenses } from './block-search.js';
+import type { BothSenses, FoundBlock } from './block-search.js';
+import { otherBlocks } from './other-blocks.js';
 import { readWork, type WorkPlan, type WorkSignal } from './work-signal.js';
 
 /** Samples around a block that the resampler needs to be whole. */
@@ -19,6 +20,11 @@ export class BlockReader {
 
   get durationS(): number {
     return this.source.samples / this.source.sampleRateHz;
+  }
+
+  /** The cell's other blocks in the window at hand, each found by itself. */
+  others(first: FoundBlock): FoundBlock[] {
+    return otherBlocks(this.senses, first);
   }
 
   /** The block's grid (phases as of a mixer that runs from the capture's sample 0), or null outside the capture. */

@@ -1,6 +1,6 @@
 import { conjugate } from '../vector/mix.js';
 import { blockGrid } from './block-grid.js';
-import { matchCells, matchReference, type ReferenceMatch } from './block-identity.js';
+import { bestReference, matchCells, type ReferenceMatch } from './block-identity.js';
 import { fixPrimary } from './primary-fix.js';
 import { PrimaryScan, type PrimaryHit } from './primary-scan.js';
 import type { WorkSignal } from './work-signal.js';
@@ -109,13 +109,4 @@ function strongerSense(senses: BothSenses, block: FoundBlock, hit: PrimaryHit): 
 
 function powerOf(block: FoundBlock): number {
   return block.grid.reduce((total, points) => total + points.reduce((sum, part) => sum + part * part, 0), 0);
-}
-
-function bestReference(grid: readonly Float64Array[], cellId: number): ReferenceMatch {
-  let best: ReferenceMatch = { index: 0, delay: 0, statistic: 0 };
-  for (let index = 0; index < 8; index++) {
-    const match = matchReference(grid, cellId, index);
-    if (match.statistic > best.statistic) best = match;
-  }
-  return best;
 }

@@ -43,14 +43,19 @@ export function decodeBroadcast(word: Float64Array, key: BroadcastKey): Uint8Arr
   return null;
 }
 
-/** The 432 points that carry a payload, interleaved, in the order of their mapping. */
-export function encodeBroadcast(payload: ArrayLike<number>, key: BroadcastKey): Float64Array {
-  const scrambled = scramblePayload(interleavePayload(payload), key.cellId, key.maxBlocks);
+/** The 512 bits of a payload's codeword, in the order of the polar code. */
+export function codewordOf(payload: ArrayLike<number>, cellId: number, maxBlocks: MaxBlocks): Uint8Array {
+  const scrambled = scramblePayload(interleavePayload(payload), cellId, maxBlocks);
   const parity = crcRemainder(scrambled, CRC24C);
   const bits = new Uint8Array(MESSAGE_BITS);
   bits.set(scrambled);
   for (let i = 0; i < CRC24C.width; i++) bits[PAYLOAD_BITS + i] = (parity >>> (CRC24C.width - 1 - i)) & 1;
-  const word = polarEncode(CODE, INTERLEAVER.map((from) => bits[from]));
-  const scrambling = goldBits(key.cellId, CODED_BITS, key.v * CODED_BITS);
+  return polarEncode(CODE, INTERLEAVER.map((from) => bits[from]));
+}
+
+/** The 432 points that carry a payload, interleaved, in the order of their mapping. */
+export function encodeBroadcast(payload: ArrayLike<number>, { cellId, v, maxBlocks }: BroadcastKey): Float64Array {
+  const word = codewordOf(payload, cellId, maxBlocks);
+  const scrambling = goldBits(cellId, CODED_BITS, v * CODED_BITS);
   return qpskPoints(Uint8Array.from(scrambling, (c, i) => c ^ word[SENT_ORDER[i % CODE.length]]));
 }

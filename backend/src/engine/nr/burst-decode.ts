@@ -6,9 +6,12 @@ import { patternsOf } from './block-pattern.js';
 import type { BlockReader } from './block-reader.js';
 import type { FoundBlock } from './block-search.js';
 import { collectBlocks, type BlockHypothesis } from './burst.js';
+import { decodeJointly } from './joint-decode.js';
 
 /** A payload that passed its CRC and does not contradict the reference signal. */
 export interface DecodedBroadcast {
+  /** The block whose payload it is. */
+  readonly block: FoundBlock;
   readonly payload: Uint8Array;
   readonly information: MasterInformation;
   readonly hypothesis: BlockHypothesis;
@@ -22,21 +25,52 @@ export function hypothesesOf(spacingHz: number, index: number): BlockHypothesis[
   return counts.flatMap((maxBlocks) => patternsOf(spacingHz).map((pattern) => ({ pattern, maxBlocks, blockIndex: maxBlocks === 4 ? index % 4 : index })));
 }
 
+/** Blocks looked at when the first does not decode, the clearest first. */
+const FURTHER = 8;
+
 /**
  * The broadcast channel of the block found: alone, then added up with the other blocks that carry
  * the same payload (those of its half frame; where 64 are possible, those whose index has the
- * same three high bits). Null where no hypothesis passes the CRC.
+ * same three high bits). Where that fails, each other block of the cell by itself, which needs no
+ * timing between them, then all together over their half frames. Null where nothing passes the CRC.
  */
 export function decodeBurst(reader: BlockReader, first: FoundBlock): DecodedBroadcast | null {
-  const { index } = first.reference;
-  const ratios = ratiosOf(first, first.cellId);
-  const hypotheses = hypothesesOf(first.spacingHz, index);
-  for (const hypothesis of hypotheses) {
-    const decoded = decode(codewordRatios(ratios, keyOf(first, hypothesis, hypothesis.blockIndex)), { first, hypothesis, combined: 1 });
+  const found = decodeHalfFrame(reader, first);
+  if (found) return found;
+  const clear = (block: FoundBlock) => block.primaryStatistic + block.secondaryStatistic + block.reference.statistic;
+  const others = reader.others(first).sort((a, b) => clear(b) - clear(a)).slice(0, FURTHER);
+  for (const block of others) {
+    const decoded = decodeAlone(block);
     if (decoded) return decoded;
   }
-  for (const hypothesis of hypotheses) {
+  return decodeTogether([first, ...others].sort((a, b) => clear(b) - clear(a)));
+}
+
+function decodeHalfFrame(reader: BlockReader, first: FoundBlock): DecodedBroadcast | null {
+  const alone = decodeAlone(first);
+  if (alone) return alone;
+  for (const hypothesis of hypothesesOf(first.spacingHz, first.reference.index)) {
     const decoded = decodeSum(reader, first, hypothesis);
+    if (decoded) return decoded;
+  }
+  return null;
+}
+
+function decodeAlone(block: FoundBlock): DecodedBroadcast | null {
+  const ratios = ratiosOf(block, block.cellId);
+  for (const hypothesis of hypothesesOf(block.spacingHz, block.reference.index)) {
+    const decoded = decode(codewordRatios(ratios, keyOf(block, hypothesis, hypothesis.blockIndex)), { first: block, hypothesis, combined: 1 });
+    if (decoded) return decoded;
+  }
+  return null;
+}
+
+function decodeTogether(blocks: readonly FoundBlock[]): DecodedBroadcast | null {
+  const [first] = blocks;
+  const soft = blocks.map((block) => ({ block, ratios: ratiosOf(block, block.cellId) }));
+  for (const hypothesis of hypothesesOf(first.spacingHz, first.reference.index)) {
+    const joint = decodeJointly(soft, hypothesis);
+    const decoded = joint && accepted(joint, { first, hypothesis, combined: joint.combined });
     if (decoded) return decoded;
   }
   return null;
@@ -64,12 +98,15 @@ function decodeSum(reader: BlockReader, first: FoundBlock, hypothesis: BlockHypo
   return decode(sum, { first, hypothesis, combined: blocks.length });
 }
 
-function decode(word: Float64Array, { first, hypothesis, combined }: { first: FoundBlock; hypothesis: BlockHypothesis; combined: number }): DecodedBroadcast | null {
-  const payload = decodeBroadcast(word, keyOf(first, hypothesis, hypothesis.blockIndex));
-  const information = payload && readPayload(payload, hypothesis.maxBlocks);
-  if (!payload || !information) return null;
+function decode(word: Float64Array, of: { first: FoundBlock; hypothesis: BlockHypothesis; combined: number }): DecodedBroadcast | null {
+  const payload = decodeBroadcast(word, keyOf(of.first, of.hypothesis, of.hypothesis.blockIndex));
+  const information = payload && readPayload(payload, of.hypothesis.maxBlocks);
+  return payload && information && accepted({ payload, information }, of);
+}
+
+function accepted({ payload, information }: Pick<DecodedBroadcast, 'payload' | 'information'>, { first, hypothesis, combined }: { first: FoundBlock; hypothesis: BlockHypothesis; combined: number }): DecodedBroadcast | null {
   // Four blocks: the reference signal carries the half frame too.
   if (hypothesis.maxBlocks === 4 && information.halfFrame !== Math.floor(first.reference.index / 4)) return null;
   const blockIndex = hypothesis.blockIndex + 8 * information.blockIndexHigh;
-  return { payload, information, hypothesis: { ...hypothesis, blockIndex }, combined };
+  return { block: first, payload, information, hypothesis: { ...hypothesis, blockIndex }, combined };
 }

@@ -56,7 +56,7 @@ export function placeCarrier(work: WorkSignal, grid: Grid): CarrierPlacement | n
     const span = occupiedBlocks(powers, first, floor);
     if (!span || span.score <= best.score) continue;
     best.score = span.score;
-    best.placement = { ...placement(firstHz + (first + BLOCK * span.from) * grid.spacingHz, span.to - span.from, grid.spacingHz), edgeShare: span.edgeShare };
+    best.placement = { ...placement(firstHz + span.from * grid.spacingHz, span.blocks, grid.spacingHz), edgeShare: span.edgeShare };
   }
   return best.placement;
 }
@@ -108,34 +108,44 @@ function symbolStarts(work: WorkSignal, { spacingHz, extended, subframeS }: Grid
   }
 }
 
-/** The level of what is empty: the lowest eighth of the band in runs of a block, or 0 where all of it is filled. */
+/** Runs in which the level of what is empty is sought: a third of a block is often all that a recording holds beside the carrier. */
+const RUN = 4;
+const EMPTIEST = 1 / 24;
+
+/** The level of what is empty: the lowest runs of the band, whatever fills the rest. */
 function noiseFloor(powers: Float64Array): number {
-  const runs = blockPowers(powers, 0).sort((a, b) => a - b);
-  return runs[Math.floor(runs.length / 16)] ?? 0;
+  const runs = medians(powers, { first: 0, run: RUN }).map(({ power }) => power).sort((a, b) => a - b);
+  return runs[Math.floor(runs.length * EMPTIEST)] ?? 0;
 }
 
-/** Median of each block's subcarriers: a spur or the tuner's DC does not fill a block. */
-function blockPowers(powers: Float64Array, first: number): number[] {
-  const blocks: number[] = [];
-  for (let at = first; at + BLOCK <= powers.length; at += BLOCK) {
-    const sorted = powers.slice(at, at + BLOCK).sort();
-    blocks.push((sorted[BLOCK / 2 - 1] + sorted[BLOCK / 2]) / 2);
+interface Piece { readonly at: number; readonly power: number }
+
+/** Median of each run's subcarriers: a spur or the tuner's DC does not fill a block. Parts of a run at the ends count from three subcarriers on. */
+function medians(powers: Float64Array, { first, run }: { first: number; run: number }): Piece[] {
+  const pieces: Piece[] = [];
+  for (let at = first - run; at < powers.length; at += run) {
+    const sorted = powers.slice(Math.max(0, at), at + run).sort();
+    if (sorted.length < 3) continue;
+    pieces.push({ at, power: (sorted[(sorted.length - 1) >> 1] + sorted[sorted.length >> 1]) / 2 });
   }
-  return blocks;
+  return pieces;
 }
 
 /** The run of blocks from the first to the last that stand out; the score is how sharply the two edges stand. */
-function occupiedBlocks(powers: Float64Array, first: number, floor: number): { from: number; to: number; score: number; edgeShare: number } | null {
-  const blocks = blockPowers(powers, first);
+function occupiedBlocks(powers: Float64Array, first: number, floor: number): { from: number; blocks: number; score: number; edgeShare: number } | null {
+  const pieces = medians(powers, { first, run: BLOCK });
+  const blocks = pieces.map(({ power }) => power);
   const typical = [...blocks].sort((a, b) => a - b)[Math.floor(blocks.length * 0.9)];
   if (!typical || typical < 1.15 * floor) return null;
   const threshold = floor + Math.max(0.12 * floor, 0.04 * (typical - floor));
   const from = blocks.findIndex((power) => power > threshold);
   const to = blocks.findLastIndex((power) => power > threshold) + 1;
-  // An edge without an empty block beside it may lie outside the recording.
+  // An edge with nothing empty beside it may lie outside the recording.
   if (from < 1 || to > blocks.length - 1 || to <= from) return null;
   const edgeShare = (Math.min(blocks[from], blocks[to - 1]) - floor) / (typical - floor);
-  return { from, to, edgeShare, score: sharpness(powers, first + BLOCK * from, floor) + sharpness([...powers].reverse(), powers.length - first - BLOCK * to, floor) };
+  const low = pieces[from].at;
+  const high = pieces[to - 1].at + BLOCK;
+  return { from: low, blocks: to - from, edgeShare, score: sharpness(powers, low, floor) + sharpness([...powers].reverse(), powers.length - high, floor) };
 }
 
 /** Power of the first three subcarriers inside against that of the three outside. */

@@ -27,16 +27,16 @@ export function clockDrift(cell: Cell): ClockDrift | null {
   const meanTime = points.reduce((sum, p, i) => sum + weights[i] * p.timeS, 0) / whole;
   const spread = points.reduce((sum, p, i) => sum + weights[i] * (p.timeS - meanTime) ** 2, 0);
   const slope = points.reduce((sum, p, i) => sum + weights[i] * (p.timeS - meanTime) * p.delayS, 0) / spread;
-  return { ppm: -slope * 1e6, sigmaPpm: 1e6 * Math.hypot(1 / Math.sqrt(spread), wanderOf(first, compared) / cell.spacingHz) };
+  return { ppm: -slope * 1e6, sigmaPpm: 1e6 * Math.hypot(1 / Math.sqrt(spread), wanderOf(cell.blocks, compared) / cell.spacingHz) };
 }
 
 /**
  * A channel that changes moves its own centre of gravity, by up to twice its spread in a fade, and slowly, so that
  * more blocks do not help: as a drift, useful parts a second, the largest over the blocks.
  */
-function wanderOf(first: KnownBlock, compared: readonly { block: KnownBlock; changed: number }[]): number {
-  const spread = spreadOf(first);
-  const last = compared[compared.length - 1].block.usefulS - first.usefulS;
+function wanderOf(blocks: readonly KnownBlock[], compared: readonly { block: KnownBlock; changed: number }[]): number {
+  const spread = spreadOf(blocks);
+  const last = compared[compared.length - 1].block.usefulS - blocks[0].usefulS;
   return Math.max(...compared.map(({ changed }) => 2 * spread * Math.sqrt(2 * changed))) / last;
 }
 
@@ -75,12 +75,23 @@ function noiseOfGains(fit: KnownBlock['fit']): number {
   return (fit.noisePower * (96 / 3 + 17 / 2 + 127 / 4)) / BLOCK_SUBCARRIERS;
 }
 
-/**
- * Root mean square spread of the channel's delays, useful parts, from how fast its gain changes over two
- * resource blocks: over less, the change that a spread of 0.1 us makes would drown in the noise.
- */
-function spreadOf({ fit }: Pick<KnownBlock, 'fit'>): number {
-  const apart = 24;
+/** Distances over which the gain's change is looked at, widest first: the wider, the less the noise counts; a gain that has turned away says too little. */
+const APART = [24, 8, 4];
+const STILL_ALIKE = 0.6;
+
+/** Root mean square spread of the channel's delays, useful parts, from how fast its gain changes over the subcarriers. */
+function spreadOf(blocks: readonly KnownBlock[]): number {
+  const found = APART.map((apart) => ({ apart, likeness: likenessAt(blocks, apart) }));
+  const { apart, likeness } = found.find((each) => each.likeness > STILL_ALIKE) ?? found[found.length - 1];
+  return Math.sqrt(2 * Math.max(0, 1 - likeness)) / (2 * Math.PI * apart);
+}
+
+/** Mean over the blocks, each for itself, since their delays differ; against the power where the two ends stand, since a fade moves it. */
+function likenessAt(blocks: readonly KnownBlock[], apart: number): number {
+  return blocks.reduce((sum, { fit }) => sum + likenessOf(fit, apart), 0) / blocks.length;
+}
+
+function likenessOf(fit: KnownBlock['fit'], apart: number): number {
   const pairs = BLOCK_SUBCARRIERS - apart;
   let re = 0;
   let im = 0;
@@ -94,8 +105,7 @@ function spreadOf({ fit }: Pick<KnownBlock, 'fit'>): number {
     upper += fit.gains[j] ** 2 + fit.gains[j + 1] ** 2;
   }
   const noise = pairs * noiseOfGains(fit);
-  const likeness = Math.hypot(re, im) / Math.sqrt(Math.max(lower - noise, 0.05 * lower) * Math.max(upper - noise, 0.05 * upper));
-  return Math.sqrt(2 * Math.max(0, 1 - likeness)) / (2 * Math.PI * apart);
+  return Math.hypot(re, im) / Math.sqrt(Math.max(lower - noise, 0.05 * lower) * Math.max(upper - noise, 0.05 * upper));
 }
 
 function powerAt(products: Float64Array, delay: number): number {

@@ -15,10 +15,11 @@ import { choosePattern } from './pattern-choice.js';
 export function detectNr(context: DetectionContext): TechnologyFinding | null {
   const finding = findBlock(context);
   if (!finding) return null;
-  const { block, reader } = finding;
+  const { reader } = finding;
   context.onProgress?.('NR broadcast channel', 0.5);
-  const decoded = decodeBurst(reader, block);
-  if (!decoded) return reportBlock(context, block);
+  const decoded = decodeBurst(reader, finding.block);
+  if (!decoded) return reportBlock(context, finding.block);
+  const { block } = decoded;
   const { centreFrequencyHz: centreHz, sampleRateHz } = context.source;
   const choice = choosePattern(reader, block, { decoded, blind: context.blind, centreHz, sampleRateHz });
   context.onProgress?.('NR cell', 0.7);

@@ -3,6 +3,7 @@ import type { DetectionContext, SymbolGrid, TechnologyFinding, Tried } from '../
 import type { FoundBlock } from './block-search.js';
 import type { DecodedBroadcast } from './burst-decode.js';
 import type { Cell } from './cell.js';
+import type { ClockDrift } from './clock-drift.js';
 import type { CellMeasurements } from './measure-cell.js';
 import { numerologyOf, prefixSamples } from './numerology.js';
 import { nominalFrequency } from './phase-laws.js';
@@ -20,7 +21,7 @@ export function reportBlock(context: DetectionContext, block: FoundBlock): Techn
     confidence: BLOCK_ALONE,
     spectrumInverted: block.inverted,
     air: {
-      ...blockValues(context, { block, referenceHz: block.referenceHz, confidence: BLOCK_ALONE }),
+      ...blockValues(context, { block, referenceHz: block.referenceHz, confidence: BLOCK_ALONE, clock: null }),
       mib: unknown(undecoded),
       systemFrameNumber: unknown(undecoded),
       kSsb: unknown(undecoded),
@@ -60,7 +61,7 @@ export function reportCell(
     confidence: DECODED,
     spectrumInverted: block.inverted,
     air: {
-      ...blockValues(context, { block, referenceHz: measured.reference.estimate.hz, confidence: DECODED }),
+      ...blockValues(context, { block, referenceHz: measured.reference.estimate.hz, confidence: DECODED, clock: measured.clock }),
       mib: sure(mib),
       systemFrameNumber: sure(systemFrameNumber),
       kSsb: sure(information.kSsb),
@@ -87,11 +88,11 @@ function announcedByBlock(block: FoundBlock): Record<string, number> {
   return { physicalCellId: block.cellId, ssbSubcarrierSpacing: block.spacingHz };
 }
 
-function blockValues(context: DetectionContext, { block, referenceHz, confidence }: { block: FoundBlock; referenceHz: number; confidence: number }): Record<string, AirValue> {
+function blockValues(context: DetectionContext, { block, referenceHz, confidence, clock }: { block: FoundBlock; referenceHz: number; confidence: number; clock: ClockDrift | null }): Record<string, AirValue> {
   const { centreFrequencyHz } = context.source;
   const statistics = `primary ${block.primaryStatistic.toFixed(0)} of 127, secondary ${block.secondaryStatistic.toFixed(0)} of 127, reference signal ${block.reference.statistic.toFixed(0)} of 144`;
   const method = `synchronisation signals and the broadcast channel's reference signal (${statistics})`;
-  const nominalHz = centreFrequencyHz === null ? null : nominalFrequency(centreFrequencyHz + referenceHz);
+  const nominalHz = centreFrequencyHz === null ? null : nominalFrequency(centreFrequencyHz + referenceHz, clock);
   return {
     technology: { value: 'nr', confidence, method },
     physicalCellId: { value: block.cellId, confidence, method },

@@ -49,8 +49,9 @@ export function measureCell(context: DetectionContext, { cell, work, decoded, in
   const edges = placement !== null && hasFullEdges(placement);
   const placed = placement !== null && ((placement.inTable && edges) || isCentred(placement, centreHz));
   const carriers = placed ? [placement.referenceHz] : possibleCarriers(context, { placement, commonGrid: grid, inverted });
+  const clock = clockDrift(cell);
   const phases = judgePhases(cell, {
-    present: lawsWithCompensation({ referenceHz, centreHz, spacingHz: cell.spacingHz }),
+    present: lawsWithCompensation({ referenceHz, centreHz, spacingHz: cell.spacingHz, clock }),
     absent: lawsWithoutCompensation(referenceHz, carriers),
     reference: coarse.estimate,
   });
@@ -63,7 +64,7 @@ export function measureCell(context: DetectionContext, { cell, work, decoded, in
     placement: placement && { ...placement, referenceHz: placement.referenceHz + moved, lowHz: placement.lowHz + moved, highHz: placement.highHz + moved },
     placed,
     fullEdges: edges,
-    clock: clockDrift(cell),
+    clock,
     phases,
   };
 }

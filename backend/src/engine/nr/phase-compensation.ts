@@ -59,7 +59,7 @@ export function judgePhases(cell: Cell, question: PhaseQuestion): PhaseCompensat
   const degrees = cell.blocks.length * (BLOCK_SYMBOLS - 1);
   const fits = better.misfit <= WORST_FIT * degrees + 20;
   const single = question.present.length === 1 && question.absent.length === 1;
-  const odds = Math.abs(present.logLikelihood - absent.logLikelihood);
+  const odds = Math.abs(present.logLikelihood - absent.logLikelihood) / Math.max(1, better.misfit / degrees);
   const separation = single ? separationOf(cell, { from: present.hz, to: absent.hz, sigmaHz }) : Math.sqrt(2 * odds);
   const verdict = { confidence: 1 / (1 + Math.exp(-Math.min(odds, 9))), separation };
   const reference = (law: Explanation) => (law.share > SURE_LAW ? { hz: question.reference.hz + law.offset.hz, sigmaHz: law.offset.sigmaHz } : null);

@@ -5,14 +5,30 @@ const SYNC_SPANS = [
   { low: 24.25e9, high: 100e9, base: 24_250_080_000, step: 17.28e6, offsets: [0] },
 ];
 
-/** Distance from a frequency to the nearest place of the synchronisation raster, Hz (signed: frequency less raster). */
-export function syncRasterResidueHz(frequencyHz: number): number {
-  const span = SYNC_SPANS.find(({ low, high }) => frequencyHz >= low && frequencyHz < high) ?? SYNC_SPANS[2];
-  const residues = span.offsets.map((offset) => {
-    const at = frequencyHz - span.base - offset;
-    return at - Math.round(at / span.step) * span.step;
-  });
-  return residues.reduce((best, each) => (Math.abs(each) < Math.abs(best) ? each : best));
+/** Places of the synchronisation raster between two frequencies, Hz. */
+export function syncRasterWithin(lowHz: number, highHz: number): number[] {
+  const { base, step, offsets } = syncSpan((lowHz + highHz) / 2);
+  const first = Math.floor((lowHz - base) / step) - 1;
+  const count = Math.ceil((highHz - lowHz) / step) + 3;
+  return Array.from({ length: count }, (_, i) => offsets.map((offset) => base + (first + i) * step + offset)).flat()
+    .filter((hz) => hz >= lowHz && hz <= highHz);
+}
+
+/** Mean distance of its places. */
+export function syncRasterStepHz(frequencyHz: number): number {
+  const { step, offsets } = syncSpan(frequencyHz);
+  return step / offsets.length;
+}
+
+function syncSpan(frequencyHz: number): (typeof SYNC_SPANS)[number] {
+  return SYNC_SPANS.find(({ low, high }) => frequencyHz >= low && frequencyHz < high) ?? SYNC_SPANS[2];
+}
+
+/** Places of the global frequency raster between two frequencies, Hz. */
+export function globalRasterWithin(lowHz: number, highHz: number): number[] {
+  const step = globalRasterStepHz((lowHz + highHz) / 2);
+  const first = nearestOnGlobalRaster(lowHz);
+  return Array.from({ length: Math.floor((highHz - first) / step) + 1 }, (_, i) => first + i * step).filter((hz) => hz >= lowHz);
 }
 
 /** Step of the global frequency raster, TS 38.104 Table 5.4.2.1-1. */
