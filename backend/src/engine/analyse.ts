@@ -53,7 +53,8 @@ export function analyse(recording: Recording, options: AnalyseOptions): Analysis
   const measured = airFrom(look, level);
   const demodulated = demodulations(look, measured, options);
   const air = complete(measured['evmPercent']?.value == null ? { ...measured, ...errorOfData(demodulated) } : measured);
-  const patterns = declaredPatterns(look, options.declared);
+  // Across a loss of samples the frame's start is not where it was: levels say nothing of a pattern.
+  const patterns = gaps && look === doubted.look ? [] : declaredPatterns(look, options.declared);
   const plots = plotsOf(look, demodulated);
   return {
     facts: factsOf(recording, doubted, level),
