@@ -54,6 +54,11 @@ function isCurrent(kind, hash) {
   return existsSync(join(DIST, kinds[kind].output)) && existsSync(stamp) && readFileSync(stamp, 'utf8') === hash;
 }
 
+/** True where `kind` was built from the sources as they stand. */
+export function isBuilt(kind) {
+  return isCurrent(kind, contentHash(kinds[kind].sources));
+}
+
 /** `wanted`: 'backend', 'frontend'. */
 export async function ensureBuilt(wanted, { track } = {}) {
   await withLock('build', async () => {
