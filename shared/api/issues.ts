@@ -75,7 +75,7 @@ export const REQUIREMENTS = ['build', 'clean-retest', 'failed-retest', 'reason',
 export const possibleMove = z.object({ to: stage, label: z.string(), requires: z.array(z.enum(REQUIREMENTS)), blockedBy: z.string().nullable() });
 export type PossibleMove = z.infer<typeof possibleMove>;
 export const newMove = z.object({
-  to: stage, version: z.number().int(), reason: z.string().trim().max(2000).optional(), buildId: id.optional(), retestId: id.optional(),
+  to: stage, version: z.number().int(), reason: z.string().trim().max(2000).optional(), buildId: id.optional(),
   endsOn: day.optional(), nextMove: z.object({ partyId: id, ask: z.string().trim().min(1).max(500), due: day.nullable() }).optional(),
 });
 export type NewMove = z.infer<typeof newMove>;
@@ -110,7 +110,7 @@ export const issue = z.object({
   waiting: z.array(z.object({ cause: z.enum(WAITING_CAUSES), days: z.number() })),
   following: z.boolean(), followers: z.number().int(),
   moves: z.array(possibleMove),
-  actions: z.object({ edit: z.boolean(), setNextMove: z.boolean(), addFiles: z.boolean(), decode: z.boolean(), write: z.boolean(), retest: z.boolean(), share: z.boolean() }),
+  actions: z.object({ edit: z.boolean(), changeSeverity: z.boolean(), setNextMove: z.boolean(), addFiles: z.boolean(), decode: z.boolean(), write: z.boolean(), retest: z.boolean(), share: z.boolean() }),
 });
 export type Issue = z.infer<typeof issue>;
 export const shareIssue = z.object({ partyId: id });

@@ -18,7 +18,7 @@ export const link = z.object({
   baseline: z.object({ buildA: z.string(), buildB: z.string(), at: instant }).nullable(),
 });
 export type Link = z.infer<typeof link>;
-export const links = z.object({ items: z.array(link), actions: z.object({ add: z.boolean() }) });
+export const links = z.object({ items: z.array(link), actions: z.object({ add: z.boolean(), addUnit: z.boolean() }) });
 
 /** Interworking table: links by capability. */
 export const INTERWORKING = ['works', 'works with waiver', 'fails', 'not tried'] as const;

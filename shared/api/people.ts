@@ -2,7 +2,8 @@ import { z } from 'zod';
 import { day, id, instant, pageQuery, partyRef, personRef, programmeRef, role } from './common.js';
 import { PARTS } from '../vocabulary.js';
 
-export const membership = z.object({ id, programme: programmeRef, party: partyRef, role });
+/** `actions` is what the person may begin in the programme, so that no page offers what would be refused. */
+export const membership = z.object({ id, programme: programmeRef, party: partyRef, role, actions: z.object({ fileIssue: z.boolean() }) });
 export type Membership = z.infer<typeof membership>;
 
 export const me = z.object({

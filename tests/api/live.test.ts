@@ -1,6 +1,7 @@
 import { createServer, request as httpRequest, type ClientRequest, type Server } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { setTimeout as delay } from 'node:timers/promises';
+import { Client } from 'pg';
 import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
 import { until } from '../support/until.js';
 import { createWorld, issueOn, type PersonKey, type World } from '../support/world.js';
@@ -76,6 +77,20 @@ const heard = (stream: Subscriber, count: number) => until(`${count} events are 
 const quiet = () => delay(3 * HEARTBEAT_MS);
 const write = async (person: PersonKey, reach = 'everyone') => expect((await world.as(person).post(`${path}/entries`).send({ body: 'A word.', reach })).status).toBe(200);
 
+/** Events on the issue in an open transaction of their own. */
+async function plantEvents(count: number): Promise<{ ids: string[]; commit(): Promise<void> }> {
+  const client = new Client({ connectionString: world.database.adminUrl });
+  await client.connect();
+  await client.query('begin');
+  const ids: string[] = [];
+  for (let k = 0; k < count; k++) {
+    const { rows } = await client.query<{ id: string }>(`
+      insert into live_events (programme_id, issue_id, topic) select programme_id, id, 'issue' from issues where number = $1 returning id`, [path.slice(-4)]);
+    ids.push(rows[0].id);
+  }
+  return { ids, async commit() { await client.query('commit'); await client.end(); } };
+}
+
 describe('a stream of events', () => {
   it('tells those on the issue that it changed, and nobody else', async () => {
     const [rao, ines, petra, osk] = [await subscribe('rao'), await subscribe('ines'), await subscribe('petra'), await subscribe('osk')];
@@ -111,6 +126,31 @@ describe('a stream of events', () => {
     expect(second.events).toHaveLength(2);
     expect(new Set(second.events.map(({ id }) => id)).size).toBe(2);
     expect(second.events.map(({ id }) => id)).not.toContain(lastId);
+  });
+
+  it('resumes also with what was written before the last event that was heard, and committed after it', async () => {
+    const slow = await plantEvents(1);
+    const stream = await subscribe('ines');
+    const quick = await plantEvents(1);
+    await quick.commit();
+    await heard(stream, 1);
+    expect(stream.lastId).toBe(quick.ids[0]);
+    stream.close();
+    await slow.commit();
+    const resumed = await subscribe('ines', quick.ids[0]);
+    await heard(resumed, 1);
+    expect(resumed.events.map(({ id }) => id)).toContain(slow.ids[0]);
+  });
+
+  it('repeats nothing of what had committed before, and tells one transaction\'s events in their order', async () => {
+    const before = await plantEvents(1);
+    await before.commit();
+    const three = await plantEvents(3);
+    await three.commit();
+    const resumed = await subscribe('ines', three.ids[0]);
+    await heard(resumed, 2);
+    await quiet();
+    expect(resumed.events.map(({ id }) => id)).toEqual(three.ids.slice(1));
   });
 
   it('asks for everything to be read again where what was missed is gone', async () => {

@@ -1,4 +1,5 @@
 import type { Me } from '#shared/api/people';
+import { may } from '../access/policy.js';
 import { idParam, signedIn, standings } from '../access/rules.js';
 import { endpoint, type Mounted } from '../http/endpoint.js';
 import { invalid, notFound } from '../http/problems.js';
@@ -16,6 +17,7 @@ async function readMe(services: Services, caller: Caller): Promise<Me> {
       id: standing.membershipId, role: standing.role,
       programme: { id: standing.programmeId, code: standing.programmeCode, name: standing.programmeName },
       party: { id: standing.partyId, name: standing.partyName, shortName: standing.partyShortName },
+      actions: { fileIssue: may(standing.role, 'file-issue') },
     })),
   };
 }

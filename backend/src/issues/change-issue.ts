@@ -5,7 +5,7 @@ import { conflict, forbidden } from '../http/problems.js';
 import type { Caller, Services } from '../http/services.js';
 import { recordEvent } from './record.js';
 import { refuseUnknownRungs } from './rungs.js';
-import { standingOnLink } from './standing.js';
+import { mayChange } from './standing.js';
 
 interface Before { title: string; description: string; severity: string; downlink: string | null; uplink: string | null; signalPath: string; baseline: string; buildAId: string | null; buildBId: string | null; transmitter: string | null; interface: LinkInterface }
 
@@ -23,7 +23,7 @@ const WORDS: Record<Field, string> = {
 /** Edits what an issue says, where nobody else has meanwhile; the history names what changed, and from what for short fields. */
 export async function changeIssue(services: Services, caller: Caller, { issue, change }: { issue: GrantedIssue; change: ChangeIssue }): Promise<void> {
   if (change.version !== issue.version) throw conflict('Somebody changed this issue while you read it. Read it again, then make your change.');
-  if (standingOnLink(issue) === 'other' && issue.standing.role !== 'programme-manager') throw forbidden('Your party is not one of this link\'s sides.');
+  if (!mayChange(issue, 'change-severity')) throw forbidden('Your party is not one of this link\'s sides.');
   const before = await beforeOf(services, issue.issueId);
   const wanted = changed(before, fields(change));
   if (wanted.length === 0) return;

@@ -6,9 +6,10 @@ import { filesOn, veiledOn } from '../files/file-queries.js';
 import { notFound } from '../http/problems.js';
 import type { Services } from '../http/services.js';
 import { isOnASide } from '../moves/move-issue.js';
+import { freshOutcome } from '../moves/retest.js';
 import { movesFrom } from '../moves/stage-table.js';
 import { currentMove, followingOf, issueRow, partiesOn, retestsOf, waitedByCause, waiverOf, type IssueRow } from './issue-queries.js';
-import { standingOnLink } from './standing.js';
+import { mayChange, standingOnLink } from './standing.js';
 
 const NO_PATH = { path: null, attenuationDb: null, levelDbm: null, clockSource: null, lateCounters: null };
 
@@ -22,7 +23,6 @@ export async function readIssue(services: Services, issue: GrantedIssue): Promis
   const decodes = await decodesOf(services, row.id);
   const latest = decodes.find((decode) => decode.state === 'done' && !decode.inputWithdrawn) ?? null;
   const result = latest ? await resultFor(services, latest.id) : null;
-  const retests = await retestsOf(services, row.id);
   return {
     ...heading(row),
     parties: await partiesOn(services, row.id),
@@ -30,13 +30,13 @@ export async function readIssue(services: Services, issue: GrantedIssue): Promis
     hints: latest ? await hintsOf(services, { id: latest.id, result }, may(role, 'judge-hint')) : [],
     decodes, latestDecodeId: latest?.id ?? null,
     files: [...await filesOn(services, row.id, mayChangeFiles), ...await veiledOn(services, row.id)],
-    retests,
+    retests: await retestsOf(services, row.id),
     waiver: await waiver(services, issue),
     waiting: await waitedByCause(services, row.id),
     ...await followingOf(services, row.id),
-    moves: possibleMoves(issue, row, retests),
+    moves: possibleMoves(issue, row, row.stage === 'under-retest' ? await freshOutcome(services, row.id) : null),
     actions: {
-      edit: may(role, 'edit-issue') && standingOnLink(issue) !== 'other', setNextMove: open && may(role, 'set-next-move'),
+      edit: mayChange(issue, 'edit-issue'), changeSeverity: mayChange(issue, 'change-severity'), setNextMove: open && may(role, 'set-next-move'),
       addFiles: mayChangeFiles, decode: may(role, 'decode'), write: may(role, 'write-entry'),
       retest: row.stage === 'under-retest' && may(role, 'record-retest') && issue.standing.isLab, share: may(role, 'share-issue'),
     },
@@ -66,10 +66,10 @@ async function waiver(services: Services, issue: GrantedIssue): Promise<Issue['w
 }
 
 /** The moves with what still blocks each, so that the page can say it before anyone tries. */
-function possibleMoves(issue: GrantedIssue, row: IssueRow, retests: Issue['retests']): PossibleMove[] {
+function possibleMoves(issue: GrantedIssue, row: IssueRow, outcome: 'clean' | 'failed' | null): PossibleMove[] {
   return movesFrom(row.stage, issue.standing.role, standingOnLink(issue)).map(({ to, label, requires }) => ({
     to, label, requires: [...requires],
-    blockedBy: requires.includes('clean-retest') && retests[0]?.outcome !== 'clean' ? 'needs a clean retest on named builds'
-      : requires.includes('failed-retest') && retests[0]?.outcome !== 'failed' ? 'needs a failed retest' : null,
+    blockedBy: requires.includes('clean-retest') && outcome !== 'clean' ? 'needs a clean retest on named builds'
+      : requires.includes('failed-retest') && outcome !== 'failed' ? 'needs a failed retest' : null,
   }));
 }

@@ -1,4 +1,5 @@
 import type { GrantedIssue } from '../access/rules.js';
+import { may } from '../access/policy.js';
 import type { StandingOnLink } from '../moves/stage-table.js';
 
 /** Whether the caller's party is one of the link's sides, the test lab, or a guest on the issue. */
@@ -6,4 +7,10 @@ export function standingOnLink(issue: GrantedIssue): StandingOnLink {
   const { partyId, isLab } = issue.standing;
   if (isLab) return 'lab';
   return partyId === issue.partyAId || partyId === issue.partyBId ? 'side' : 'other';
+}
+
+/** What an issue says is changed by the link's two sides and the lab; its severity by any manager on it as well. */
+export function mayChange(issue: GrantedIssue, what: 'edit-issue' | 'change-severity'): boolean {
+  const { role } = issue.standing;
+  return may(role, what) && (standingOnLink(issue) !== 'other' || role === 'programme-manager');
 }

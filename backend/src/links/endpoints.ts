@@ -15,7 +15,7 @@ const onLink: Rule<{ linkId: string; standing: Standing }> = async ({ services, 
 export const linkEndpoints: Mounted[] = [
   endpoint('listLinks', signedIn, async ({ services, query }) => {
     const mine = await standings(services);
-    return { items: await linkRows(services, { programme: query.programme }), actions: { add: mine.some(({ role, isLab }) => isLab && may(role, 'add-link')) } };
+    return { items: await linkRows(services, { programme: query.programme }), actions: { add: mine.some(({ role, isLab }) => isLab && may(role, 'add-link')), addUnit: mine.some(({ role }) => may(role, 'add-unit')) } };
   }),
   endpoint('readLink', onLink, async ({ services, granted }) => {
     const [link] = await linkRows(services, { linkId: granted.linkId });

@@ -7,6 +7,7 @@ import type { Caller, Services } from '../http/services.js';
 import { queueMail, recordEvent } from '../issues/record.js';
 import { standingOnLink } from '../issues/standing.js';
 import { endNextMove, setNextMove } from './next-move.js';
+import { freshOutcome } from './retest.js';
 import { movesFrom, type StageMove } from './stage-table.js';
 
 interface Moving { services: Services; caller: Caller; issue: GrantedIssue; asked: NewMove }
@@ -63,11 +64,7 @@ async function offerBuild(services: Services, issue: GrantedIssue, asked: NewMov
 }
 
 async function requireRetest(services: Services, issue: GrantedIssue, outcome: 'clean' | 'failed'): Promise<void> {
-  const latest = await services.database.row<{ outcome: string }>(`
-    select r.outcome from retests r where r.issue_id = $1
-      and r.at >= (select since from stage_intervals where issue_id = $1 and ended_at is null)
-    order by r.at desc limit 1`, [issue.issueId]);
-  if (latest?.outcome !== outcome) {
+  if (await freshOutcome(services, issue.issueId) !== outcome) {
     throw new Refusal(409, 'retest-first', 'Retest first', outcome === 'clean'
       ? 'Settled needs a clean retest on named builds, recorded since the retest began.'
       : 'Going back needs a failed retest, recorded since the retest began.');

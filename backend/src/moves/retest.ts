@@ -24,6 +24,15 @@ export async function recordRetest(services: Services, caller: Caller, { issue, 
   await recordEvent(services, { caller, standing: issue.standing }, { issueId: issue.issueId, programmeId: issue.standing.programmeId, kind: 'retest', text: `recorded a ${retest.outcome} retest${retest.note ? `: ${retest.note}` : ''}` });
 }
 
+/** How the last retest since the stage began went; null where none was recorded since. */
+export async function freshOutcome(services: Services, issueId: string): Promise<'clean' | 'failed' | null> {
+  const latest = await services.database.row<{ outcome: 'clean' | 'failed' }>(`
+    select r.outcome from retests r where r.issue_id = $1
+      and r.at >= (select since from stage_intervals where issue_id = $1 and ended_at is null)
+    order by r.at desc limit 1`, [issueId]);
+  return latest?.outcome ?? null;
+}
+
 /** A retest is of the link's own two units, each on a build of its own. */
 async function refuseForeignBuilds(services: Services, issue: GrantedIssue, retest: NewRetest): Promise<void> {
   const link = await services.database.row<{ a: boolean; b: boolean; on: LinkInterface }>(`

@@ -30,6 +30,12 @@ export function useMe(): Standing {
   return standing;
 }
 
+/** Whether the reader may file an issue in a programme; pages offer it to nobody else. */
+export function useMayFile(programme: string | undefined): boolean {
+  const { me } = useMe();
+  return me.memberships.some((m) => m.programme.code === programme && m.actions.fileIssue);
+}
+
 /** The reader's parties in one programme. */
 export function usePartyIds(programme: string): ReadonlySet<string> {
   const { me } = useMe();

@@ -95,10 +95,17 @@ export function airText(name: string, value: SettingValue): string {
   }
 }
 
+/** Fields of a broadcast message under the names that the standards give them (TS 38.331 and TS 36.331, MIB), and what was derived from them. */
+const PARTS: Record<string, string> = {
+  subCarrierSpacingCommonHz: 'Common spacing', ssbSubcarrierOffset: 'ssb-SubcarrierOffset', dmrsTypeAPosition: 'dmrs-TypeA-Position',
+  pdcchConfigSIB1: 'pdcch-ConfigSIB1', subCarrierSpacingCommon: 'subCarrierSpacingCommon', cellBarred: 'cellBarred', intraFreqReselection: 'intraFreqReselection',
+  systemFrameNumber: 'systemFrameNumber', ssbIndex: 'Block index', dlBandwidth: 'dl-Bandwidth', phichDuration: 'phich-Duration', phichResource: 'phich-Resource',
+};
+
 /** The parts of a value that has several, each under its name. */
 export const partsOf = (value: SettingValue): [string, string][] | null =>
   value !== null && typeof value === 'object' && !Array.isArray(value)
-    ? Object.entries(value).map(([key, v]) => [spaced(key.replace(UNIT, '')), airText(key, v as SettingValue)])
+    ? Object.entries(value).map(([key, v]) => [PARTS[key] ?? spaced(key.replace(UNIT, '')), airText(key, v as SettingValue)])
     : null;
 
 /** Whether two values say the same number or word, within what a measurement can tell. */

@@ -1,6 +1,6 @@
 import { useSuspenseQuery } from '@tanstack/react-query';
 import { Link } from 'react-router-dom';
-import { useMe } from '../app/me.js';
+import { useMayFile, useMe } from '../app/me.js';
 import { Section } from '../components/ui/section.js';
 import { useTitle } from '../components/ui/title.js';
 import { When } from '../components/ui/when.js';
@@ -27,13 +27,14 @@ export function DaySheetPage() {
   const { data } = useSuspenseQuery(readDaySheet());
   const mark = useMarkDaySheetRead();
   const party = me.memberships.find((m) => m.programme.code === programme?.code)?.party.name ?? 'my party';
+  const mayFile = useMayFile(programme?.code);
   useTitle('Day sheet');
   return (
     <main id="main" className="page day-page" tabIndex={-1}>
       <div className="page-head">
         <h1>Day sheet</h1>
         <Sum counts={data.counts} />
-        <Link className="button button-main" to="/issues/new">File an issue</Link>
+        {mayFile && <Link className="button button-main" to="/issues/new">File an issue</Link>}
       </div>
       <div className="day-columns">
         <Section title={`Waiting for ${party}`} aside={data.waitingForParty.length > 0 ? counted(data.waitingForParty.length, 'issue') : undefined}>

@@ -1,7 +1,7 @@
 import { useQuery } from '@tanstack/react-query';
 import { useState, type FormEvent } from 'react';
-import { useNavigate, useSearchParams } from 'react-router-dom';
-import { useMe, usePartyIds } from '../app/me.js';
+import { Link, useNavigate, useSearchParams } from 'react-router-dom';
+import { useMayFile, useMe, usePartyIds } from '../app/me.js';
 import { Cautions } from '../components/ui/cautions.js';
 import { Refused } from '../components/ui/refused.js';
 import { useTitle } from '../components/ui/title.js';
@@ -18,12 +18,33 @@ import { useFileIssue } from '../features/issues/api/file-issue.js';
 import { listLinks } from '../features/links/api/list-links.js';
 import { readProgramme } from '../features/programmes/api/read-programme.js';
 import { addressOf } from '../lib/issue-name.js';
+import { ROLE_LABELS } from '../lib/roles.js';
 import { Refusal } from '../lib/refusal.js';
 import { useUploads } from '../lib/uploads/use-uploads.js';
 import { newKey } from '../lib/uploads/queue.js';
 
-/** Files first: the form fills itself from them, and says what responders will still ask for. */
+/** The page for those who file issues; for everyone else the reason why there is none. */
 export function FileIssuePage() {
+  const { programme } = useMe();
+  const mayFile = useMayFile(programme?.code);
+  useTitle('File an issue');
+  return mayFile ? <Filing /> : <NotForYourRole />;
+}
+
+function NotForYourRole() {
+  const { me, programme } = useMe();
+  const role = me.memberships.find((m) => m.programme.code === programme?.code)?.role;
+  return (
+    <main id="main" className="page page-narrow" tabIndex={-1}>
+      <h1>File an issue</h1>
+      <p className="mt-3">Issues are filed by engineers. {programme && role ? `In ${programme.name} you are ${/^[aeiou]/.test(ROLE_LABELS[role]) ? 'an' : 'a'} ${ROLE_LABELS[role]}.` : 'You are in no programme yet.'} Ask an engineer of your party to file it, or the programme’s administrator to change your role.</p>
+      <p className="mt-4"><Link to="/register">Go to the register</Link></p>
+    </main>
+  );
+}
+
+/** Files first: the form fills itself from them, and says what responders will still ask for. */
+function Filing() {
   const { programme } = useMe();
   const code = programme?.code ?? '';
   const [search] = useSearchParams();
@@ -37,7 +58,6 @@ export function FileIssuePage() {
   const file = useFileIssue();
   const navigate = useNavigate();
   const [fileKey] = useState(newKey);
-  useTitle('File an issue');
 
   const busy = uploads.items.some((i) => i.state === 'sending' || i.state === 'reading');
   const stuck = uploads.items.filter((i) => i.state === 'lacks-pair' || i.state === 'lacks-labels' || i.state === 'failed').length;

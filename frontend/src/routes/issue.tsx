@@ -10,6 +10,7 @@ import { NextMove } from '../features/issues/next-move.js';
 import { Particulars } from '../features/issues/particulars.js';
 import { Parties } from '../features/issues/parties.js';
 import { Retests } from '../features/issues/retests.js';
+import { SeverityForm } from '../features/issues/severity-form.js';
 import { StageMoves } from '../features/issues/stage-moves.js';
 import { readIssue } from '../features/issues/api/read-issue.js';
 import { useLookAtIssue } from '../features/issues/api/look-at-issue.js';
@@ -43,18 +44,20 @@ function OpenIssue(name: { programme: string; number: string }) {
   // The issue may be closed to the reader while the page is open; what was read before must not stay.
   if (statusOf(error) === 404) throw error;
   const { data: programme } = useQuery(readProgramme(issue.programme.code));
-  const [correcting, correct] = useState(false);
+  const [changing, change] = useState(false);
   useTitle(`${issue.programme.code}/${issue.number} ${issue.title}`);
   useNotedLook(issue);
+  const { edit, changeSeverity } = issue.actions;
   const onIssue = new Set(issue.parties.map((p) => p.id));
   const others = programme?.parties.filter((p) => !onIssue.has(p.id)) ?? [];
   return (
     <main id="main" className="page issue-page" tabIndex={-1}>
       <div className="issue-top">
-        <IssueHead issue={issue} edit={issue.actions.edit && !correcting ? () => correct(true) : null} />
+        <IssueHead issue={issue} change={(edit || changeSeverity) && !changing ? { words: edit ? 'Correct the issue' : 'Change the severity', open: () => change(true) } : null} />
         <NextMove issue={issue} parties={issue.parties} />
       </div>
-      {correcting && <CorrectForm issue={issue} close={() => correct(false)} />}
+      {changing && edit && <CorrectForm issue={issue} close={() => change(false)} />}
+      {changing && !edit && changeSeverity && <SeverityForm issue={issue} close={() => change(false)} />}
       <StageMoves issue={issue} parties={issue.parties} formPlaces={{ retests: 'retests' }} />
       <div className="issue-columns">
         <div className="issue-main">

@@ -3,6 +3,7 @@ import { useState } from 'react';
 import { Link as To, useParams } from 'react-router-dom';
 import type { LinkDetail } from '#shared/api/links';
 import { STAGE_LABELS, type Stage } from '#shared/vocabulary';
+import { useMayFile } from '../app/me.js';
 import { SideMark } from '../components/marks/side-mark.js';
 import { Section } from '../components/ui/section.js';
 import { useTitle } from '../components/ui/title.js';
@@ -44,6 +45,7 @@ function Issues({ issues }: { issues: LinkDetail['issues'] }) {
 export function LinkPage() {
   const { linkId = '' } = useParams();
   const { data: link } = useSuspenseQuery(readLink(linkId));
+  const mayFile = useMayFile(link.programme);
   useTitle(link.name);
   return (
     <main id="main" className="page" tabIndex={-1}>
@@ -51,7 +53,7 @@ export function LinkPage() {
         <h1>{link.name}</h1>
         <p className="soft">{link.interface === 'wifi' ? 'Wi‑Fi' : link.interface}{link.centreFrequencyHz !== null && <>, <span className="fig">{frequency(link.centreFrequencyHz)}</span></>}
           {link.baseline ? <> · last pair that worked: <span className="fig">{link.baseline.buildA}</span> with <span className="fig">{link.baseline.buildB}</span>, {dateOf(link.baseline.at)}</> : ' · no pair has worked yet'}</p>
-        <To className="button button-main" to={`/issues/new?link=${link.id}`}>File an issue on it</To>
+        {mayFile && <To className="button button-main" to={`/issues/new?link=${link.id}`}>File an issue on it</To>}
       </div>
       <div className="two-sides"><Side link={link} side="a" /><Side link={link} side="b" /></div>
       <Section title="Interworking" aside="by capability">

@@ -1,6 +1,6 @@
 import { useQuery, useSuspenseQuery } from '@tanstack/react-query';
 import { useState } from 'react';
-import { useMe } from '../app/me.js';
+import { useMe, usePartyIds } from '../app/me.js';
 import { Section } from '../components/ui/section.js';
 import { useTitle } from '../components/ui/title.js';
 import { AddLinkForm } from '../features/links/add-link-form.js';
@@ -19,6 +19,7 @@ export function LinksPage() {
   const { data: units } = useSuspenseQuery(listUnits(code || undefined));
   const { data: people } = useQuery({ ...readProgramme(code), enabled: code !== '' });
   const [adding, add] = useState<'link' | 'unit' | null>(null);
+  const ownPartyIds = usePartyIds(code);
   useTitle('Links');
   return (
     <main id="main" className="page" tabIndex={-1}>
@@ -28,8 +29,8 @@ export function LinksPage() {
         {adding === 'link' && <AddLinkForm programme={code} units={units.items} close={() => add(null)} />}
         {links.items.length === 0 ? <p className="sheet empty">No link yet. A link joins two units; add the units first.</p> : <LinkTable links={links.items} />}
       </Section>
-      <Section title="Units and builds" end={links.actions.add && adding !== 'unit' && <button type="button" className="text-button" onClick={() => add('unit')}>Add a unit</button>}>
-        {adding === 'unit' && <AddUnitForm programme={code} parties={people?.parties ?? []} close={() => add(null)} />}
+      <Section title="Units and builds" end={links.actions.addUnit && adding !== 'unit' && <button type="button" className="text-button" onClick={() => add('unit')}>Add a unit</button>}>
+        {adding === 'unit' && <AddUnitForm programme={code} parties={(people?.parties ?? []).filter((p) => links.actions.add || ownPartyIds.has(p.id))} close={() => add(null)} />}
         {units.items.length > 0 && <UnitList units={units.items} />}
       </Section>
     </main>

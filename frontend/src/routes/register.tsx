@@ -1,6 +1,6 @@
 import { keepPreviousData, useQuery } from '@tanstack/react-query';
 import { Link, useSearchParams } from 'react-router-dom';
-import { useMe } from '../app/me.js';
+import { useMayFile, useMe } from '../app/me.js';
 import { Loading } from '../components/ui/loading.js';
 import { useTitle } from '../components/ui/title.js';
 import { listLinks } from '../features/links/api/list-links.js';
@@ -36,6 +36,7 @@ function useRegisterAddress() {
 export function RegisterPage() {
   const { state, search, visible, change, show, sortBy } = useRegisterAddress();
   const { programme } = useMe();
+  const mayFile = useMayFile(programme?.code);
   const { data, error, isPlaceholderData } = useQuery({ ...listIssues(state), placeholderData: keepPreviousData });
   const { data: links } = useQuery(listLinks(programme?.code));
   const { data: parties } = useQuery({ ...readProgramme(programme?.code ?? ''), enabled: programme !== null });
@@ -51,7 +52,7 @@ export function RegisterPage() {
           <ColumnChoice visible={visible} change={show} />
           <KeepView query={search} />
           <a className="text-button" href={exportAddress(state)} download>Export CSV</a>
-          <Link className="button button-main" to="/issues/new">File an issue</Link>
+          {mayFile && <Link className="button button-main" to="/issues/new">File an issue</Link>}
         </div>
       </div>
       <KeptViews query={search} />

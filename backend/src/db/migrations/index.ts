@@ -11,6 +11,7 @@ import { up as mailReaders } from './0010-mail-readers.js';
 import { up as missedEvents } from './0011-missed-events.js';
 import { up as rolesInPolicies } from './0012-roles-in-policies.js';
 import { up as quotaAndLists } from './0013-quota-and-lists.js';
+import { up as resumeByCommit } from './0014-resume-by-commit.js';
 
 /** Numbered and append-only: a migration that has landed is never edited, a later one corrects it. */
 export const MIGRATIONS: readonly { name: string; up: string }[] = [
@@ -27,4 +28,5 @@ export const MIGRATIONS: readonly { name: string; up: string }[] = [
   { name: '0011-missed-events', up: missedEvents },
   { name: '0012-roles-in-policies', up: rolesInPolicies },
   { name: '0013-quota-and-lists', up: quotaAndLists },
+  { name: '0014-resume-by-commit', up: resumeByCommit },
 ];

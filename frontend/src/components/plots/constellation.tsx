@@ -48,7 +48,7 @@ export function Constellation({ demodulation: d }: { demodulation: Demodulation 
         <text x={MIDDLE + 6} y={12}>Q</text>
         <path d={path} stroke="var(--ink)" strokeOpacity=".6" strokeWidth="1.9" strokeLinecap="round" fill="none" />
       </svg>
-      <p className="plot-note">{d.reason ?? verdict(d)}</p>
+      <p className="plot-note">{d.reason ? `${d.reason.replace(/\.$/, '')}.` : verdict(d)}</p>
     </figure>
   );
 }

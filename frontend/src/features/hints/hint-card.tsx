@@ -25,7 +25,7 @@ export function HintCard({ hint, first }: { hint: IssueHint; first: boolean }) {
       <div className="hint-body">
         <p className="hint-summary">{hint.summary}</p>
         <ul className="evidence">
-          {hint.evidence.map((item) => <li key={item.text}>{item.text}{item.clause && <span className="clause"> ({item.clause})</span>}</li>)}
+          {hint.evidence.filter((item) => !hint.summary.startsWith(item.text)).map((item) => <li key={item.text}>{item.text}{item.clause && <span className="clause"> ({item.clause})</span>}</li>)}
         </ul>
         {hint.consequences && hint.consequences.length > 0 && <p className="hint-more">Follows from it: {hint.consequences.join('; ')}.</p>}
         <p className="hint-more">Would disprove it: {hint.wouldDisprove}</p>

@@ -17,8 +17,8 @@ export function History({ name }: { name: IssueName }) {
   return (
     <Section title="History" aside={`${newest.length} entries`}>
       <ol className="plain-list history">
-        {(all ? newest : newest.slice(0, FIRST)).map((item) => (
-          <li key={item.id}>
+        {newest.map((item, k) => (
+          <li key={item.id} className={!all && k >= FIRST ? 'folded' : ''}>
             <span className="fig soft"><When at={item.at} /></span>
             <span>{item.side ? <SideMark side={item.side}>{item.person ?? item.party}</SideMark> : <b>{item.person ?? 'Crosstie'}</b>} {item.text}{item.person && item.party && <span className="soft">, {item.party}</span>}</span>
           </li>

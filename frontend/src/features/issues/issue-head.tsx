@@ -21,7 +21,7 @@ function End({ issue, side }: { issue: Issue; side: Side }) {
 }
 
 /** What is wrong, since when, and between whom. */
-export function IssueHead({ issue, edit }: { issue: Issue; edit: (() => void) | null }) {
+export function IssueHead({ issue, change }: { issue: Issue; change: { words: string; open: () => void } | null }) {
   const rungs = ([['downlink', issue.lastRung.downlink], ['uplink', issue.lastRung.uplink]] as const).filter(([, rung]) => rung);
   return (
     <div className="issue-head">
@@ -39,7 +39,7 @@ export function IssueHead({ issue, edit }: { issue: Issue; edit: (() => void) | 
       <p className="small issue-under">
         <span>Last rung reached: {rungs.length === 0 ? 'not stated' : rungs.map(([direction, rung], k) => <Fragment key={direction}>{k > 0 && ', '}<b>{rung}</b> {direction}</Fragment>)}</span>
         <FollowButton issue={issue} />
-        {edit && <button type="button" className="text-button" onClick={edit}>Correct the issue</button>}
+        {change && <button type="button" className="text-button" onClick={change.open}>{change.words}</button>}
       </p>
     </div>
   );

@@ -17,16 +17,19 @@ function useBuildOptions(issue: Issue, wanted: boolean): readonly Option[] {
   return (['a', 'b'] as const).flatMap((side) => data.unitBuilds[side].map((b): Option => [b.id, `${issue[side].unit.name} ${b.label} (side ${side.toUpperCase()})`]));
 }
 
-const retestOptions = (issue: Issue, outcome: 'clean' | 'failed'): Option[] =>
-  issue.retests.filter((r) => r.outcome === outcome).map((r): Option => [r.id, `${instant(r.at)}, ${r.buildA} with ${r.buildB}`]);
+/** The retest on which the move rests: the newest, which the server has found to be of this outcome. */
+function RestsOn({ issue }: { issue: Issue }) {
+  const retest = issue.retests[0];
+  if (!retest) return null;
+  return <p className="small">It rests on the {retest.outcome} retest of {instant(retest.at)}: <span className="fig">{retest.buildA}</span> with <span className="fig">{retest.buildB}</span>{retest.decodeNumber !== null && `, decode ${retest.decodeNumber}`}.</p>;
+}
 
 /** What one move of the stage asks for. */
 export function MoveForm({ issue, move, parties, close }: { issue: Issue; move: PossibleMove; parties: readonly PartyRef[]; close: () => void }) {
   const change = useMoveIssue({ programme: issue.programme.code, number: issue.number });
   const needs = (what: PossibleMove['requires'][number]): boolean => move.requires.includes(what);
   const builds = useBuildOptions(issue, needs('build'));
-  const outcome = needs('clean-retest') ? 'clean' : needs('failed-retest') ? 'failed' : null;
-  const [given, setGiven] = useState({ reason: '', buildId: '', retestId: '', endsOn: '', partyId: '', ask: '', due: '' });
+  const [given, setGiven] = useState({ reason: '', buildId: '', endsOn: '', partyId: '', ask: '', due: '' });
   const set = (name: keyof typeof given) => (e: { target: { value: string } }): void => setGiven((g) => ({ ...g, [name]: e.target.value }));
 
   const send = (e: FormEvent): void => {
@@ -34,16 +37,16 @@ export function MoveForm({ issue, move, parties, close }: { issue: Issue; move: 
     change.mutate({
       to: move.to, version: issue.version,
       ...(given.reason ? { reason: given.reason } : {}), ...(given.buildId ? { buildId: given.buildId } : {}),
-      ...(given.retestId ? { retestId: given.retestId } : {}), ...(given.endsOn ? { endsOn: given.endsOn } : {}),
+      ...(given.endsOn ? { endsOn: given.endsOn } : {}),
       ...(given.partyId && given.ask ? { nextMove: { partyId: given.partyId, ask: given.ask, due: given.due || null } } : {}),
     }, { onSuccess: close });
   };
   return (
     <form className="panel" onSubmit={send} aria-label={move.label}>
       <h3>{move.label}: {issue.programme.code}/{issue.number} goes to {STAGE_LABELS[move.to]}</h3>
+      {(needs('clean-retest') || needs('failed-retest')) && <RestsOn issue={issue} />}
       <div className="fields">
         {needs('build') && <Select label="Build that carries the change" required none="choose a build" value={given.buildId} options={builds} onChange={set('buildId')} hint="Not in the list? Add it on the link’s page first." />}
-        {outcome && <Select label={outcome === 'clean' ? 'Clean retest' : 'Failed retest'} required none="choose a retest" value={given.retestId} options={retestOptions(issue, outcome)} onChange={set('retestId')} />}
         {needs('end-date') && <TextField label="Ends on" type="date" required value={given.endsOn} onChange={set('endsOn')} hint="On that day the issue returns to Cause agreed." />}
       </div>
       <TextArea label={needs('reason') ? 'Reason' : 'Reason (may be left out)'} required={needs('reason')} maxLength={2000} value={given.reason} onChange={set('reason')} />

@@ -44,13 +44,13 @@ function AirWords({ row, measured }: { row: ComparisonRow; measured: AirValue | 
 }
 
 /** One setting as a tie between the rails; the words say again what the drawing shows. */
-export function TieRow({ row, standing, air, files, places }: {
-  row: ComparisonRow; standing: Standing; air: Record<string, AirValue>; files: SnapshotNames; places: boolean;
+export function TieRow({ row, standing, air, files, places, folded }: {
+  row: ComparisonRow; standing: Standing; air: Record<string, AirValue>; files: SnapshotNames; places: boolean; folded: boolean;
 }) {
   const measured = AIR_NAME(row.parameter, air);
   const seen = row.air !== null || row.announced !== null;
   return (
-    <tr role="row" className={`tie is-${standing.kind}`}>
+    <tr role="row" className={`tie is-${standing.kind} ${folded ? 'folded' : ''}`}>
       <th role="rowheader" scope="row" className="tie-name">
         {parameterLabel(row.parameter)}
         {standing.kind === 'holds' ? <span className="hidden-text">, holds</span> : <span className="standing">{standing.words}</span>}

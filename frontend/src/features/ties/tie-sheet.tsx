@@ -46,7 +46,7 @@ function Head() {
   );
 }
 
-/** Rail A, the air, rail B: one tie for each setting. What holds folds away once it would fill the sheet. */
+/** Rail A, the air, rail B: one tie for each setting. What holds folds away once it would fill the sheet; on paper nothing is folded. */
 export function TieSheet({ rows, hints, air, files, note }: {
   rows: readonly ComparisonRow[]; hints: readonly Hint[]; air: Record<string, AirValue>; files: SnapshotNames; note: ReactNode;
 }) {
@@ -55,7 +55,7 @@ export function TieSheet({ rows, hints, air, files, note }: {
   const ties = inOrder(rows, hints);
   const short = shortList(ties);
   const folds = short.length < ties.length;
-  const shown = unfolded ? ties : short;
+  const more = new Set(ties.filter((tie) => !short.includes(tie)));
   return (
     <Section title="Tie sheet" aside={tally(ties)}
       end={<button type="button" className="text-button" aria-pressed={places} onClick={() => showPlaces(!places)}>{places ? 'Hide where each value stood' : 'Show where each value stood'}</button>}>
@@ -63,7 +63,7 @@ export function TieSheet({ rows, hints, air, files, note }: {
         <table className={places ? 'ties with-places' : 'ties'} role="table" aria-label="Tie sheet: what each side declares and what the air shows">
           <Head />
           <tbody role="rowgroup">
-            {shown.map(({ row, standing }) => <TieRow key={row.parameter} row={row} standing={standing} air={air} files={files} places={places} />)}
+            {ties.map((tie) => <TieRow key={tie.row.parameter} {...tie} air={air} files={files} places={places} folded={!unfolded && more.has(tie)} />)}
           </tbody>
         </table>
         <div className="ties-foot">
