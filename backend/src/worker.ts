@@ -10,6 +10,7 @@ import type { Claimed } from './decodes/decode-records.js';
 import { Storage } from './files/storage.js';
 import { dropForgottenDrafts, removeDiscarded } from './files/sweep.js';
 import { WORKER_LOCK } from './http/health.js';
+import { sendInvitations } from './mail/invitations.js';
 import { sendDue, smtpTransport } from './mail/outbox.js';
 import { endWaivers } from './moves/end-waivers.js';
 
@@ -61,9 +62,11 @@ async function main(): Promise<void> {
     await boss.work<{ decodeId: string }>('decode', { batchSize: 1, pollingIntervalSeconds: 0.5 }, async ([job]) => runDecode({ pool, storage, log, running }, job.data.decodeId));
   }
   const transport = smtpTransport(config.mail.smtpUrl);
+  const mail = { pool, database, transport, from: config.mail.from, publicUrl: config.publicUrl, log };
   const stops = [
     repeat(5000, log, () => requeueAbandoned(pool)),
-    repeat(1500, log, () => sendDue({ pool, database, transport, from: config.mail.from, publicUrl: config.publicUrl, log })),
+    repeat(1500, log, () => sendDue(mail)),
+    repeat(1500, log, () => sendInvitations(mail)),
     repeat(60_000, log, () => endWaivers(pool)),
     repeat(20_000, log, () => removeDiscarded(pool, storage)),
     repeat(600_000, log, () => dropForgottenDrafts(pool)),

@@ -94,6 +94,8 @@ export const newRetest = z.object({
 export type NewRetest = z.infer<typeof newRetest>;
 export const waiver = z.object({
   id, reason: z.string(), endsOn: day, signatures: z.array(z.object({ party: partyRef, by: z.string(), at: instant })), inForce: z.boolean(),
+  /** Still waits for a signature; a waiver that is neither this nor in force has ended. */
+  pending: z.boolean(),
   actions: z.object({ sign: z.boolean() }),
 });
 

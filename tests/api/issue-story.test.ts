@@ -98,10 +98,14 @@ describe('an issue from filing to settled', () => {
     const asked = await world.as('rao').post(`${path}/moves`).send({ version, to: 'waived', reason: 'Not before the spring load.', endsOn: '2099-01-01' });
     expect(asked.status, JSON.stringify(asked.body)).toBe(200);
     expect(asked.body.stage).toBe('cause-agreed');
+    expect(asked.body.waiver).toMatchObject({ pending: true, inForce: false });
+    expect(asked.body.nextMove.party.id).toBe(world.parties.radio);
+    expect(asked.body.nextMove.ask).toMatch(/sign the waiver/);
     const signed = await world.as('ines').post(`${path}/waivers/${asked.body.waiver.id}/signatures`);
     expect(signed.status, JSON.stringify(signed.body)).toBe(200);
     expect(signed.body.stage).toBe('waived');
-    expect(signed.body.waiver.inForce).toBe(true);
+    expect(signed.body.waiver).toMatchObject({ pending: false, inForce: true });
+    expect(signed.body.nextMove).toBeNull();
   });
 
   it('shows on every page that lists', async () => {

@@ -1,6 +1,7 @@
 import pg from 'pg';
 import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
 import { oneLine } from '#backend/mail/compose';
+import { sendInvitations } from '#backend/mail/invitations';
 import { sendDue, smtpTransport, type OutboxParts } from '#backend/mail/outbox';
 import { openMailSink, type MailSink } from '../support/mail-sink.js';
 import { createWorld, issueOn, type PersonKey, type World } from '../support/world.js';
@@ -26,6 +27,7 @@ afterAll(async () => {
 });
 afterEach(async () => {
   await world.admin.query('delete from outbox');
+  await world.admin.query('delete from invitation_letters');
   sink.received.length = 0;
 });
 
@@ -160,6 +162,46 @@ describe('a letter is sent at least once', () => {
     await write('rao', { body: 'Once is enough.' });
     await Promise.all([sendDue(parts), sendDue(parts)]);
     expect(written()).toEqual(['edda', 'mara']);
+  });
+});
+
+describe('an invitation', () => {
+  const invite = (email: string) => world.as('tobin').post('/api/programmes/SKH/invitations').send({ email, partyId: world.parties.radio, role: 'vendor-engineer' });
+
+  it('goes to whom it invites with the very link, once, and its secret is forgotten', async () => {
+    const made = await invite('ana@quillby.example');
+    expect(made.status, JSON.stringify(made.body)).toBe(200);
+    await Promise.all([sendInvitations(parts), sendInvitations(parts)]);
+    await sendInvitations(parts);
+    expect(written()).toEqual(['ana']);
+    const token = new URL(made.body.link).pathname.split('/').at(-1);
+    expect(sink.received[0].parsed.text).toContain(`https://crosstie.lab.example/invitations/${token}`);
+    expect(sink.received[0].parsed.text).toContain('Tobin Aschero invites you');
+    const { rows } = await world.admin.query("select token, settled_at from invitation_letters where email = 'ana@quillby.example'");
+    expect(rows).toEqual([{ token: null, settled_at: expect.any(Date) }]);
+  });
+
+  it('is tried again after a mail server that broke down, and not sent once it was taken back', async () => {
+    sink.failNext(1);
+    const late = await invite('late@quillby.example');
+    const gone = await invite('gone@quillby.example');
+    expect((await world.as('tobin').delete(`/api/programmes/SKH/invitations/${gone.body.id}`)).status).toBe(204);
+    await sendInvitations(parts);
+    const { rows } = await world.admin.query('select email, token is null as forgotten, last_error from invitation_letters where settled_at is null');
+    expect(rows).toEqual([{ email: 'late@quillby.example', forgotten: false, last_error: expect.stringMatching(/broken down/) }]);
+    await world.admin.query('update invitation_letters set next_attempt_at = now()');
+    await sendInvitations(parts);
+    expect(written()).toEqual(['late', 'late']);
+    expect(new Set(sink.received.map(({ parsed }) => parsed.messageId)).size).toBe(1);
+    expect(sink.received[1].parsed.text).toContain(new URL(late.body.link).pathname);
+  });
+
+  it('is read by nobody through the application', async () => {
+    await invite('unread@quillby.example');
+    const app = new pg.Client({ connectionString: world.database.appUrl });
+    await app.connect();
+    await expect(app.query('select token from invitation_letters')).rejects.toThrow(/permission denied/);
+    await app.end();
   });
 });
 

@@ -153,6 +153,25 @@ describe('a manager', () => {
   });
 });
 
+describe('what a person is offered', () => {
+  it('is what the server would not refuse: filing, the severity, a unit', async () => {
+    const filed = await world.as('mara').post('/api/issues').send(issueOn(world));
+    const path = `/api/issues/SKH/${filed.body.number}`;
+    for (const person of ['mara', 'ines', 'edda', 'tobin', 'osk'] as const) {
+      const me = (await world.as(person).get('/api/me')).body;
+      const files = await world.as(person).post('/api/issues').send(issueOn(world));
+      expect(me.memberships[0].actions.fileIssue, person).toBe(files.status === 200);
+      const read = await world.as(person).get(path);
+      if (read.status !== 200) continue;
+      const weighed = await world.as(person).patch(path).send({ version: read.body.version, severity: read.body.severity === 'minor' ? 'major' : 'minor' });
+      expect(read.body.actions.changeSeverity, person).toBe(weighed.status === 200);
+      const { actions } = (await world.as(person).get('/api/links?programme=SKH')).body;
+      const added = await world.as(person).post('/api/units').send({ programme: 'SKH', partyId: me.memberships[0].party.id, name: `Unit of ${person}`, part: 'terminal' });
+      expect(actions.addUnit, person).toBe(added.status === 200);
+    }
+  });
+});
+
 describe('words with a null character', () => {
   it('are taken without it or refused as a value, never a failure', async () => {
     const titled = await world.as('mara').post('/api/issues').send(issueOn(world, { title: 'Down\u0000 here' }));

@@ -27,7 +27,7 @@ export async function openField(): Promise<Field> {
   };
 }
 
-const ADDRESS = { mara: 'mara.oyelaran@harrowmere.example', edda: 'edda.quillfeather@harrowmere.example', tobin: 'tobin.aschero@harrowmere.example', ines: 'ines.torvald@tarnbeck.example', jory: 'jory.haldane@ostrel.example', rao: 'rao.lindqvist@vimmery.example', petra: 'petra.wynnlow@pellfold.example' } as const;
+const ADDRESS = { mara: 'mara.oyelaran@harrowmere.example', edda: 'edda.quillfeather@harrowmere.example', tobin: 'tobin.aschero@harrowmere.example', osk: 'osk.brandreth@harrowmere.example', ines: 'ines.torvald@tarnbeck.example', jory: 'jory.haldane@ostrel.example', rao: 'rao.lindqvist@vimmery.example', petra: 'petra.wynnlow@pellfold.example' } as const;
 export type Who = keyof typeof ADDRESS;
 export const addressOf = (who: Who): string => ADDRESS[who];
 

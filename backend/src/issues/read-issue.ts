@@ -62,7 +62,7 @@ async function waiver(services: Services, issue: GrantedIssue): Promise<Issue['w
   const inForce = issue.stage === 'waived' && returnedAt === null;
   const signed = rest.signatures.some(({ party }) => party.id === issue.standing.partyId);
   const pending = returnedAt === null && !['settled', 'waived', 'withdrawn'].includes(issue.stage);
-  return { ...rest, inForce, actions: { sign: pending && !signed && isOnASide(issue) && may(issue.standing.role, 'move-issue') } };
+  return { ...rest, inForce, pending, actions: { sign: pending && !signed && isOnASide(issue) && may(issue.standing.role, 'move-issue') } };
 }
 
 /** The moves with what still blocks each, so that the page can say it before anyone tries. */

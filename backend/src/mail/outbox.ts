@@ -5,8 +5,8 @@ import type { Database } from '../db/database.js';
 import { compose, type Due } from './compose.js';
 
 const BATCH = 20;
-const FIRST_RETRY_S = 5;
-const LONGEST_RETRY_S = 3600;
+export const FIRST_RETRY_S = 5;
+export const LONGEST_RETRY_S = 3600;
 /** A mail server that says nothing must not hold up the letters behind. */
 const PATIENCE_MS = 10_000;
 

@@ -22,6 +22,7 @@ export async function moveIssue(moving: Moving): Promise<void> {
   const detail = await requirements(moving, move);
   if (asked.to === 'waived') {
     await askForWaiver(moving);
+    if (asked.nextMove) await setNextMove(services, by, { ...target(issue), move: asked.nextMove });
     return;
   }
   await setStage(services, issue, asked.to);
@@ -79,11 +80,17 @@ async function askForWaiver({ services, caller, issue, asked }: Moving): Promise
   await database.change('insert into waivers (id, programme_id, issue_id, reason, ends_on, asked_by) values ($1, $2, $3, $4, $5, access.person())', [id, issue.standing.programmeId, issue.issueId, asked.reason, asked.endsOn]);
   await recordEvent(services, { caller, standing: issue.standing }, { issueId: issue.issueId, programmeId: issue.standing.programmeId, kind: 'waiver', text: `asked for a waiver until ${asked.endsOn}: ${asked.reason}` });
   if (isOnASide(issue)) await signWaiver({ services, caller, issue }, id);
+  else await askToSign({ services, caller, issue }, { partyId: issue.partyAId, endsOn: asked.endsOn ?? '' });
 }
 
 /** A test lab whose own unit is one of the link's ends signs for it like any other party. */
 export const isOnASide = ({ standing, partyAId, partyBId }: GrantedIssue) => [partyAId, partyBId].includes(standing.partyId);
 
+
+/** Everyone waits for the side whose signature the waiver lacks. */
+async function askToSign({ services, caller, issue }: Omit<Moving, 'asked'>, { partyId, endsOn }: { partyId: string; endsOn: string }): Promise<void> {
+  await setNextMove(services, { caller, standing: issue.standing }, { ...target(issue), move: { partyId, ask: `sign the waiver until ${endsOn}, or say why not`, due: null } });
+}
 
 /** One party's signature; with both, the issue is waived. */
 export async function signWaiver({ services, caller, issue }: Omit<Moving, 'asked'>, waiverId: string): Promise<void> {
@@ -104,7 +111,11 @@ export async function signWaiver({ services, caller, issue }: Omit<Moving, 'aske
   await recordEvent(services, by, { issueId: issue.issueId, programmeId: issue.standing.programmeId, kind: 'waiver', text: `signed the waiver until ${waiver.endsOn} for ${issue.standing.partyName}` });
   const signed = await database.row<{ both: boolean }>(`
     select count(distinct s.party_id) = (select count(distinct p) from unnest(array[$2, $3]::uuid[]) p) as both from waiver_signatures s where s.waiver_id = $1 and s.party_id in ($2, $3)`, [waiverId, issue.partyAId, issue.partyBId]);
-  if (!signed?.both) return;
+  if (!signed?.both) {
+    const partyId = [issue.partyAId, issue.partyBId].find((id) => id !== issue.standing.partyId) ?? issue.partyBId;
+    await askToSign({ services, caller, issue }, { partyId, endsOn: waiver.endsOn });
+    return;
+  }
   await setStage(services, issue, 'waived');
   await endNextMove(services, issue.issueId);
   const eventId = await recordEvent(services, by, { issueId: issue.issueId, programmeId: issue.standing.programmeId, kind: 'stage', text: `moved it to ${STAGE_LABELS.waived}: both parties have signed` });

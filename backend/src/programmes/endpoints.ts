@@ -59,6 +59,9 @@ export const programmeEndpoints: Mounted[] = [
     await services.database.change(`
       insert into invitations (id, programme_id, party_id, email, role, token_hash, invited_by, expires_at) values ($1, $2, $3, $4, $5, $6, $7, $8)`,
     [id, granted.programmeId, body.partyId, body.email, body.role, createHash('sha256').update(token).digest(), caller.name, expiresAt]);
+    await services.database.change(`
+      insert into invitation_letters (invitation_id, programme_id, token, email, programme, party, invited_by, expires_at) values ($1, $2, $3, $4, $5, $6, $7, $8)`,
+    [id, granted.programmeId, token, body.email, granted.programmeName, found.name, caller.name, expiresAt]);
     await writeAudit(services, caller, { programmeId: granted.programmeId, partyId: null, action: 'invite', object: body.email, detail: `as ${body.role} for ${found.name}` });
     return { id, link: `${services.config.publicUrl}/invitations/${token}`, expiresAt: expiresAt.toISOString() };
   }),

@@ -12,6 +12,7 @@ import { up as missedEvents } from './0011-missed-events.js';
 import { up as rolesInPolicies } from './0012-roles-in-policies.js';
 import { up as quotaAndLists } from './0013-quota-and-lists.js';
 import { up as resumeByCommit } from './0014-resume-by-commit.js';
+import { up as invitationLetters } from './0015-invitation-letters.js';
 
 /** Numbered and append-only: a migration that has landed is never edited, a later one corrects it. */
 export const MIGRATIONS: readonly { name: string; up: string }[] = [
@@ -29,4 +30,5 @@ export const MIGRATIONS: readonly { name: string; up: string }[] = [
   { name: '0012-roles-in-policies', up: rolesInPolicies },
   { name: '0013-quota-and-lists', up: quotaAndLists },
   { name: '0014-resume-by-commit', up: resumeByCommit },
+  { name: '0015-invitation-letters', up: invitationLetters },
 ];

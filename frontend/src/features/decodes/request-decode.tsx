@@ -30,8 +30,8 @@ export function RequestDecode({ issue, close }: { issue: Issue; close: () => voi
     <form className="panel" onSubmit={send} aria-label="Decode again">
       <div className="fields">
         <Select label="Capture" none="no capture" value={captureFileId} options={options(captures)} onChange={(e) => setCapture(e.target.value)} />
-        <Select label="Snapshot of side A" none="as shared on the issue" value={snapshotAFileId} options={options(snapshots)} onChange={(e) => setA(e.target.value)} />
-        <Select label="Snapshot of side B" none="as shared on the issue" value={snapshotBFileId} options={options(snapshots)} onChange={(e) => setB(e.target.value)} />
+        <Select label="Snapshot of side A" none="as shared on the issue" value={snapshotAFileId} options={options(snapshots.filter((f) => f.side !== 'b'))} onChange={(e) => setA(e.target.value)} />
+        <Select label="Snapshot of side B" none="as shared on the issue" value={snapshotBFileId} options={options(snapshots.filter((f) => f.side !== 'a'))} onChange={(e) => setB(e.target.value)} />
         <Select label="Who transmits in it" none="not known" value={transmitter} options={[['a', `side A, ${issue.a.party.name}`], ['b', `side B, ${issue.b.party.name}`]]} onChange={(e) => setTransmitter(e.target.value as Side)} />
       </div>
       <Refused error={change.error} />

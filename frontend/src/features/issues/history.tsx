@@ -20,7 +20,7 @@ export function History({ name }: { name: IssueName }) {
         {newest.map((item, k) => (
           <li key={item.id} className={!all && k >= FIRST ? 'folded' : ''}>
             <span className="fig soft"><When at={item.at} /></span>
-            <span>{item.side ? <SideMark side={item.side}>{item.person ?? item.party}</SideMark> : <b>{item.person ?? 'Crosstie'}</b>} {item.text}{item.person && item.party && <span className="soft">, {item.party}</span>}</span>
+            <span>{item.side ? <SideMark side={item.side}>{item.person ?? item.party}</SideMark> : <b>{item.person ?? 'Crosstie'}</b>}{item.person && item.party && <span className="soft"> {item.party}</span>} {item.text}</span>
           </li>
         ))}
       </ol>

@@ -1,8 +1,9 @@
 import { useQuery } from '@tanstack/react-query';
 import { useState, type FormEvent } from 'react';
+import { Link } from 'react-router-dom';
 import type { PartyRef } from '#shared/api/common';
 import type { Issue, PossibleMove } from '#shared/api/issues';
-import { STAGE_LABELS } from '#shared/vocabulary';
+import { STAGE_LABELS, type Stage } from '#shared/vocabulary';
 import { Cautions } from '../../components/ui/cautions.js';
 import { Select, TextArea, TextField, type Option } from '../../components/ui/field.js';
 import { Refused } from '../../components/ui/refused.js';
@@ -23,6 +24,9 @@ function RestsOn({ issue }: { issue: Issue }) {
   if (!retest) return null;
   return <p className="small">It rests on the {retest.outcome} retest of {instant(retest.at)}: <span className="fig">{retest.buildA}</span> with <span className="fig">{retest.buildB}</span>{retest.decodeNumber !== null && `, decode ${retest.decodeNumber}`}.</p>;
 }
+
+/** With these nobody is waited for any more. */
+const ENDS: readonly Stage[] = ['settled', 'withdrawn'];
 
 /** What one move of the stage asks for. */
 export function MoveForm({ issue, move, parties, close }: { issue: Issue; move: PossibleMove; parties: readonly PartyRef[]; close: () => void }) {
@@ -46,16 +50,16 @@ export function MoveForm({ issue, move, parties, close }: { issue: Issue; move: 
       <h3>{move.label}: {issue.programme.code}/{issue.number} goes to {STAGE_LABELS[move.to]}</h3>
       {(needs('clean-retest') || needs('failed-retest')) && <RestsOn issue={issue} />}
       <div className="fields">
-        {needs('build') && <Select label="Build that carries the change" required none="choose a build" value={given.buildId} options={builds} onChange={set('buildId')} hint="Not in the list? Add it on the link’s page first." />}
+        {needs('build') && <Select label="Build that carries the change" required none="choose a build" value={given.buildId} options={builds} onChange={set('buildId')} hint={<>Not in the list? Add it on <Link to={`/links/${issue.link.id}`}>the link’s page</Link> first.</>} />}
         {needs('end-date') && <TextField label="Ends on" type="date" required value={given.endsOn} onChange={set('endsOn')} hint="On that day the issue returns to Cause agreed." />}
       </div>
       <TextArea label={needs('reason') ? 'Reason' : 'Reason (may be left out)'} required={needs('reason')} maxLength={2000} value={given.reason} onChange={set('reason')} />
-      <fieldset className="fields">
+      {!ENDS.includes(move.to) && <fieldset className="fields">
         <legend className="legend">Who moves next</legend>
         <Select label="Party" none="leave as it is" value={given.partyId} options={parties.map((p) => [p.id, p.name] as const)} onChange={set('partyId')} />
         {given.partyId && <TextField label="Asked to" required value={given.ask} maxLength={500} onChange={set('ask')} />}
         {given.partyId && <TextField label="By" type="date" value={given.due} onChange={set('due')} />}
-      </fieldset>
+      </fieldset>}
       {move.to === 'under-retest' && <Cautions what="the retest" />}
       <Refused error={change.error} />
       <div className="actions">

@@ -7,6 +7,7 @@ import { Radios } from '../../components/ui/radios.js';
 import { Refused } from '../../components/ui/refused.js';
 import { RungFields } from '../../components/ui/rungs.js';
 import { reading } from '../../lib/query.js';
+import { Refusal } from '../../lib/refusal.js';
 import { useRecordRetest } from './api/record-retest.js';
 
 const buildOptions = (builds: readonly { id: string; label: string }[]): Option[] => builds.map((b): Option => [b.id, b.label]);
@@ -32,7 +33,8 @@ export function RetestForm({ issue, close }: { issue: Issue; close: () => void }
       <div className="fields">
         <Select label={`Build of ${issue.a.unit.name} (side A)`} required none="choose a build" value={buildAId} options={buildOptions(link?.unitBuilds.a ?? [])} onChange={(e) => setA(e.target.value)} />
         <Select label={`Build of ${issue.b.unit.name} (side B)`} required none="choose a build" value={buildBId} options={buildOptions(link?.unitBuilds.b ?? [])} onChange={(e) => setB(e.target.value)} />
-        <Select label="Decode of the retest’s capture" none="none" value={decodeId} options={decodes} onChange={(e) => setDecode(e.target.value)} hint="To settle, a clean retest needs a decode without a mismatch." />
+        <Select label="Decode of the retest’s capture" none="none" value={decodeId} options={decodes} onChange={(e) => setDecode(e.target.value)} hint="A clean retest needs the decode of a capture taken since the retest began, without a mismatch."
+          error={change.error instanceof Refusal ? change.error.field('decodeId') : undefined} />
         <RungFields link={issue.link.interface} value={lastRung} onChange={setRung} />
       </div>
       <TextArea label="Note" maxLength={2000} value={note} onChange={(e) => setNote(e.target.value)} />

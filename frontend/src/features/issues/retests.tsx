@@ -12,7 +12,7 @@ export function Retests({ issue, id }: { issue: Issue; id: string }) {
   if (retests.length === 0 && !waiver && !issue.actions.retest) return null;
   return (
     <div id={id}>
-      <Section title="Retests" aside={retests.length === 0 ? 'none yet' : `${retests.filter((r) => r.outcome === 'clean').length} clean · ${retests.filter((r) => r.outcome === 'failed').length} failed`}
+      <Section title={waiver ? 'Retests and waiver' : 'Retests'} aside={retests.length === 0 ? 'no retest yet' : `${retests.filter((r) => r.outcome === 'clean').length} clean · ${retests.filter((r) => r.outcome === 'failed').length} failed`}
         end={issue.actions.retest && !open ? <button type="button" className="text-button" onClick={() => setOpen(true)}>Record a retest</button> : null}>
         {open && <RetestForm issue={issue} close={() => setOpen(false)} />}
         {retests.length > 0 && (

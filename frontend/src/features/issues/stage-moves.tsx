@@ -3,6 +3,7 @@ import type { Issue, PossibleMove } from '#shared/api/issues';
 import type { PartyRef } from '#shared/api/common';
 import { StageLine } from '../../components/marks/stage-line.js';
 import { calendarDate } from '../../lib/times.js';
+import { unsignedBy } from './waiver.js';
 import { MoveForm } from './move-form.js';
 
 /** The stage line, and under it the moves that the reader may make now; a blocked one says what it lacks. */
@@ -14,6 +15,12 @@ export function StageMoves({ issue, parties, formPlaces }: { issue: Issue; parti
   return (
     <div className="stage-moves">
       <StageLine stage={issue.stage} note={note} />
+      {issue.waiver?.pending && (
+        <p className="notice waits">
+          <b>A waiver is asked for</b> until {calendarDate(issue.waiver.endsOn)}. {unsignedBy(issue)}{' '}
+          <a className="no-print" href={`#${formPlaces.retests}`}>{issue.waiver.actions.sign ? 'Read and sign it' : 'Read it'}</a>
+        </p>
+      )}
       {issue.moves.length > 0 && (
         <div className="moves no-print">
           <div className="actions">

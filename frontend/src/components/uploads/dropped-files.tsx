@@ -1,20 +1,19 @@
-import type { Link } from '#shared/api/links';
 import type { FileKind, Reach, Side } from '#shared/vocabulary';
-import { CaptureRead } from '../../components/uploads/capture-read.js';
-import { LabelForm } from '../../components/uploads/label-form.js';
-import { SnapshotRead } from '../../components/uploads/snapshot-read.js';
-import { UploadLine } from '../../components/uploads/upload-line.js';
+import { CaptureRead } from './capture-read.js';
+import { LabelForm } from './label-form.js';
+import { SnapshotRead } from './snapshot-read.js';
+import { UploadLine } from './upload-line.js';
 import { isRaw, isWav, KIND_LABELS } from '../../lib/uploads/kinds.js';
 import type { UploadItem } from '../../lib/uploads/queue.js';
 import type { Uploads } from '../../lib/uploads/use-uploads.js';
-import { usualReach, type Sending } from './sending.js';
+import { usualReach, type Ends, type Sending } from './sending.js';
 
-interface FilesProps { uploads: Uploads; link: Link | null; sending: Sending }
+interface FilesProps { uploads: Uploads; link: Ends | null; sending: Sending }
 
 const KINDS = Object.entries(KIND_LABELS) as [FileKind, string][];
 
 /** How the file is taken: what it is, whose it is, and whom it reaches. A change sends it again. */
-function Taken({ item, link, sending }: { item: UploadItem; link: Link | null; sending: Sending }) {
+function Taken({ item, link, sending }: { item: UploadItem; link: Ends | null; sending: Sending }) {
   const { side, reach } = item.fields;
   const sided = item.kind === 'snapshot' || item.kind === 'glossary';
   const name = item.name;

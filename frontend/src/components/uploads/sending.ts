@@ -6,6 +6,8 @@ import { sideByName } from '../../lib/uploads/kinds.js';
 import type { UploadItem } from '../../lib/uploads/queue.js';
 import type { Uploads } from '../../lib/uploads/use-uploads.js';
 
+/** The two sides that a file may describe; a link has them, and so has an issue. */
+export type Ends = Pick<Link, 'a' | 'b'>;
 /** What the reader said of one file; the rest of its fields follows from the link and from the other files. */
 export interface Taken { kind: FileKind; side: Side | undefined; reach: Reach }
 export interface Sending {
@@ -20,14 +22,14 @@ const isSided = (kind: FileKind): boolean => kind === 'snapshot' || kind === 'gl
 export const usualReach = (kind: FileKind): Reach => (isSided(kind) ? 'compare-only' : 'everyone');
 const allowedReach = (kind: FileKind, reach: Reach | undefined): Reach => (!reach || (reach === 'compare-only' && !isSided(kind)) ? usualReach(kind) : reach);
 
-const wordsOf = (link: Link | null, side: Side): string[] => {
+const wordsOf = (link: Ends | null, side: Side): string[] => {
   if (!link) return [];
   const { party, unit } = link[side];
   return [party.shortName, party.name, unit.name.replace(/[^\w]/g, '')];
 };
 
 /** The side that a file speaks of by its name; else, for a snapshot, the one that has none yet. */
-function guessSide(item: UploadItem, link: Link | null, taken: readonly (Side | undefined)[]): Side | undefined {
+function guessSide(item: UploadItem, link: Ends | null, taken: readonly (Side | undefined)[]): Side | undefined {
   const byName = sideByName(item.name, { a: wordsOf(link, 'a'), b: wordsOf(link, 'b') });
   if (byName || item.kind !== 'snapshot') return byName ?? undefined;
   if (!taken.includes('a')) return 'a';
@@ -39,7 +41,7 @@ const glossaryOf = (items: readonly UploadItem[], side: Side | undefined): strin
   items.findLast((i) => i.kind === 'glossary' && i.state === 'done' && i.fields.side === side)?.stored?.id;
 
 /** A snapshot belongs to the party whose unit it describes, whoever sends it. */
-function fieldsOf({ kind, side, reach }: Taken, link: Link | null, items: readonly UploadItem[]): Partial<UploadFields> {
+function fieldsOf({ kind, side, reach }: Taken, link: Ends | null, items: readonly UploadItem[]): Partial<UploadFields> {
   if (!isSided(kind)) return { reach: allowedReach(kind, reach) };
   const glossaryFileId = kind === 'snapshot' && side ? glossaryOf(items, side) : undefined;
   return {
@@ -56,7 +58,7 @@ const sameFields = (x: Partial<UploadFields>, y: Partial<UploadFields>): boolean
  * Sends dropped files with side, owner, reach and glossary. Owner and glossary may only be known after
  * the drop, once the link is chosen or the glossary has arrived: what was sent without is sent again.
  */
-export function useSending(uploads: Uploads, link: Link | null, ownPartyIds: ReadonlySet<string>): Sending {
+export function useSending(uploads: Uploads, link: Ends | null, ownPartyIds: ReadonlySet<string>): Sending {
   const { items, resend } = uploads;
   useEffect(() => {
     for (const item of items) {
