@@ -117,6 +117,7 @@ describe('the whole story, from a cold database', { timeout: 240_000 }, () => {
     await petra.getByRole('heading', { level: 1 }).waitFor();
     expect(await petra.locator('main').textContent()).not.toContain('No block found');
     await petra.goto(`${field.stack.url}${path}`);
+    await petra.getByRole('heading', { level: 1, name: 'Nothing here that you can open' }).waitFor();
     const hidden = await petra.locator('main').textContent();
     await petra.goto(`${field.stack.url}/issues/SKH/${path.endsWith('0000') ? '0001' : '0000'}`);
     await expect.poll(() => petra.locator('main').textContent()).toBe(hidden);
