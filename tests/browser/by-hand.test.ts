@@ -224,7 +224,7 @@ describe('an invitation', { timeout: 120_000 }, () => {
     await sable.getByRole('heading', { level: 1, name: 'Day sheet' }).waitFor();
     await sable.getByText('Waiting for Tarnbeck Radio').waitFor();
     await tobin.reload();
-    await tobin.getByRole('cell', { name: SABLE, exact: true }).waitFor();
+    await tobin.locator('.section', { has: tobin.getByRole('heading', { name: 'People' }) }).getByRole('cell', { name: SABLE }).waitFor();
   });
 });
 
