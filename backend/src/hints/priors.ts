@@ -5,9 +5,9 @@
 export const PRIORS = {
   /** Two snapshots differ: one of them is at odds more often than both. */
   bothAtOdds: 0.12,
-  /** Two snapshots agree, or only one speaks: how often the radio does something else all the same. */
-  agreedButOtherwise: 0.05,
-  oneSidedAtOdds: 0.08,
+  /** Two snapshots agree, or only one speaks: how often the radio does something else all the same. A link is looked at because it does not work. */
+  agreedButOtherwise: 0.08,
+  oneSidedAtOdds: 0.15,
   /** A difference in the files is a finding even without the air, unless it was misread. */
   differenceIsReal: 0.97,
   /** A measured value is wrong although its own detector was sure: the floor under every likelihood. */
