@@ -1,6 +1,7 @@
 import { transformOf } from '../fourier/fft.js';
 import { mixed } from './primary-fix.js';
 import { numerologyOf, TS_HZ, usefulStartTs, prefixTs } from './numerology.js';
+import { TILE, usedSnrDb, type Tiles } from './carrier-level.js';
 import type { WorkSignal } from './work-signal.js';
 
 /** Blocks of the data's spacing between which the signal's power stands out of the noise. */
@@ -14,10 +15,12 @@ export interface CarrierPlacement {
   readonly inTable: boolean;
   readonly lowHz: number;
   readonly highHz: number;
+  /** Of the resource elements in use, against the floor beside the carrier; null where it cannot be told. */
+  readonly snrDb: number | null;
 }
 
 /** N_RB by spacing, TS 38.104 Tables 5.3.2-1 and 5.3.2-2 (3 and 7 MHz, FR2-2: from memory). */
-const TRANSMISSION_BANDWIDTHS: ReadonlyMap<number, readonly number[]> = new Map([
+export const TRANSMISSION_BANDWIDTHS: ReadonlyMap<number, readonly number[]> = new Map([
   [15_000, [15, 25, 35, 52, 79, 106, 133, 160, 188, 216, 242, 270]],
   [30_000, [11, 24, 38, 51, 65, 78, 92, 106, 119, 133, 162, 189, 217, 245, 273]],
   [60_000, [11, 18, 24, 31, 38, 44, 51, 58, 65, 79, 93, 107, 121, 135, 66, 132, 264]],
@@ -47,21 +50,41 @@ export interface Grid {
  * or no block stands out.
  */
 export function placeCarrier(work: WorkSignal, grid: Grid): CarrierPlacement | null {
-  const { powers, firstHz } = subcarrierPowers(work, grid);
-  const floor = noiseFloor(powers);
-  const best = { score: Number.NEGATIVE_INFINITY, placement: null as CarrierPlacement | null };
+  const { powers, firstHz, tiles } = subcarrierPowers(work, grid);
+  const rough = sharpestSpan(powers, { grid, firstHz, floor: noiseFloor(powers), least: LEAST_RISE });
+  if (!rough) return null;
+  // Beside what was seen lies the floor itself, no longer its lowest part: weaker edges stand out of it.
+  const floor = floorBeside(powers, rough);
+  const span = sharpestSpan(powers, { grid, firstHz, floor, least: LEAST_RISE_ABOVE_FLOOR }) ?? rough;
+  const place = placement(firstHz + span.from * grid.spacingHz, span.blocks, grid.spacingHz);
+  const to = span.from + BLOCK * span.blocks;
+  return { ...place, edgeShare: span.edgeShare, snrDb: usedSnrDb(tiles, { from: span.from, to, floor }) };
+}
+
+/** Rise of a block's mean power over the floor that counts: over the lowest part of it, and over its median. */
+const LEAST_RISE = 0.12;
+const LEAST_RISE_ABOVE_FLOOR = 0.075;
+
+interface Span { readonly from: number; readonly blocks: number; readonly score: number; readonly edgeShare: number }
+
+function sharpestSpan(powers: Float64Array, { grid, firstHz, floor, least }: { grid: Grid; firstHz: number; floor: number; least: number }): Span | null {
+  let best: Span | null = null;
   for (let shift = 0; shift < Math.round((BLOCK * grid.spacingHz) / grid.stepHz); shift++) {
     const edge = grid.blockEdgeHz + shift * grid.stepHz;
     const first = ((Math.round((edge - firstHz) / grid.spacingHz) % BLOCK) + BLOCK) % BLOCK;
-    const span = occupiedBlocks(powers, first, floor);
-    if (!span || span.score <= best.score) continue;
-    best.score = span.score;
-    best.placement = { ...placement(firstHz + span.from * grid.spacingHz, span.blocks, grid.spacingHz), edgeShare: span.edgeShare };
+    const span = occupiedBlocks(powers, { first, floor, least });
+    if (span && (!best || span.score > best.score)) best = span;
   }
-  return best.placement;
+  return best;
 }
 
-function placement(lowHz: number, resourceBlocks: number, spacingHz: number): Omit<CarrierPlacement, 'edgeShare'> {
+/** Median of the subcarriers outside a span, two away from its edges. */
+function floorBeside(powers: Float64Array, { from, blocks }: Span): number {
+  const outside = [...powers.slice(0, Math.max(0, from - 2)), ...powers.slice(from + BLOCK * blocks + 2)].sort((a, b) => a - b);
+  return outside[outside.length >> 1] ?? noiseFloor(powers);
+}
+
+function placement(lowHz: number, resourceBlocks: number, spacingHz: number): Omit<CarrierPlacement, 'edgeShare' | 'snrDb'> {
   return {
     resourceBlocks,
     referenceHz: lowHz + 6 * resourceBlocks * spacingHz,
@@ -71,26 +94,37 @@ function placement(lowHz: number, resourceBlocks: number, spacingHz: number): Om
   };
 }
 
-/** Mean power of each subcarrier, lowest first, and the frequency of the first. */
-function subcarrierPowers(work: WorkSignal, grid: Grid): { powers: Float64Array; firstHz: number } {
+/** A carrier that holds the blocks seen and some silent ones. */
+export function carrierOf(seen: CarrierPlacement, { referenceHz, resourceBlocks }: { referenceHz: number; resourceBlocks: number }, spacingHz: number): CarrierPlacement {
+  if (resourceBlocks === seen.resourceBlocks) return seen;
+  return { ...placement(referenceHz - 6 * resourceBlocks * spacingHz, resourceBlocks, spacingHz), edgeShare: 0, snrDb: seen.snrDb };
+}
+
+/** Mean power of each subcarrier, lowest first, and the frequency of the first; the power of each symbol by tiles. */
+function subcarrierPowers(work: WorkSignal, grid: Grid): { powers: Float64Array; firstHz: number; tiles: Tiles } {
   const size = Math.round(work.rateHz / grid.spacingHz);
   const anchorHz = grid.blockEdgeHz - work.centreHz;
   const spectrum = new Float64Array(2 * size);
-  const powers = new Float64Array(size);
-  const starts = symbolStarts(work, grid);
-  const step = Math.max(1, Math.floor(starts.length / SYMBOLS));
-  for (let i = 0; i < starts.length; i += step) {
-    transformOf(size).forward(mixed(work, { start: starts[i], count: size, referenceHz: anchorHz }), spectrum);
-    for (let k = 0; k < size; k++) {
-      const at = 2 * ((k + size / 2) % size);
-      powers[k] += spectrum[at] ** 2 + spectrum[at + 1] ** 2;
-    }
-  }
   // The mixer turned the band: only bins that the work signal's filter passed are kept.
   const lowest = Math.ceil((work.lowHz - anchorHz) / grid.spacingHz + size / 2);
   const highest = Math.floor((work.highHz - anchorHz) / grid.spacingHz + size / 2);
-  const kept = Array.from({ length: highest - lowest + 1 }, (_, i) => powers[(((lowest + i) % size) + size) % size]);
-  return { powers: Float64Array.from(kept), firstHz: grid.blockEdgeHz + (lowest - size / 2) * grid.spacingHz };
+  const powers = new Float64Array(highest - lowest + 1);
+  const tiles: Float64Array[] = [];
+  const starts = symbolStarts(work, grid);
+  const step = Math.max(1, Math.floor(starts.length / SYMBOLS));
+  const count = Math.ceil(starts.length / step);
+  for (let i = 0; i < starts.length; i += step) {
+    transformOf(size).forward(mixed(work, { start: starts[i], count: size, referenceHz: anchorHz }), spectrum);
+    const row = new Float64Array(Math.ceil(powers.length / TILE));
+    for (let k = 0; k < powers.length; k++) {
+      const at = 2 * ((((lowest + k + size / 2) % size) + size) % size);
+      const power = spectrum[at] ** 2 + spectrum[at + 1] ** 2;
+      powers[k] += power / count;
+      row[Math.floor(k / TILE)] += power / TILE;
+    }
+    tiles.push(row);
+  }
+  return { powers, firstHz: grid.blockEdgeHz + (lowest - size / 2) * grid.spacingHz, tiles };
 }
 
 /** First samples of the windows, in the middle of each prefix. */
@@ -132,12 +166,12 @@ function medians(powers: Float64Array, { first, run }: { first: number; run: num
 }
 
 /** The run of blocks from the first to the last that stand out; the score is how sharply the two edges stand. */
-function occupiedBlocks(powers: Float64Array, first: number, floor: number): { from: number; blocks: number; score: number; edgeShare: number } | null {
+function occupiedBlocks(powers: Float64Array, { first, floor, least }: { first: number; floor: number; least: number }): Span | null {
   const pieces = medians(powers, { first, run: BLOCK });
   const blocks = pieces.map(({ power }) => power);
   const typical = [...blocks].sort((a, b) => a - b)[Math.floor(blocks.length * 0.9)];
   if (!typical || typical < 1.15 * floor) return null;
-  const threshold = floor + Math.max(0.12 * floor, 0.04 * (typical - floor));
+  const threshold = floor + Math.max(least * floor, 0.04 * (typical - floor));
   const from = blocks.findIndex((power) => power > threshold);
   const to = blocks.findLastIndex((power) => power > threshold) + 1;
   // An edge with nothing empty beside it may lie outside the recording.

@@ -14,20 +14,20 @@ export function unknown(reason: string): AirValue {
 }
 
 /** Carrier offset, resource blocks and the data's numerology, each with how it was found. */
-export function carrierValues({ data, placement, placed, fullEdges, commonGrid, reference }: CellMeasurements): Record<string, AirValue> {
+export function carrierValues({ data, placement, placed, share, fullEdges, commonGrid, reference }: CellMeasurements): Record<string, AirValue> {
   const sigmaHz = reference.estimate.sigmaHz;
   const values: Record<string, AirValue> = {};
   if (placement && placed) {
-    const method = `edges of the carrier's power on the grid of common resource blocks that k_SSB gives; ${reference.method}`;
-    values.carrierOffsetHz = { value: placement.referenceHz, confidence: fullEdges ? 0.98 : 0.9, method, sigmaHz };
-    values.resourceBlocks = fullEdges
-      ? { value: placement.resourceBlocks, confidence: placement.inTable ? 0.98 : 0.9, method }
-      : unknown(`the outermost of the ${placement.resourceBlocks} blocks that carry power are weak: there may be more`);
+    const how = fullEdges ? 'edges of the carrier\'s power' : 'the one carrier of a listed width and raster that explains where power stands';
+    const method = `${how}, on the grid of common resource blocks that k_SSB gives; ${reference.method}`;
+    const confidence = Math.min(0.98, Math.max(share, fullEdges && placement.inTable ? 0.98 : 0));
+    values.carrierOffsetHz = { value: placement.referenceHz, confidence, method, sigmaHz };
+    values.resourceBlocks = { value: placement.resourceBlocks, confidence: Math.min(confidence, placement.inTable ? 0.98 : 0.9), method };
     return values;
   }
   const spacingHz = data?.spacingHz ?? commonGrid?.spacingHz ?? null;
   values.resourceBlocks = unknown(placement
-    ? `power stands on ${placement.resourceBlocks} blocks, which is no transmission bandwidth of TS 38.104 and not centred: it may be a part of the carrier`
+    ? `power stands on ${placement.resourceBlocks} blocks: they may be a part of the carrier`
     : 'the carrier’s edges do not stand out in the capture');
   values.carrierOffsetHz = spacingHz === null || (!commonGrid && !data)
     ? unknown('the data’s spacing is not known')
@@ -39,8 +39,8 @@ function residue(hz: number, spacingHz: number): number {
   return hz - Math.round(hz / spacingHz) * spacingHz;
 }
 
-/** Error vector and signal-to-noise ratio against all elements of the decoded blocks. */
-export function qualityValues(cell: Cell): Record<string, AirValue> {
+/** Error vector against all elements of the decoded blocks; the signal-to-noise ratio of the data where its floor is seen, else the blocks'. */
+export function qualityValues(cell: Cell, placement: CellMeasurements['placement']): Record<string, AirValue> {
   const noise = cell.blocks.reduce((sum, { fit }) => sum + fit.noisePower, 0);
   const signal = cell.blocks.reduce((sum, { fit }) => sum + fit.signalPower, 0);
   if (!(signal > 0)) return { evmPercent: unknown('no block lies wholly in the capture') };
@@ -48,7 +48,9 @@ export function qualityValues(cell: Cell): Record<string, AirValue> {
   return {
     evmPercent: { value: 100 * Math.sqrt(noise / signal), confidence: 0.95, method },
     evmRandomPercent: { value: RANDOM_EVM_PERCENT, method: 'random phases against the same points' },
-    snrDb: { value: 10 * Math.log10(signal / noise), confidence: 0.9, method },
+    snrDb: placement?.snrDb == null
+      ? { value: 10 * Math.log10(signal / noise), confidence: 0.8, method }
+      : { value: placement.snrDb, confidence: 0.9, method: 'level of the resource blocks in use, while they are, against the floor beside the carrier' },
   };
 }
 

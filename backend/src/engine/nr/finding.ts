@@ -67,7 +67,7 @@ export function reportCell(
       kSsb: sure(information.kSsb),
       frameStartS: sure(cell.frameStartS),
       ...carrierValues(measured),
-      ...qualityValues(cell),
+      ...qualityValues(cell, measured.placement),
       sampleClockOffsetPpm: clockValue(measured.clock),
       phaseCompensation: phaseValue(measured.phases, cell),
     },

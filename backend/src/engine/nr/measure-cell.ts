@@ -1,6 +1,7 @@
 import type { DetectionContext } from '../types.js';
 import type { DecodedBroadcast } from './burst-decode.js';
-import { placeCarrier, type CarrierPlacement } from './carrier-placement.js';
+import { carrierCandidates, type CarrierCandidate } from './carrier-candidates.js';
+import { carrierOf, placeCarrier, type CarrierPlacement } from './carrier-placement.js';
 import type { Cell } from './cell.js';
 import { clockDrift, type ClockDrift } from './clock-drift.js';
 import type { DataPrefix } from './data-prefix.js';
@@ -22,16 +23,18 @@ export interface CellMeasurements {
   /** Null where k_SSB only says that the block has no control resource set (TS 38.213 clause 13). */
   readonly commonGrid: CommonGrid | null;
   readonly placement: CarrierPlacement | null;
-  /** True where the placement is believed: a standard bandwidth, or a carrier around the tuner's centre. */
+  /** True where the placement is believed: full edges of a standard bandwidth, or by far the likeliest carrier behind what was seen. */
   readonly placed: boolean;
+  /** Probability of the placement among all carriers that may be behind what was seen. */
+  readonly share: number;
   /** True where the outermost blocks are full ones, so that the number of blocks is the carrier's. */
   readonly fullEdges: boolean;
   readonly clock: ClockDrift | null;
   readonly phases: PhaseCompensation;
 }
 
-/** An unlisted number of blocks is believed where its centre is the tuner's within this, parts per million. */
-const CENTRED_PPM = 5;
+/** Probability from which the likeliest carrier is believed. */
+const LIKELY = 0.93;
 
 export function measureCell(context: DetectionContext, { cell, work, decoded, inverted }: { cell: Cell; work: WorkSignal; decoded: DecodedBroadcast; inverted: boolean }): CellMeasurements {
   const { centreFrequencyHz: centreHz } = context.source;
@@ -39,17 +42,17 @@ export function measureCell(context: DetectionContext, { cell, work, decoded, in
   const coarse = referenceFrequency(work, cell, data);
   const referenceHz = coarse.estimate.hz;
   const grid = commonGridOf(cell, referenceHz, decoded);
-  const placement = data && grid && placeCarrier(work, {
+  const clock = clockDrift(cell);
+  const seen = data && grid && placeCarrier(work, {
     spacingHz: data.spacingHz,
     extended: data.extended,
     subframeS: cell.frameStartS,
     blockEdgeHz: grid.edgeHz,
     stepHz: 12 * Math.min(grid.spacingHz, data.spacingHz),
   });
-  const edges = placement !== null && hasFullEdges(placement);
-  const placed = placement !== null && ((placement.inTable && edges) || isCentred(placement, centreHz));
-  const carriers = placed ? [placement.referenceHz] : possibleCarriers(context, { placement, commonGrid: grid, inverted });
-  const clock = clockDrift(cell);
+  const candidates = seen ? carrierCandidates(seen, { spacingHz: data!.spacingHz, centreHz, blockHz: referenceHz, clock }) : [];
+  const { placement, placed, share } = believed(seen, candidates, data?.spacingHz ?? 0);
+  const carriers = placed ? [{ referenceHz: placement!.referenceHz, weight: 1 }] : candidates.length > 0 ? candidates : possibleCarriers(context, { commonGrid: grid, inverted });
   const phases = judgePhases(cell, {
     present: lawsWithCompensation({ referenceHz, centreHz, spacingHz: cell.spacingHz, clock }),
     absent: lawsWithoutCompensation(referenceHz, carriers),
@@ -63,7 +66,8 @@ export function measureCell(context: DetectionContext, { cell, work, decoded, in
     commonGrid: grid && { ...grid, edgeHz: grid.edgeHz + moved },
     placement: placement && { ...placement, referenceHz: placement.referenceHz + moved, lowHz: placement.lowHz + moved, highHz: placement.highHz + moved },
     placed,
-    fullEdges: edges,
+    fullEdges: placement !== null && hasFullEdges(placement),
+    share,
     clock,
     phases,
   };
@@ -94,20 +98,24 @@ function hasFullEdges({ inTable, edgeShare }: CarrierPlacement): boolean {
   return edgeShare > (inTable ? LISTED_EDGE : UNLISTED_EDGE);
 }
 
-function isCentred(placement: CarrierPlacement, centreHz: number | null): boolean {
-  return centreHz !== null && Math.abs(placement.referenceHz) < CENTRED_PPM * 1e-6 * centreHz;
+/** What was seen where its edges are a listed width's own, else the likeliest carrier behind it where none rivals it. */
+function believed(seen: CarrierPlacement | null, candidates: readonly CarrierCandidate[], spacingHz: number): { placement: CarrierPlacement | null; placed: boolean; share: number } {
+  if (!seen) return { placement: null, placed: false, share: 0 };
+  const [best] = candidates;
+  if (best && best.weight > LIKELY) return { placement: carrierOf(seen, best, spacingHz), placed: true, share: best.weight };
+  return { placement: seen, placed: seen.inTable && hasFullEdges(seen), share: candidates.find(({ referenceHz }) => referenceHz === seen.referenceHz)?.weight ?? 0 };
 }
 
-/** Places on the common grid, half a block apart, that the RF reference may have where the edges do not say: about the middle of what carries power. */
-function possibleCarriers(context: DetectionContext, { placement, commonGrid, inverted }: { placement: CarrierPlacement | null; commonGrid: CommonGrid | null; inverted: boolean }): number[] {
-  const span = placement ?? occupiedUpright(context, inverted);
+/** Places on the common grid, half a block apart, that the RF reference may have where the edges do not say: about the middle of the occupied band. */
+function possibleCarriers(context: DetectionContext, { commonGrid, inverted }: { commonGrid: CommonGrid | null; inverted: boolean }): { referenceHz: number; weight: number }[] {
+  const span = occupiedUpright(context, inverted);
   if (!commonGrid || !span) return [];
   const middle = (span.lowHz + span.highHz) / 2;
   const reach = 0.12 * (span.highHz - span.lowHz);
   const step = 6 * commonGrid.spacingHz;
   const first = Math.ceil((middle - reach - commonGrid.edgeHz) / step);
   const last = Math.floor((middle + reach - commonGrid.edgeHz) / step);
-  return Array.from({ length: Math.max(0, last - first + 1) }, (_, i) => commonGrid.edgeHz + (first + i) * step);
+  return Array.from({ length: Math.max(0, last - first + 1) }, (_, i) => ({ referenceHz: commonGrid.edgeHz + (first + i) * step, weight: 1 }));
 }
 
 /** The occupied band was measured before an inverted spectrum was turned upright. */

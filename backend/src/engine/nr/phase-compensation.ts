@@ -42,7 +42,7 @@ const STEPS = 40;
 /** Share from which one law of a set is taken for certain. */
 const SURE_LAW = 0.99;
 /** Natural logarithm of the odds from which one law is believed. */
-const ODDS = 3;
+const ODDS = 2;
 /** Largest χ² per degree of freedom that still counts as a fit. */
 const WORST_FIT = 6;
 

@@ -64,6 +64,7 @@ export function lawsWithCompensation({ referenceHz, centreHz, spacingHz, clock }
  * Laws without compensation: the RF reference against SS_REF, both as received. Where the carrier
  * was not placed, each of the places that it may have.
  */
-export function lawsWithoutCompensation(referenceHz: number, carriersHz: readonly number[]): PhaseLaws {
-  return carriersHz.map((hz) => ({ hz: hz - referenceHz, weight: 1 / carriersHz.length }));
+export function lawsWithoutCompensation(referenceHz: number, carriers: readonly { readonly referenceHz: number; readonly weight: number }[]): PhaseLaws {
+  const whole = carriers.reduce((sum, { weight }) => sum + weight, 0);
+  return carriers.map((each) => ({ hz: each.referenceHz - referenceHz, weight: each.weight / whole }));
 }
