@@ -8,8 +8,10 @@ export interface Measurement {
   readonly method: string | null;
   /** Natural logarithm of the probability of what was measured, were `setting` the true one. */
   logLikelihood(setting: SettingValue): number;
-  /** The same, were it some other setting than those declared. */
+  /** The same, were it some other setting than the one declared. */
   readonly otherLogLikelihood: number;
+  /** The same, were it none of these: impossible (negative infinity) where they are all there are. Left out: as `otherLogLikelihood`. */
+  noneOfLogLikelihood?(settings: readonly SettingValue[]): number;
 }
 
 export interface Verdict {
@@ -39,10 +41,11 @@ export function judgeDifference(declared: Readonly<Record<Side, SettingValue>>, 
   const open = { pattern: 'differ-open', side: 'unknown', probability: PRIORS.differenceIsReal } as const;
   if (!measurement) return open;
   const one = Math.log((1 - PRIORS.bothAtOdds) / 2);
+  const neither = measurement.noneOfLogLikelihood?.([declared.a, declared.b]) ?? measurement.otherLogLikelihood;
   const [a, b, both] = shares([
     one + floored(measurement.logLikelihood(declared.b), measurement),
     one + floored(measurement.logLikelihood(declared.a), measurement),
-    Math.log(PRIORS.bothAtOdds) + measurement.otherLogLikelihood,
+    Math.log(PRIORS.bothAtOdds) + neither,
   ]) as [number, number, number];
   const best = Math.max(a, b, both);
   if (best < PRIORS.sideDecided) return open;

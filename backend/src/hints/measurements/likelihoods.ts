@@ -18,6 +18,11 @@ export function categorical(air: AirValue, choices: number, same = (a: SettingVa
     logLikelihood: (setting) => Math.log(same(setting, air.value) ? sure : miss),
     // Some other setting is true: mostly the one that was measured, where it is not among the declared.
     otherLogLikelihood: Math.log((sure + (choices - 2) * miss) / (choices - 1)),
+    noneOfLogLikelihood: (settings) => {
+      const left = choices - settings.length;
+      if (left <= 0) return Number.NEGATIVE_INFINITY;
+      return Math.log(settings.some((setting) => same(setting, air.value)) ? miss : (sure + (left - 1) * miss) / left);
+    },
   };
 }
 

@@ -48,7 +48,7 @@ const technology: Measure = (evidence) => {
   if (!air || typeof air.value !== 'string') return null;
   const plain = categorical(air, 4);
   if (air.value !== 'ofdm') return plain;
-  return { ...plain, logLikelihood: (setting) => (setting === 'ofdm' ? Math.log(0.9) : setting === 'wifi' ? Math.log(0.02) : Math.log(0.2)) };
+  return { ...plain, noneOfLogLikelihood: () => Math.log(0.05), logLikelihood: (setting) => (setting === 'ofdm' ? Math.log(0.9) : setting === 'wifi' ? Math.log(0.02) : Math.log(0.2)) };
 };
 
 /** What the air says of a parameter, by its common name; a name without an entry is not seen on the air. */
@@ -56,7 +56,7 @@ const MEASURES: Readonly<Record<string, Measure>> = {
   technology,
   subcarrierSpacing: spacing,
   numerology,
-  cyclicPrefix: word('cyclicPrefix', 4),
+  cyclicPrefix: (evidence) => word('cyclicPrefix', evidence.air['technology']?.value === 'wifi' ? 4 : 2)(evidence),
   guardInterval,
   carrierFrequency,
   resourceBlocks,
