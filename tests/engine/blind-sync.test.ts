@@ -30,6 +30,9 @@ const CASES: Case[] = [
   { name: 'Wi-Fi, 12.8 + 3.2 µs', snrDb: 5, ...even(78.125e3, 3.2e-6, { subcarriers: 242, rateHz: 20e6, durationS: 1.5e-3 }) },
   { name: '10 MHz clock, 1.6 µs', snrDb: 5, ...even(156.25e3, 1.6e-6, { subcarriers: 52, rateHz: 10e6, durationS: 2e-3 }) },
   { name: '43 kHz, 1/10 of no list', snrDb: 8, ...even(43e3, 2.33e-6, { subcarriers: 96, rateHz: 6.2e6, durationS: 6e-3 }) },
+  { name: '2.5 kHz, 1/16, 48 subcarriers', snrDb: 12, ...even(2.5e3, 25e-6, { subcarriers: 48, rateHz: 1.92e6, durationS: 30e-3 }) },
+  { name: '40 kHz, 1/16, three independent samples a prefix', snrDb: 15, ...even(40e3, 1.5625e-6, { subcarriers: 52, rateHz: 4e6, durationS: 10e-3 }) },
+  { name: '1 MHz, 1/8', snrDb: 12, ...even(1e6, 0.125e-6, { subcarriers: 64, rateHz: 100e6, durationS: 0.5e-3 }) },
   { name: '7 kHz, 1/4 of no list', snrDb: 8, ...even(7e3, 35.7e-6, { subcarriers: 200, rateHz: 2e6, durationS: 20e-3 }) },
 ];
 
@@ -51,6 +54,15 @@ describe('blind numerology', () => {
     expect(Math.abs(found!.snrDb! - plan.snrDb)).toBeLessThan(1.5);
     expect(startError(plan, lateS, found!.grid.startSample / plan.rateHz)).toBeLessThan(plan.prefixS(1) / 5);
     expect(found!.confidence).toBeGreaterThan(0.9);
+  });
+
+  it('reads the residue of a carrier many subcarriers beside zero: the spacing is good to a part in 10,000', () => {
+    const plan = { ...even(73_250, 1.7e-6, { subcarriers: 44, rateHz: 10e6, durationS: 6e-3 }), snrDb: 18 };
+    const offsetHz = 31.27 * plan.spacingHz;
+    const found = estimate({ ...plan, offsetHz } as SmallOfdm).found!;
+    const away = (found.grid.referenceHz - offsetHz) / plan.spacingHz;
+    expect(Math.abs(found.subcarrierSpacingHz / plan.spacingHz - 1)).toBeLessThan(1e-4);
+    expect(Math.abs(away - Math.round(away))).toBeLessThan(0.01);
   });
 
   it('places the half subframe where the longer prefix is', () => {

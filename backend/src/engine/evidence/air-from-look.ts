@@ -1,5 +1,6 @@
 import type { AirValue } from '#shared/decode';
 import type { BlindOfdm, LevelFacts, TechnologyFinding } from '../types.js';
+import type { BlindEstimate } from '../sync/estimate.js';
 import { halfShift } from './half-shift.js';
 import type { Look } from './look.js';
 
@@ -21,11 +22,14 @@ export function airFrom(look: Look, level: LevelFacts): Record<string, AirValue>
   };
 }
 
+const NUMEROLOGY = ['subcarrierSpacingHz', 'usefulSymbolS', 'cyclicPrefix', 'cyclicPrefixS'];
+
 /** The data's numerology: the technology's own statement, else its symbols' grid, else the blind look. */
-function numerologyOf(finding: TechnologyFinding, blind: BlindOfdm | null): Record<string, AirValue> {
+function numerologyOf(finding: TechnologyFinding, blind: BlindEstimate | null): Record<string, AirValue> {
   if (finding.air['subcarrierSpacingHz']) return {};
   const { grid } = finding;
-  if (!grid) return blind ? pick(ofAnyOfdm(blind), ['subcarrierSpacingHz', 'usefulSymbolS', 'cyclicPrefix', 'cyclicPrefixS']) : {};
+  if (!grid && blind?.blocksOnly) return Object.fromEntries(NUMEROLOGY.map((name) => [name, missing('only synchronisation blocks were seen, whose spacing need not be the data\'s')]));
+  if (!grid) return blind ? pick(ofAnyOfdm(blind), NUMEROLOGY) : {};
   const method = 'repetition of the data\'s symbols in the frame of the decoded block';
   const known = (value: AirValue['value']): AirValue => ({ value, confidence: 0.99, method });
   const share = grid.prefixSamples.at(-1)! / grid.usefulSamples;

@@ -16,7 +16,7 @@ const FREE = 24;
 const PER_BURST = 1.28 * 5;
 
 /** |x|⁴ over (|x|²)²: 2 for a Gaussian signal, as any OFDM nearly is; 1 for a carrier with angle modulation only. */
-const LEAST_KURTOSIS = 1.5;
+export const LEAST_KURTOSIS = 1.5;
 /** Off the right lag by more than the band's correlation time a prefix is gone; a tone, a sweep or a line is not. */
 const BESIDE = 0.5;
 const MOST_PEAK_SHARE = 0.9;

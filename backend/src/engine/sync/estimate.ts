@@ -41,19 +41,32 @@ export function estimateOfdm(source: SampleSource, options: EstimateOptions = {}
   return analyseOfdm(source, options).found;
 }
 
-/** As `estimateOfdm`, with the plot and the reason. Looks at the first 20 ms, and further where those say nothing. */
+/** As `estimateOfdm`, with the plot and the reason. Looks at the first 20 ms (of a narrow band, more), and further where those say nothing. */
 export function analyseOfdm(source: SampleSource, options: EstimateOptions = {}): BlindResult {
   let first: BlindResult | null = null;
-  for (const start of chooseWindows(source, { further: options.further ?? 3 })) {
-    const result = analyseWindow(readWindow(source, start), options);
+  const windowS = lengthFor(source, options.occupied ?? null);
+  for (const start of chooseWindows(source, { windowS, further: options.further ?? 3 })) {
+    const result = analyseWindow(readWindow(source, start, windowS), options);
     if (result.found) return result;
     first ??= result;
   }
   return first ?? { found: null, prefixCorrelation: null, reason: 'the capture is empty' };
 }
 
+const FEWEST_SAMPLES = 512;
+/** Independent samples of the signal that a window should hold, and how long and large it may grow for that. */
+const WANTED = 20_000;
+const LONGEST_S = 0.25;
+const MOST_SAMPLES = 4e6;
+
+/** 20 ms, or longer where a narrow band shows little in them. */
+function lengthFor({ sampleRateHz }: SampleSource, occupied: EstimateOptions['occupied']): number {
+  const widthHz = occupied ? occupied.highHz - occupied.lowHz : sampleRateHz;
+  return Math.max(0.02, Math.min(WANTED / widthHz, LONGEST_S, MOST_SAMPLES / sampleRateHz));
+}
+
 export function analyseWindow(window: Window, options: EstimateOptions = {}): BlindResult {
-  if (window.iq.length < 2 * 512) return { found: null, prefixCorrelation: null, reason: 'too few samples' };
+  if (window.iq.length < 2 * FEWEST_SAMPLES) return { found: null, prefixCorrelation: null, reason: 'too few samples' };
   const prepared = prepare(window, { occupied: bandOf(window, options), on: onOf(window, options) });
   const ranking = rank(prepared);
   if (ranking.groups.length === 0) return { found: null, prefixCorrelation: null, reason: 'too short for any symbol' };

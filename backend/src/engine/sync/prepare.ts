@@ -26,8 +26,10 @@ export interface PrepareOptions {
   readonly on: readonly Stretch[] | null;
 }
 
-/** Multiples of these keep every cellular spacing a whole number of samples. */
+/** Multiples and halves of these keep every cellular spacing that fits the band a whole number of samples. */
 const LADDER = [1.92e6, 2.88e6];
+const HALVINGS = 5;
+const DOUBLINGS = 8;
 /** A band narrower than this part of the rate is cut out: the noise beside it would only add scatter. */
 const NARROW = 0.42;
 
@@ -49,7 +51,7 @@ export function prepare(window: Window, { occupied, on }: PrepareOptions): Prepa
 }
 
 function workingRate(widthHz: number, sampleRateHz: number): number {
-  const rates = LADDER.flatMap((base) => Array.from({ length: 9 }, (_, k) => base * 2 ** k));
+  const rates = LADDER.flatMap((base) => Array.from({ length: HALVINGS + DOUBLINGS + 1 }, (_, k) => base * 2 ** (k - HALVINGS)));
   const fit = rates.filter((rate) => rate >= 1.25 * widthHz && rate < sampleRateHz).sort((a, b) => a - b);
   return fit[0] ?? sampleRateHz;
 }

@@ -1,6 +1,7 @@
 import { CELLULAR, WIFI, normalPrefix, uniformPrefix, type Hypothesis } from './hypotheses.js';
+import { kurtosis, LEAST_KURTOSIS } from './credible.js';
 import { cyclicLags } from './cyclic-lags.js';
-import { scanLags, screened } from './lag-scan.js';
+import { everyLag, scanLags, screened } from './lag-scan.js';
 import { lagPeaks, lagSpectrum, type LagSpectrum } from './lag-spectrum.js';
 import { lagSums, type LagSums } from './lag-sums.js';
 import type { Span } from './product-spectrum.js';
@@ -41,7 +42,7 @@ export function rank(window: Prepared): Ranking {
     const lag = lagS * window.rateHz;
     if (lag >= 8 && lag <= longest) groups.push(scoreLag(window, lag, listed));
   }
-  if (!groups.some(isDecisive)) searchFreely(window, { groups, lags, longest });
+  if (!groups.some(isDecisive) && kurtosis(window) > LEAST_KURTOSIS) searchFreely(window, { groups, lags, longest });
   return { groups: groups.sort((x, y) => y.merit - x.merit), lags };
 }
 
@@ -59,10 +60,19 @@ function searchFreely(window: Prepared, { groups, lags, longest }: Search): void
   for (const lag of screened(window, peaks.map((p) => p.lag), 5)) add(lag);
   // Without a peak nothing outshines a prefix, and a scan would find no more than the peaks did.
   if (peaks.length > 1 && !groups.some(isDecisive)) for (const { lag } of scanLags(window, { from: shortest, to: longest, count: 3 })) add(lag);
+  // A narrow band has so few lags that each can be asked for its symbol periods: the correlation alone would need a stronger signal.
+  if (standsOut(window) && !groups.some(isDecisive)) for (const { lag } of everyLag(window, { from: shortest, to: longest, count: 4 })) add(lag);
   const best = [...groups].sort((x, y) => y.merit - x.merit).find((g) => g.free && g.chosen.score > SEARCHED);
   if (!best) return;
   const { usefulS, cyclicPrefixS } = best.chosen.hypothesis;
   for (const lag of cyclicLags(window, (usefulS + cyclicPrefixS) * window.rateHz, 5)) add(lag);
+}
+
+/** Part of the rate above which a band fills the capture: then only noise, or what the correlation shows without help. */
+const FILLED = 0.97;
+
+function standsOut({ bandHz, rateHz }: Prepared): boolean {
+  return bandHz < FILLED * rateHz;
 }
 
 /** All that was scored at one lag, and the hypothesis chosen there. */

@@ -3,6 +3,7 @@ import { lagSums, type LagSums } from './lag-sums.js';
 import type { Prepared, Stretch } from './prepare.js';
 import type { Span } from './product-spectrum.js';
 import { rescore, type Scored } from './score.js';
+import { prefixAngle, sharpLag } from './sharp-lag.js';
 
 /** Where the symbols lie and how strong they are, in working samples and Hz about the working zero. */
 export interface Refined {
@@ -23,30 +24,47 @@ export function refine(window: Prepared, coarse: Scored): Refined {
   const sums = hop < coarse.sums.hop ? lagSums(window, coarse.sums.lag, hop) : coarse.sums;
   const fine = hop < coarse.sums.hop ? rescore({ sums, rateHz: window.rateHz }, coarse) : coarse;
   const placed = fine.best && fine.score > 0.6 * coarse.score ? fine : coarse;
-  const scored = placed.hypothesis.family === 'free' ? withPeriod(window, withLag(window, placed)) : placed;
+  const scored = placed.hypothesis.family === 'free' ? [1, 2].reduce((at) => withPeriod(window, withLag(window, at)), placed) : placed;
   const { hypothesis } = scored;
-  const { match, origin, span } = scored.best!;
-  const period = (periodOf(hypothesis) * window.rateHz) / scored.sums.hop;
-  const start = (origin + match.phase * period) * scored.sums.hop;
-  const residueHz = Math.atan2(match.im, match.re) / (2 * Math.PI * hypothesis.usefulS);
+  const { match, span } = scored.best!;
+  const start = startOf(window, scored);
+  const own = prefixAngle(window, { start, hypothesis, within: withinOf(scored) });
+  const residueHz = (own?.angle ?? Math.atan2(match.im, match.re)) / (2 * Math.PI * hypothesis.usefulS);
   return { scored, start, residueHz, snr: prefixSnr(window, { sums: scored.sums, start, hypothesis, angle: Math.atan2(match.im, match.re), span: scored.spans.apart ? span : null }) };
 }
 
 /** A free hypothesis's lag sharpened, its symbol period kept: echoes and a coarse search leave it some tenths of a sample off. */
 function withLag(window: Prepared, placed: Scored): Scored {
   const { usefulS, cyclicPrefixS, longEvery } = placed.hypothesis;
-  if (longEvery !== null) return placed;
-  const at = (lag: number): Scored => {
-    const hypothesis = uniformPrefix({ usefulS: lag / window.rateHz, cyclicPrefixS: usefulS + cyclicPrefixS - lag / window.rateHz, family: 'free' });
-    return rescore({ sums: lagSums(window, lag, placed.sums.hop), rateHz: window.rateHz }, { ...placed, hypothesis });
-  };
-  let best = placed;
-  for (let step = (0.5 * window.rateHz) / window.bandHz, i = 0; i < 5; i++) {
-    const better = [-step, step].map((d) => at(best.sums.lag + d)).reduce((a, b) => (b.score > a.score ? b : a), best);
-    if (better === best) step /= 2;
-    else best = better;
-  }
-  return best;
+  const sharp = longEvery === null ? sharpLag(window, { start: startOf(window, placed), hypothesis: placed.hypothesis, within: withinOf(placed) }) : null;
+  if (!sharp) return placed;
+  const deviation = Math.max(sharp.deviation, (SYSTEMATIC * window.rateHz) / window.bandHz);
+  const lag = roundLag({ ...sharp, deviation }, window.rateHz);
+  const hypothesis = uniformPrefix({ usefulS: lag / window.rateHz, cyclicPrefixS: usefulS + cyclicPrefixS - lag / window.rateHz, family: 'free' });
+  return rescore({ sums: lagSums(window, lag, placed.sums.hop), rateHz: window.rateHz }, { ...placed, hypothesis });
+}
+
+/** Spacings are made by dividing clocks: what lies within the lag's error of a round number is taken for it, where chance would seldom bring one so near. */
+const ROUND_HZ = [5000, 2500, 1000, 500, 250, 125];
+const WITHIN = 3;
+const SELDOM = 0.15;
+/** What filters and the symbols' seams leave of an error, in 1/band. */
+const SYSTEMATIC = 0.006;
+
+function roundLag({ lag, deviation }: { lag: number; deviation: number }, rateHz: number): number {
+  const spacing = rateHz / lag;
+  const doubt = (WITHIN * spacing * deviation) / lag;
+  const round = ROUND_HZ.find((step) => 2 * doubt < SELDOM * step && Math.abs(spacing - step * Math.round(spacing / step)) < doubt);
+  return round === undefined ? lag : rateHz / (round * Math.round(spacing / round));
+}
+
+function startOf(window: Prepared, { best, hypothesis, sums }: Scored): number {
+  const period = (periodOf(hypothesis) * window.rateHz) / sums.hop;
+  return (best!.origin + best!.match.phase * period) * sums.hop;
+}
+
+function withinOf({ spans, best, sums }: Scored): Stretch | null {
+  return spans.apart ? { start: best!.span.from * sums.hop, end: best!.span.to * sums.hop } : null;
 }
 
 /** A free hypothesis's period sharpened: an error of a hundredth of the prefix adds up from symbol to symbol. */
