@@ -83,9 +83,19 @@ function scatter(sums: readonly { re: number; im: number }[], { re, im }: { re: 
   return sums.length < 3 ? Math.PI : Math.sqrt(across) / strength;
 }
 
-/** Numerologies that data may have beside a block of a spacing (TS 38.331: FR1, FR2-1, FR2-2). */
-export function dataNumerologies(blockSpacingHz: number): { spacingHz: number; extended: boolean }[] {
-  const spacings = blockSpacingHz <= 30_000 ? [15_000, 30_000, 60_000] : blockSpacingHz <= 240_000 ? [60_000, 120_000] : [120_000, 480_000, 960_000];
-  const normal = spacings.map((spacingHz) => ({ spacingHz, extended: false }));
-  return spacings.includes(60_000) ? [...normal, { spacingHz: 60_000, extended: true }] : normal;
+/** Where FR2-2 begins, Hz (TS 38.104 Table 5.1-1). */
+const FR2_2_HZ = 52.6e9;
+
+/** Numerologies that data may have beside a block of a spacing (TS 38.331: FR1, FR2-1, FR2-2); a block of 120 kHz may be either range's where the centre is not known. */
+export function dataNumerologies(blockSpacingHz: number, centreHz: number | null): { spacingHz: number; extended: boolean }[] {
+  const normal = spacingsBeside(blockSpacingHz, centreHz).map((spacingHz) => ({ spacingHz, extended: false }));
+  return normal.some(({ spacingHz }) => spacingHz === 60_000) ? [...normal, { spacingHz: 60_000, extended: true }] : normal;
+}
+
+function spacingsBeside(blockSpacingHz: number, centreHz: number | null): readonly number[] {
+  if (blockSpacingHz <= 30_000) return [15_000, 30_000, 60_000];
+  const upper = [120_000, 480_000, 960_000];
+  if (blockSpacingHz > 240_000) return upper;
+  if (blockSpacingHz === 240_000 || (centreHz !== null && centreHz < FR2_2_HZ)) return [60_000, 120_000];
+  return centreHz === null ? [60_000, ...upper] : upper;
 }

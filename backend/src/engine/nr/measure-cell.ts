@@ -33,12 +33,14 @@ export interface CellMeasurements {
   readonly phases: PhaseCompensation;
 }
 
+/** An unlisted number of full blocks is believed where its centre is the tuner's within this, parts per million. */
+const CENTRED_PPM = 5;
 /** Probability from which the likeliest carrier is believed. */
 const LIKELY = 0.93;
 
 export function measureCell(context: DetectionContext, { cell, work, decoded, inverted }: { cell: Cell; work: WorkSignal; decoded: DecodedBroadcast; inverted: boolean }): CellMeasurements {
   const { centreFrequencyHz: centreHz } = context.source;
-  const data = dataNumerology(work, cell, context.blind);
+  const data = dataNumerology(work, cell, { blind: context.blind, centreHz });
   const coarse = referenceFrequency(work, cell, data);
   const referenceHz = coarse.estimate.hz;
   const grid = commonGridOf(cell, referenceHz, decoded);
@@ -51,7 +53,7 @@ export function measureCell(context: DetectionContext, { cell, work, decoded, in
     stepHz: 12 * Math.min(grid.spacingHz, data.spacingHz),
   });
   const candidates = seen ? carrierCandidates(seen, { spacingHz: data!.spacingHz, centreHz, blockHz: referenceHz, clock }) : [];
-  const { placement, placed, share } = believed(seen, candidates, data?.spacingHz ?? 0);
+  const { placement, placed, share } = believed(seen, candidates, { spacingHz: data?.spacingHz ?? 0, centreHz });
   const carriers = placed ? [{ referenceHz: placement!.referenceHz, weight: 1 }] : candidates.length > 0 ? candidates : possibleCarriers(context, { commonGrid: grid, inverted });
   const phases = judgePhases(cell, {
     present: lawsWithCompensation({ referenceHz, centreHz, spacingHz: cell.spacingHz, clock }),
@@ -98,12 +100,16 @@ function hasFullEdges({ inTable, edgeShare }: CarrierPlacement): boolean {
   return edgeShare > (inTable ? LISTED_EDGE : UNLISTED_EDGE);
 }
 
+function isCentred(placement: CarrierPlacement, centreHz: number | null): boolean {
+  return centreHz !== null && Math.abs(placement.referenceHz) < CENTRED_PPM * 1e-6 * centreHz;
+}
+
 /** What was seen where its edges are a listed width's own, else the likeliest carrier behind it where none rivals it. */
-function believed(seen: CarrierPlacement | null, candidates: readonly CarrierCandidate[], spacingHz: number): { placement: CarrierPlacement | null; placed: boolean; share: number } {
+function believed(seen: CarrierPlacement | null, candidates: readonly CarrierCandidate[], { spacingHz, centreHz }: { spacingHz: number; centreHz: number | null }): { placement: CarrierPlacement | null; placed: boolean; share: number } {
   if (!seen) return { placement: null, placed: false, share: 0 };
   const [best] = candidates;
   if (best && best.weight > LIKELY) return { placement: carrierOf(seen, best, spacingHz), placed: true, share: best.weight };
-  return { placement: seen, placed: seen.inTable && hasFullEdges(seen), share: candidates.find(({ referenceHz }) => referenceHz === seen.referenceHz)?.weight ?? 0 };
+  return { placement: seen, placed: hasFullEdges(seen) && (seen.inTable || isCentred(seen, centreHz)), share: candidates.find(({ referenceHz }) => referenceHz === seen.referenceHz)?.weight ?? 0 };
 }
 
 /** Places on the common grid, half a block apart, that the RF reference may have where the edges do not say: about the middle of the occupied band. */

@@ -23,8 +23,8 @@ const AHEAD = 1.5;
  * The numerology whose prefixes fit the slots best, the blind estimate's first where it is one of
  * them; null where none stands out.
  */
-export function dataNumerology(work: WorkSignal, cell: Cell, blind: BlindOfdm | null): DataPrefix | null {
-  const all = dataNumerologies(cell.spacingHz).filter(({ spacingHz }) => 16 * spacingHz <= work.rateHz);
+export function dataNumerology(work: WorkSignal, cell: Cell, { blind, centreHz }: { blind: BlindOfdm | null; centreHz: number | null }): DataPrefix | null {
+  const all = dataNumerologies(cell.spacingHz, centreHz).filter(({ spacingHz }) => 16 * spacingHz <= work.rateHz);
   const frame = {
     subframeS: cell.frameStartS,
     blocks: cell.blocks.map(({ usefulS }) => ({ fromS: usefulS - BLOCK_PREFIX / cell.spacingHz, toS: usefulS + blockSymbolS(cell.spacingHz, BLOCK_SYMBOLS) })),
