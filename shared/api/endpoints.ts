@@ -30,6 +30,7 @@ export const ENDPOINTS = {
   find: { method: 'GET', path: '/api/search', query: z.object({ q: z.string().trim().min(1).max(200) }), reply: overview.found },
 
   listIssues: { method: 'GET', path: '/api/issues', query: issues.registerQuery, reply: issues.registerPage },
+  countIssues: { method: 'GET', path: '/api/issues/counts', query: issues.registerFilter, reply: issues.registerCounts },
   fileIssue: { method: 'POST', path: '/api/issues', body: issues.newIssue, reply: issues.filedIssue },
   readIssue: { method: 'GET', path: '/api/issues/:programme/:number', reply: issues.issue },
   changeIssue: { method: 'PATCH', path: '/api/issues/:programme/:number', body: issues.changeIssue, reply: issues.issue },

@@ -33,8 +33,8 @@ export type RegisterRow = z.infer<typeof registerRow>;
 export const SORTS = ['due', 'raised', 'updated', 'severity', 'stage', 'number', 'waiting'] as const;
 const list = <T extends readonly [string, ...string[]]>(values: T) =>
   z.preprocess((v) => (typeof v === 'string' ? v.split(',').filter(Boolean) : v), z.array(z.enum(values)).optional());
-/** The register's whole state; the page's address carries the same names. */
-export const registerQuery = pageQuery.extend({
+/** Which issues the register shows. */
+export const registerFilter = z.object({
   programme: programmeCode.optional(),
   stages: list(STAGES), severities: list(SEVERITIES), codes: list(HINT_CODES),
   standing: z.enum(['unsettled', 'any', 'ended']).default('unsettled'),
@@ -42,11 +42,20 @@ export const registerQuery = pageQuery.extend({
   move: z.union([z.enum(['mine', 'anyone', 'none']), id]).default('anyone'),
   text: z.string().trim().max(200).optional(),
   late: z.stringbool().optional(),
+});
+export type RegisterFilter = z.infer<typeof registerFilter>;
+/** The register's whole state; the page's address carries the same names. */
+export const registerQuery = registerFilter.extend({
+  ...pageQuery.shape,
   sort: z.enum(SORTS).default('due'), order: z.enum(['asc', 'desc']).default('asc'),
 });
 export type RegisterQuery = z.infer<typeof registerQuery>;
-export const registerPage = z.object({ items: z.array(registerRow), total: z.number().int(), totalUnfiltered: z.number().int(), page: z.number().int(), size: z.number().int() });
+/** One page, and whether there is one after it. How many there are is asked for by itself: counting reads them all. */
+export const registerPage = z.object({ items: z.array(registerRow), page: z.number().int(), size: z.number().int(), more: z.boolean() });
 export type RegisterPage = z.infer<typeof registerPage>;
+/** How many issues match the filter, and how many there are for the reader. */
+export const registerCounts = z.object({ matching: z.number().int(), all: z.number().int() });
+export type RegisterCounts = z.infer<typeof registerCounts>;
 
 export const newIssue = z.object({
   linkId: id, title: z.string().trim().min(4, 'say in a sentence what is wrong').max(200), description: z.string().max(50_000).default(''),

@@ -16,6 +16,7 @@ export function addressesOf(name: EndpointName, known: readonly Planted[], words
     paths = paths.flatMap((each) => ids.map((id) => each.replace(`:${param}`, id)));
   }
   if (name === 'listIssues') return words.flatMap((word) => [`${path}?standing=any&size=200`, `${path}?standing=any&text=${word}`, `${path}?standing=any&sort=waiting&move=mine`]);
+  if (name === 'countIssues') return words.flatMap((word) => [`${path}?standing=any`, `${path}?standing=any&text=${word}`, `${path}?standing=any&move=mine`]);
   if (name === 'find') return words.map((word) => `${path}?q=${word}`);
   if (name === 'readAudit') return paths.map((each) => `${each}?size=200`);
   return paths;

@@ -33,22 +33,41 @@ export interface Mounted {
  * an endpoint without one does not compile. Rule and handler run in one short transaction that
  * acts for the caller.
  */
-export function endpoint<N extends EndpointName, C>(name: N, rule: Rule<C>, handle: (asked: Asked<N, C>) => Promise<undefined extends ReplyOf<N> ? void : ReplyOf<N>>): Mounted {
+export function endpoint<N extends EndpointName, C>(name: N, rule: Rule<C>, handle: (asked: Asked<N, C>) => Promise<Answer<N>>): Mounted {
+  return mounted(name, async ({ services, caller, params, ...given }) => {
+    const later: (() => Promise<void>)[] = [];
+    const reply = await services.database.asPerson(caller.personId, async () => {
+      const granted = await rule({ services, caller, params });
+      return handle({ services, caller, params, granted, ...given, afterwards: (work) => later.push(work) });
+    });
+    for (const work of later) await work().catch((error: unknown) => services.log.warn({ error }, 'what a request leaves to do could not be done'));
+    return reply;
+  });
+}
+
+/**
+ * An endpoint for any signed-in person that asks the database one question by itself
+ * (`Database.askAs`): as that person, and within the policies like all others.
+ */
+export function question<N extends EndpointName>(name: N, handle: (asked: Question<N>) => Promise<Answer<N>>): Mounted {
+  return mounted(name, handle);
+}
+
+type Question<N extends EndpointName> = Omit<Asked<N, never>, 'granted' | 'afterwards'>;
+type Answer<N extends EndpointName> = undefined extends ReplyOf<N> ? void : ReplyOf<N>;
+
+/** Parse, call, reply; what is refused is written down. */
+function mounted<N extends EndpointName>(name: N, handle: (asked: Question<N>) => Promise<Answer<N>>): Mounted {
   const definition = ENDPOINTS[name];
   const schema = <K extends string>(key: K) => (definition as unknown as Record<K, z.ZodType | undefined>)[key];
 
   const answer = async (services: Services, request: Request, response: Response) => {
     const caller = callerOf(request);
-    const query = schema('query')?.parse(request.query);
-    const body = schema('body')?.parse(request.body ?? {});
+    const query = schema('query')?.parse(request.query) as Parsed<N, 'query'>;
+    const body = schema('body')?.parse(request.body ?? {}) as Parsed<N, 'body'>;
     const params = request.params as Record<string, string>;
-    const later: (() => Promise<void>)[] = [];
     try {
-      const reply = await services.database.asPerson(caller.personId, async () => {
-        const granted = await rule({ services, caller, params });
-        return handle({ services, caller, params, granted, query: query as Parsed<N, 'query'>, body: body as Parsed<N, 'body'>, afterwards: (work) => later.push(work) });
-      });
-      for (const work of later) await work().catch((error: unknown) => services.log.warn({ error }, 'what a request leaves to do could not be done'));
+      const reply = await handle({ services, caller, params, query, body });
       if (reply === undefined) response.status(204).end();
       else response.json(definition.reply.parse(reply));
     } catch (error) {

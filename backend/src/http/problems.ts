@@ -40,8 +40,8 @@ function fromExpress(error: { status?: unknown; type?: unknown }): Refusal | nul
 }
 
 /** What PostgreSQL refuses: a policy's refusal answers like a missing row. */
-function fromDatabase(error: { original?: { code?: string }; parent?: { code?: string } }): Refusal | null {
-  const code = error.original?.code ?? error.parent?.code;
+function fromDatabase(error: { code?: unknown; original?: { code?: string } }): Refusal | null {
+  const code = error.original?.code ?? error.code;
   if (code === '42501' || code === '22P02') return notFound();
   if (code === '23503') return notFound();
   if (code === '23505') return conflict('The same thing is here already.');

@@ -1,7 +1,7 @@
 import { writeAudit } from '../access/audit.js';
 import { idParam, onIssue, signedIn } from '../access/rules.js';
 import { attachFile } from '../files/attach-file.js';
-import { endpoint, type Mounted } from '../http/endpoint.js';
+import { endpoint, question, type Mounted } from '../http/endpoint.js';
 import { conflict, notFound } from '../http/problems.js';
 import { moveIssue, signWaiver, target } from '../moves/move-issue.js';
 import { setNextMove } from '../moves/next-move.js';
@@ -10,10 +10,11 @@ import { changeIssue } from './change-issue.js';
 import { fileIssue } from './file-issue.js';
 import { readIssue } from './read-issue.js';
 import { recordEvent } from './record.js';
-import { registerPage } from './register-repository.js';
+import { registerCounts, registerPage } from './register-repository.js';
 
 export const issueEndpoints: Mounted[] = [
-  endpoint('listIssues', signedIn, ({ services, query }) => registerPage(services, query)),
+  question('listIssues', ({ services, caller, query }) => registerPage(services, caller.personId, query)),
+  question('countIssues', ({ services, caller, query }) => registerCounts(services, caller.personId, query)),
   endpoint('fileIssue', signedIn, ({ services, caller, body }) => fileIssue(services, caller, body)),
   endpoint('readIssue', onIssue('read'), ({ services, granted }) => readIssue(services, granted)),
 

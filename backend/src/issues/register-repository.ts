@@ -1,4 +1,4 @@
-import type { RegisterPage, RegisterQuery, RegisterRow } from '#shared/api/issues';
+import type { RegisterCounts, RegisterFilter, RegisterPage, RegisterQuery, RegisterRow } from '#shared/api/issues';
 import type { Services } from '../http/services.js';
 import { registerConditions, registerOrder } from './register-query.js';
 
@@ -13,6 +13,10 @@ interface Flat {
   moveId: string | null; moveName: string; moveShort: string; since: Date; due: string | null; late: boolean; waitingDays: number | null;
   raisedAt: Date; updatedAt: Date; unseen: boolean;
 }
+
+/** What a row shows of its issue; the long texts stay where they are. */
+const OF_ISSUE = `i.id, i.programme_id, i.number, i.title, i.severity, i.stage, i.open, i.link_id, i.rung_downlink, i.rung_uplink,
+  i.likely_code, i.likely_side, i.likely_confidence, i.decode_state, i.move_party_id, i.move_since, i.move_due, i.raised_at, i.updated_at`;
 
 const COLUMNS = `
   g.code as programme, i.number, i.title, i.severity, i.stage,
@@ -39,27 +43,41 @@ function shape(flat: Flat): RegisterRow {
   };
 }
 
-/** The rows of one page: the page is cut first, on an index, and only then joined. */
-export async function registerRows(services: Services, query: RegisterQuery): Promise<RegisterRow[]> {
-  const { where, bind } = registerConditions(query);
+interface Cut { readonly limit: number; readonly offset: number }
+
+/** The page is cut first, on an index, and only then joined; the parties that one may know of are read once. */
+function rowsOf(query: RegisterQuery, { limit, offset }: Cut): readonly [sql: string, bind: readonly unknown[]] {
+  const { all, bind } = registerConditions(query);
   const order = registerOrder(query);
-  const rows = await services.database.rows<Flat>(`
-    with page as materialized (
-      select i.* from issues i ${where} order by ${order} limit ${query.size} offset ${(query.page - 1) * query.size})
+  return [`
+    with page as materialized (select ${OF_ISSUE} from issues i where ${all} order by ${order} limit ${limit} offset ${offset}),
+    known as materialized (select id, name, short_name from parties)
     select ${COLUMNS}
     from page i
     join programmes g on g.id = i.programme_id join links l on l.id = i.link_id
-    join parties a on a.id = l.party_a_id join parties b on b.id = l.party_b_id
-    left join parties w on w.id = i.move_party_id
-    left join looks k on k.issue_id = i.id and k.person_id = access.person()
-    order by ${order}`, bind);
+    join known a on a.id = l.party_a_id join known b on b.id = l.party_b_id
+    left join known w on w.id = i.move_party_id
+    left join looks k on k.issue_id = i.id and k.person_id = (select access.person())
+    order by ${order}`, bind];
+}
+
+/** The rows of one page, in the caller's transaction. */
+export async function registerRows(services: Services, query: RegisterQuery): Promise<RegisterRow[]> {
+  const rows = await services.database.rows<Flat>(...rowsOf(query, { limit: query.size, offset: (query.page - 1) * query.size }));
   return rows.map(shape);
 }
 
-export async function registerPage(services: Services, query: RegisterQuery): Promise<RegisterPage> {
-  const { where, bind } = registerConditions(query);
-  const items = await registerRows(services, query);
-  const counted = await services.database.row<{ total: number }>(`select count(*)::integer as total from issues i ${where}`, bind);
-  const all = await services.database.row<{ total: number }>('select count(*)::integer as total from issues');
-  return { items, total: counted?.total ?? 0, totalUnfiltered: all?.total ?? 0, page: query.page, size: query.size };
+/** One row more than the page holds tells whether there is another page. */
+export async function registerPage({ database }: Services, personId: string, query: RegisterQuery): Promise<RegisterPage> {
+  const { page, size } = query;
+  const rows = await database.askAs<Flat>(personId, ...rowsOf(query, { limit: size + 1, offset: (page - 1) * size }));
+  return { items: rows.slice(0, size).map(shape), page, size, more: rows.length > size };
+}
+
+/** Counted as the reader: what a policy hides is in neither. */
+export async function registerCounts({ database }: Services, personId: string, filter: RegisterFilter): Promise<RegisterCounts> {
+  const { all, bind } = registerConditions(filter);
+  const [counts] = await database.askAs<RegisterCounts>(personId, `
+    select (select count(*) from issues i where ${all})::integer as matching, (select count(*) from issues)::integer as "all"`, bind);
+  return counts;
 }

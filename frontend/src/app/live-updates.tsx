@@ -6,7 +6,7 @@ import { liveEvent, type LiveEvent } from '#shared/api/overview';
 import { listen } from '../lib/live.js';
 
 const OF_ONE_ISSUE: readonly EndpointName[] = ['readIssue', 'listEntries', 'readHistory'];
-const OF_LISTS: readonly EndpointName[] = ['listIssues', 'readDaySheet', 'readOverview', 'listLinks', 'readLink'];
+const OF_LISTS: readonly EndpointName[] = ['listIssues', 'countIssues', 'readDaySheet', 'readOverview', 'listLinks', 'readLink'];
 const POLL_MS = 10_000;
 
 const refresh = (client: QueryClient, names: readonly EndpointName[]): void => {

@@ -6,9 +6,11 @@ import { useTitle } from '../components/ui/title.js';
 import { listLinks } from '../features/links/api/list-links.js';
 import { readProgramme } from '../features/programmes/api/read-programme.js';
 import { addressWith, changed, exportAddress, stateOf } from '../features/register/address.js';
+import { countIssues } from '../features/register/api/count-issues.js';
 import { listIssues, type RegisterState } from '../features/register/api/list-issues.js';
 import { columnsText, visibilityOf, type Sort } from '../features/register/columns.js';
 import { KeptViews } from '../features/register/kept-views.js';
+import { NothingHere } from '../features/register/nothing-here.js';
 import { Paging } from '../features/register/paging.js';
 import { RegisterTable } from '../features/register/register-table.js';
 import { Sentence } from '../features/register/sentence.js';
@@ -38,6 +40,7 @@ export function RegisterPage() {
   const { programme } = useMe();
   const mayFile = useMayFile(programme?.code);
   const { data, error, isPlaceholderData } = useQuery({ ...listIssues(state), placeholderData: keepPreviousData });
+  const { data: counts } = useQuery(countIssues(state));
   const { data: links } = useQuery(listLinks(programme?.code));
   const { data: parties } = useQuery({ ...readProgramme(programme?.code ?? ''), enabled: programme !== null });
   useTitle('Register');
@@ -48,7 +51,7 @@ export function RegisterPage() {
         <h1>Register</h1>
         <Sentence state={state} change={change} links={links?.items ?? []} parties={parties?.parties ?? []} />
         <div className="register-tools">
-          <span role="status">{data ? `${data.total} of ${data.totalUnfiltered}` : ''}</span>
+          <span role="status">{counts ? `${counts.matching} of ${counts.all}` : ''}</span>
           <ColumnChoice visible={visible} change={show} />
           <KeepView query={search} />
           <a className="text-button" href={exportAddress(state)} download>Export CSV</a>
@@ -58,8 +61,8 @@ export function RegisterPage() {
       <KeptViews query={search} />
       {!data && <Loading what="Reading the register" />}
       {data && data.items.length > 0 && <RegisterTable rows={data.items} state={state} visible={visible} sortBy={sortBy} stale={isPlaceholderData} />}
-      {data?.items.length === 0 && <p className="sheet empty">{data.totalUnfiltered === 0 ? 'No issue yet.' : 'No issue fits the sentence above. Change one of its phrases, or '}{data.totalUnfiltered > 0 && <Link to="/register?standing=any">show all</Link>}</p>}
-      {data && <Paging page={data.page} size={data.size} total={data.total} go={(page) => change({ page })} />}
+      {data?.items.length === 0 && <NothingHere counts={counts} />}
+      {data && <Paging of={data} total={counts?.matching} go={(page) => change({ page })} />}
     </main>
   );
 }

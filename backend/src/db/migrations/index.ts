@@ -13,6 +13,7 @@ import { up as rolesInPolicies } from './0012-roles-in-policies.js';
 import { up as quotaAndLists } from './0013-quota-and-lists.js';
 import { up as resumeByCommit } from './0014-resume-by-commit.js';
 import { up as invitationLetters } from './0015-invitation-letters.js';
+import { up as quickLists } from './0016-quick-lists.js';
 
 /** Numbered and append-only: a migration that has landed is never edited, a later one corrects it. */
 export const MIGRATIONS: readonly { name: string; up: string }[] = [
@@ -31,4 +32,5 @@ export const MIGRATIONS: readonly { name: string; up: string }[] = [
   { name: '0013-quota-and-lists', up: quotaAndLists },
   { name: '0014-resume-by-commit', up: resumeByCommit },
   { name: '0015-invitation-letters', up: invitationLetters },
+  { name: '0016-quick-lists', up: quickLists },
 ];

@@ -4,4 +4,4 @@ import { useChange } from '../../../lib/query.js';
 
 export type NewIssueInput = z.input<typeof newIssue>;
 
-export const useFileIssue = () => useChange('fileIssue', (body: NewIssueInput) => ({ body }), ['listIssues', 'readDaySheet']);
+export const useFileIssue = () => useChange('fileIssue', (body: NewIssueInput) => ({ body }), ['listIssues', 'countIssues', 'readDaySheet']);

@@ -1,2 +1,2 @@
 /** What a change of one issue makes stale. */
-export const STALE = ['readIssue', 'listIssues', 'readHistory', 'readDaySheet'] as const;
+export const STALE = ['readIssue', 'listIssues', 'countIssues', 'readHistory', 'readDaySheet'] as const;
