@@ -26,6 +26,7 @@ export const overview = z.object({
 export type Overview = z.infer<typeof overview>;
 
 export const found = z.object({ items: z.array(z.object({ programme: programmeCode, number: z.string(), title: z.string(), where: z.string(), stage })) });
+export type Found = z.infer<typeof found>;
 export const savedView = z.object({ id, name: z.string(), query: z.string() });
 export const savedViews = z.object({ items: z.array(savedView) });
 export const newSavedView = z.object({ name: z.string().trim().min(1).max(60), query: z.string().max(2000) });

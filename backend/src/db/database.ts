@@ -26,7 +26,8 @@ export class Database {
       dialectModule: { ...pg, Client: PipelinedClient },
       logging: false,
       pool: { max: options.pool ?? 20, min: 0, acquire: 15_000, idle: 10_000 },
-      dialectOptions: { statement_timeout: 30_000, idle_in_transaction_session_timeout: 30_000, keepAlive: true },
+      // Compiling a query takes longer than any of these runs.
+      dialectOptions: { statement_timeout: 30_000, idle_in_transaction_session_timeout: 30_000, keepAlive: true, options: '-c jit=off' },
       define: { timestamps: false, underscored: true },
     });
   }

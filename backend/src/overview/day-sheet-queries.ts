@@ -1,6 +1,6 @@
-import type { DaySheet } from '#shared/api/overview';
-import type { Stage } from '#shared/vocabulary';
+import type { DaySheet, Found } from '#shared/api/overview';
 import type { Services } from '../http/services.js';
+import { IS_FOUND } from '../issues/register-query.js';
 
 export async function lookedAt(services: Services): Promise<Date | null> {
   const row = await services.database.row<{ at: Date | null }>('select day_sheet_looked_at as at from people where id = access.person()');
@@ -27,15 +27,17 @@ export function runningDecodes(services: Services): Promise<DaySheet['running']>
 export async function countsFor(services: Services): Promise<DaySheet['counts']> {
   const row = await services.database.row<DaySheet['counts']>(`
     select count(*)::integer as open, count(*) filter (where severity = 'critical')::integer as critical,
-      count(*) filter (where move_due < current_date)::integer as late, count(*) filter (where move_party_id = any(access.my_parties()))::integer as mine
+      count(*) filter (where move_due < current_date)::integer as late, count(*) filter (where move_party_id = any((select access.my_parties())::uuid[]))::integer as mine
     from issues where open`);
   return row ?? { open: 0, critical: 0, late: 0, mine: 0 };
 }
 
-/** Search answers identifiers inside the scope; the rows are read again under the policies. */
-export async function foundIssues(services: Services, text: string): Promise<{ programme: string; number: string; title: string; where: string; stage: Stage }[]> {
-  return services.database.rows(`
+/** Search answers identifiers inside the scope; the rows are read under the policies, the latest first. */
+export async function foundIssues({ database }: Services, personId: string, text: string): Promise<Found['items']> {
+  return database.askAs(personId, `
+    with found as materialized (
+      select i.programme_id, i.number, i.title, i.stage, i.link_id, i.open, i.updated_at from issues i
+      where ${IS_FOUND.replace('$?', '$1')} order by i.open desc, i.updated_at desc limit 20)
     select g.code as programme, i.number, i.title, i.stage, l.name as where
-    from issues i join programmes g on g.id = i.programme_id join links l on l.id = i.link_id
-    where i.id in (select access.find_issues($1)) order by i.open desc, i.updated_at desc limit 20`, [text]);
+    from found i join programmes g on g.id = i.programme_id join links l on l.id = i.link_id order by i.open desc, i.updated_at desc`, [text]);
 }

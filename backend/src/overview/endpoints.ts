@@ -1,6 +1,6 @@
 import { registerQuery } from '#shared/api/issues';
 import { inProgramme, signedIn } from '../access/rules.js';
-import { endpoint, type Mounted } from '../http/endpoint.js';
+import { endpoint, question, type Mounted } from '../http/endpoint.js';
 import { registerRows } from '../issues/register-repository.js';
 import { changedSince, countsFor, foundIssues, lookedAt, runningDecodes } from './day-sheet-queries.js';
 import { ages, byPair, bySeverityAndStage, flowByWeek, waitingByCause, waitingByParty } from './overview-queries.js';
@@ -28,5 +28,5 @@ export const overviewEndpoints: Mounted[] = [
     waitingByCause: await waitingByCause(services, granted.programmeId),
     flow: await flowByWeek(services, granted.programmeId),
   })),
-  endpoint('find', signedIn, async ({ services, query }) => ({ items: await foundIssues(services, query.q) })),
+  question('find', async ({ services, caller, query }) => ({ items: await foundIssues(services, caller.personId, query.q) })),
 ];
