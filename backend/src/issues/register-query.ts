@@ -1,4 +1,5 @@
 import type { RegisterFilter, RegisterQuery } from '#shared/api/issues';
+import { IS_FOUND } from '../access/is-found.js';
 
 /** A WHERE clause under construction: conditions and the values that they bind, counted from $1. */
 class Conditions {
@@ -26,9 +27,6 @@ const ORDERS: Record<RegisterQuery['sort'], { readonly by: string; readonly mayM
   number: { by: 'i.number' },
   waiting: { by: 'i.move_since', mayMiss: true },
 };
-
-/** Asked once and kept as a hash, so that a page still comes off the index of its order; a plain IN is joined first. */
-export const IS_FOUND = 'coalesce(i.id in (select access.find_issues($?)), false)';
 
 /** The register's filter as SQL; who may see a row is the policies' business and not repeated here. */
 export function registerConditions(query: RegisterFilter): Conditions {

@@ -1,6 +1,6 @@
 import type { DaySheet, Found } from '#shared/api/overview';
+import { IS_FOUND } from '../access/is-found.js';
 import type { Services } from '../http/services.js';
-import { IS_FOUND } from '../issues/register-query.js';
 
 export async function lookedAt(services: Services): Promise<Date | null> {
   const row = await services.database.row<{ at: Date | null }>('select day_sheet_looked_at as at from people where id = access.person()');
