@@ -9,6 +9,8 @@ import { launchBrowser } from '../support/chromium.js';
 import { enter, openField, type Field, type Who } from '../support/field.js';
 import { watchPage } from '../support/watch-page.js';
 
+/** A page that waits for a busy server. */
+const PATIENT = { timeout: 20_000 };
 const SABLE = 'sable.orrindale@outside.example';
 let field: Field;
 let browser: Browser;
@@ -75,7 +77,7 @@ describe('what a role does not include', { timeout: 120_000 }, () => {
     const form = edda.getByRole('form', { name: 'Change the severity' });
     await form.getByRole('radio', { name: 'critical' }).check();
     await form.getByRole('button', { name: 'Keep the severity' }).click();
-    await expect.poll(() => edda.locator('.issue-number').textContent()).toContain('critical');
+    await expect.poll(() => edda.locator('.issue-number').textContent(), PATIENT).toContain('critical');
     expect(await edda.getByRole('button', { name: 'Correct the issue' }).count()).toBe(0);
     await edda.getByText(/changed the severity from "minor" to "critical"/).waitFor();
     await go(mara, path);
@@ -105,7 +107,7 @@ describe('the stage', { timeout: 180_000 }, () => {
     await move(rao, 'Take up');
     await move(rao, 'Agree the cause', { Reason: 'The list of identities is the old one.' });
     await move(rao, 'Offer a change', { 'Build that carries the change': 'V-Port 22.3.1 (side B)' });
-    await expect.poll(() => rao.locator('.ends').textContent()).toContain('22.3.1');
+    await expect.poll(() => rao.locator('.ends').textContent(), PATIENT).toContain('22.3.1');
     await go(mara, path);
     await move(mara, 'Start the retest');
     await mara.getByText('Settle: needs a clean retest on named builds').waitFor();
@@ -137,7 +139,7 @@ describe('the stage', { timeout: 180_000 }, () => {
     await ines.getByText('Vimmery Devices has not signed yet.').first().waitFor();
     expect(await ines.getByRole('button', { name: 'Sign for my party' }).count()).toBe(0);
     const rao = await openAs('rao', path);
-    await expect.poll(() => rao.locator('.next-move').textContent()).toMatch(/Vimmery Devices.*sign the waiver/);
+    await expect.poll(() => rao.locator('.next-move').textContent(), PATIENT).toMatch(/Vimmery Devices.*sign the waiver/);
     await rao.getByRole('link', { name: 'Read and sign it' }).click();
     await rao.getByRole('button', { name: 'Sign for my party' }).click();
     await rao.getByText('Waiver in force').waitFor();
@@ -200,6 +202,45 @@ describe('files put on an issue', { timeout: 180_000 }, () => {
   });
 });
 
+describe('with the keyboard alone', { timeout: 120_000 }, () => {
+  it('a form that opens takes the focus, and gives it back to where it was opened from', async () => {
+    const mara = await openAs('mara');
+    const path = await plant(mara, 'Cell found one time in five, always 100 kHz off');
+    await go(mara, path);
+    const focused = () => mara.evaluate(() => document.activeElement?.textContent ?? '');
+    const opener = mara.getByRole('button', { name: /the next move$/ });
+    await opener.focus();
+    await mara.keyboard.press('Enter');
+    await expect.poll(() => mara.evaluate(() => document.activeElement?.tagName), PATIENT).toBe('SELECT');
+    await mara.getByRole('button', { name: 'Leave as it is' }).focus();
+    await mara.keyboard.press('Enter');
+    await expect.poll(focused, PATIENT).toMatch(/the next move$/);
+    await mara.getByRole('button', { name: 'Take up' }).focus();
+    await mara.keyboard.press('Enter');
+    await expect.poll(() => mara.evaluate(() => document.activeElement?.tagName), PATIENT).toBe('TEXTAREA');
+    await mara.keyboard.type('Seen on our bench too.');
+    await mara.getByRole('form', { name: 'Take up' }).getByRole('button', { name: 'Take up' }).focus();
+    await mara.keyboard.press('Enter');
+    await expect.poll(focused, { timeout: 20_000 }).toBe('Agree the cause');
+  });
+});
+
+describe('a part of the issue that cannot be read', { timeout: 120_000 }, () => {
+  it('says so in its own place, and is there after another try', async () => {
+    const mara = await openAs('mara');
+    const path = await plant(mara, 'No carrier after the mast was rewired');
+    let broken = true;
+    await mara.route(/\/(entries|history)$/, (route) => (broken ? route.fulfill({ status: 500, contentType: 'text/plain', body: 'down' }) : route.continue()));
+    await go(mara, path);
+    await mara.getByText('The thread could not be read.').waitFor();
+    await mara.getByText('The history could not be read.').waitFor();
+    broken = false;
+    await mara.getByRole('alert').filter({ hasText: 'The thread' }).getByRole('button', { name: 'Try again' }).click();
+    await mara.getByLabel('Write an entry').waitFor();
+    await mara.getByText('The history could not be read.').waitFor();
+  });
+});
+
 describe('an invitation', { timeout: 120_000 }, () => {
   it('is a letter, whose link lets in whom it was written to', async () => {
     const tobin = await openAs('tobin', '/programme');
@@ -238,7 +279,7 @@ describe('the register', { timeout: 120_000 }, () => {
     await mara.getByRole('button', { name: 'Keep', exact: true }).click();
     await go(mara, '/register');
     await mara.getByRole('link', { name: 'Minor, newest first' }).click();
-    await expect.poll(() => new URL(mara.url()).searchParams.toString()).toBe('severities=minor&sort=raised&order=desc');
+    await expect.poll(() => new URL(mara.url()).searchParams.toString(), PATIENT).toBe('severities=minor&sort=raised&order=desc');
     const [download] = await Promise.all([mara.waitForEvent('download'), mara.getByRole('link', { name: 'Export CSV' }).click()]);
     const csv = await readFile(await download.path(), 'utf8');
     expect(csv).toContain(`"'=HYPERLINK(`);

@@ -77,7 +77,7 @@ async function settled(page: Page, landmark: RegExp): Promise<void> {
   await page.evaluate(() => document.fonts.ready.then(() => true));
 }
 
-describe.each([['light', 1440], ['dark', 1440], ['light', 390], ['dark', 390]] as const)('every page, %s, %i wide', (theme, width) => {
+describe.each([['light', 1440], ['dark', 1440], ['light', 390], ['dark', 390], ['light', 1920]] as const)('every page, %s, %i wide', (theme, width) => {
   it.each(['engineer', 'vendor', 'manager', 'administrator'] as const)('as the %s: no serious finding, no violation, nothing wider than the screen', async (who) => {
     const { context, page, complaints } = await openAs(who, { theme, width });
     for (const [name, , path, landmark] of PAGES.filter((each) => each[1] === who)) {

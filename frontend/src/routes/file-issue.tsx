@@ -48,7 +48,7 @@ function Filing() {
   const { programme } = useMe();
   const code = programme?.code ?? '';
   const [search] = useSearchParams();
-  const { data: links } = useQuery(listLinks(code));
+  const { data: links, error: unread } = useQuery(listLinks(code));
   const { data: people } = useQuery({ ...readProgramme(code), enabled: code !== '' });
   const uploads = useUploads(code);
   const files = storedOf(uploads.items);
@@ -80,7 +80,7 @@ function Filing() {
       </section>
       <form className="filing-form" onSubmit={send}>
         <IssueForm draft={draft} set={set} links={links?.items ?? []} link={link} filled={filled} builds={builds} parties={people?.parties ?? []} ownPartyIds={ownPartyIds} refused={file.error instanceof Refusal ? file.error : null} />
-        <Refused error={file.error} />
+        <Refused error={file.error ?? unread} />
         {unsided && <p className="notice waits">Say for each snapshot which side it describes; without that it takes no part in the comparison.</p>}
         {stuck > 0 && <p className="notice waits">{stuck === 1 ? 'One file is' : `${stuck} files are`} not here yet and will not be part of the issue.</p>}
         <div className="actions">

@@ -3,7 +3,9 @@ import { useState, type ReactNode } from 'react';
 import type { Issue } from '#shared/api/issues';
 import type { Decode, DecodeSummary, IssueHint } from '#shared/api/decodes';
 import type { StoredFile } from '#shared/api/files';
+import { Loading } from '../components/ui/loading.js';
 import { Section } from '../components/ui/section.js';
+import { Unread } from '../components/ui/unread.js';
 import { readDecode } from '../features/decodes/api/read-decode.js';
 import { DecodeChoice } from '../features/decodes/decode-list.js';
 import { DecodeFailed, DecodeRun } from '../features/decodes/decode-run.js';
@@ -33,8 +35,8 @@ function useShownDecode(issue: Issue) {
   const [chosen, choose] = useState<string | null>(null);
   const ended = issue.decodes.filter((d) => d.state === 'done').toSorted((x, y) => y.number - x.number);
   const shown = chosen ?? ended[0]?.id ?? null;
-  const { data } = useQuery({ ...readDecode(shown ?? ''), enabled: shown !== null });
-  return { shown, choose, ended, decode: data ?? null };
+  const { data, error, refetch } = useQuery({ ...readDecode(shown ?? ''), enabled: shown !== null });
+  return { shown, choose, ended, decode: data ?? null, error, again: refetch };
 }
 
 function Running({ summary }: { summary: DecodeSummary }) {
@@ -64,7 +66,7 @@ function Shown({ issue, decode, between }: { issue: Issue; decode: Decode; betwe
 
 /** What runs, what was found, and the way to ask for more. `between` stands between the evidence and the long tables. */
 export function IssueDecode({ issue, between }: { issue: Issue; between: ReactNode }) {
-  const { shown, choose, ended, decode } = useShownDecode(issue);
+  const { shown, choose, ended, decode, error, again } = useShownDecode(issue);
   const [asking, ask] = useState(false);
   const newest = issue.decodes.toSorted((x, y) => y.number - x.number)[0];
   return (
@@ -73,6 +75,7 @@ export function IssueDecode({ issue, between }: { issue: Issue; between: ReactNo
       {newest?.state === 'failed' && <DecodeFailed decode={newest} />}
       {decode && <Shown issue={issue} decode={decode} between={between} />}
       {issue.decodes.length === 0 && <Section title="Decode"><p className="sheet empty">No decode yet. Put a capture or the snapshots of both sides on the issue, then decode them.</p></Section>}
+      {shown && !decode && (error ? <Unread what="The decode" error={error} again={again} /> : <div className="sheet decode-awaited"><Loading what="Reading the decode" /></div>)}
       {!decode && between}
       <div className="decode-tools no-print">
         {shown && <DecodeChoice decodes={ended} shown={shown} choose={choose} />}

@@ -3,6 +3,7 @@ import type { Issue } from '#shared/api/issues';
 import type { StoredFile } from '#shared/api/files';
 import type { Side } from '#shared/vocabulary';
 import { Select, type Option } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Refused } from '../../components/ui/refused.js';
 import { useRequestDecode } from './api/request-decode.js';
 
@@ -27,7 +28,7 @@ export function RequestDecode({ issue, close }: { issue: Issue; close: () => voi
     }, { onSuccess: close });
   };
   return (
-    <form className="panel" onSubmit={send} aria-label="Decode again">
+    <OpenedForm className="panel" onSubmit={send} aria-label="Decode again">
       <div className="fields">
         <Select label="Capture" none="no capture" value={captureFileId} options={options(captures)} onChange={(e) => setCapture(e.target.value)} />
         <Select label="Snapshot of side A" none="as shared on the issue" value={snapshotAFileId} options={options(snapshots.filter((f) => f.side !== 'b'))} onChange={(e) => setA(e.target.value)} />
@@ -39,6 +40,6 @@ export function RequestDecode({ issue, close }: { issue: Issue; close: () => voi
         <button type="submit" className="button button-main" disabled={change.isPending}>Decode</button>
         <button type="button" className="button" onClick={close}>Not now</button>
       </div>
-    </form>
+    </OpenedForm>
   );
 }

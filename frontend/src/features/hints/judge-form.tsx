@@ -1,6 +1,7 @@
 import { useState, type FormEvent } from 'react';
 import type { IssueHint } from '#shared/api/decodes';
 import { TextArea } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Refused } from '../../components/ui/refused.js';
 import { useJudgeHint } from './api/judge-hint.js';
 
@@ -14,13 +15,13 @@ export function JudgeForm({ hint, verdict, close }: { hint: IssueHint; verdict: 
     change.mutate({ verdict, reason }, { onSuccess: close });
   };
   return (
-    <form className="judge-form" onSubmit={send}>
-      <TextArea autoFocus label={refutes ? 'What speaks against it' : 'What confirms it (may be left out)'} required={refutes} maxLength={2000} value={reason} onChange={(e) => setReason(e.target.value)} />
+    <OpenedForm className="judge-form" onSubmit={send}>
+      <TextArea label={refutes ? 'What speaks against it' : 'What confirms it (may be left out)'} required={refutes} maxLength={2000} value={reason} onChange={(e) => setReason(e.target.value)} />
       <Refused error={change.error} />
       <div className="actions">
         <button type="submit" className="button button-main" disabled={change.isPending}>{refutes ? 'Refute the hint' : 'Confirm the hint'}</button>
         <button type="button" className="button" onClick={close}>Not now</button>
       </div>
-    </form>
+    </OpenedForm>
   );
 }

@@ -3,6 +3,7 @@ import { useQuery } from '@tanstack/react-query';
 import type { Issue } from '#shared/api/issues';
 import { SEVERITIES, type Severity, type Side } from '#shared/vocabulary';
 import { Select, TextArea, TextField, type Option } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Refused } from '../../components/ui/refused.js';
 import { RungFields } from '../../components/ui/rungs.js';
 import { SignalPathFields } from '../../components/ui/signal-path-fields.js';
@@ -15,7 +16,7 @@ const buildOptions = (builds: readonly { id: string; label: string }[] = []): Op
 /** Corrects what the issue says. What stood there before stays in the history. */
 export function CorrectForm({ issue, close }: { issue: Issue; close: () => void }) {
   const change = useChangeIssue({ programme: issue.programme.code, number: issue.number });
-  const { data: link } = useQuery(reading('readLink', { params: { linkId: issue.link.id } }));
+  const { data: link, error: unread } = useQuery(reading('readLink', { params: { linkId: issue.link.id } }));
   const [given, setGiven] = useState({
     title: issue.title, description: issue.description, severity: issue.severity, baseline: issue.baseline, lastRung: issue.lastRung, signalPath: issue.signalPath,
     buildAId: issue.a.build?.id ?? '', buildBId: issue.b.build?.id ?? '', transmitter: issue.transmitter ?? '',
@@ -28,7 +29,7 @@ export function CorrectForm({ issue, close }: { issue: Issue; close: () => void 
     change.mutate({ version: issue.version, ...rest, buildAId: buildAId || null, buildBId: buildBId || null, transmitter: (transmitter || null) as Side | null }, { onSuccess: close });
   };
   return (
-    <form className="panel correct-form" onSubmit={send} aria-label="Correct the issue">
+    <OpenedForm className="panel correct-form" onSubmit={send} aria-label="Correct the issue">
       <TextField label="What is wrong, in a sentence" required minLength={4} maxLength={200} value={given.title} error={refused?.field('title')} onChange={(e) => set('title', e.target.value)} />
       <div className="fields">
         <Select label="Severity" value={given.severity} options={SEVERITIES.map((s) => [s, s] as const)} onChange={(e) => set('severity', e.target.value as Severity)} />
@@ -40,11 +41,11 @@ export function CorrectForm({ issue, close }: { issue: Issue; close: () => void 
       <SignalPathFields value={given.signalPath} onChange={(v) => set('signalPath', v)} />
       <TextField label="Last pair of builds that worked" maxLength={2000} value={given.baseline} onChange={(e) => set('baseline', e.target.value)} />
       <TextArea label="Description" hint="Markdown" rows={6} value={given.description} onChange={(e) => set('description', e.target.value)} />
-      <Refused error={change.error} />
+      <Refused error={change.error ?? unread} />
       <div className="actions">
         <button type="submit" className="button button-main" disabled={change.isPending}>Keep the correction</button>
         <button type="button" className="button" onClick={close}>Leave as it is</button>
       </div>
-    </form>
+    </OpenedForm>
   );
 }

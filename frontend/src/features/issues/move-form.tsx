@@ -6,16 +6,17 @@ import type { Issue, PossibleMove } from '#shared/api/issues';
 import { STAGE_LABELS, type Stage } from '#shared/vocabulary';
 import { Cautions } from '../../components/ui/cautions.js';
 import { Select, TextArea, TextField, type Option } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Refused } from '../../components/ui/refused.js';
 import { reading } from '../../lib/query.js';
 import { instant } from '../../lib/times.js';
 import { useMoveIssue } from './api/move-issue.js';
 
 /** Builds of the two units, each under its side. */
-function useBuildOptions(issue: Issue, wanted: boolean): readonly Option[] {
-  const { data } = useQuery({ ...reading('readLink', { params: { linkId: issue.link.id } }), enabled: wanted });
-  if (!data) return [];
-  return (['a', 'b'] as const).flatMap((side) => data.unitBuilds[side].map((b): Option => [b.id, `${issue[side].unit.name} ${b.label} (side ${side.toUpperCase()})`]));
+function useBuildOptions(issue: Issue, wanted: boolean): { builds: readonly Option[]; unread: unknown } {
+  const { data, error } = useQuery({ ...reading('readLink', { params: { linkId: issue.link.id } }), enabled: wanted });
+  const builds = data ? (['a', 'b'] as const).flatMap((side) => data.unitBuilds[side].map((b): Option => [b.id, `${issue[side].unit.name} ${b.label} (side ${side.toUpperCase()})`])) : [];
+  return { builds, unread: error };
 }
 
 /** The retest on which the move rests: the newest, which the server has found to be of this outcome. */
@@ -32,7 +33,7 @@ const ENDS: readonly Stage[] = ['settled', 'withdrawn'];
 export function MoveForm({ issue, move, parties, close }: { issue: Issue; move: PossibleMove; parties: readonly PartyRef[]; close: () => void }) {
   const change = useMoveIssue({ programme: issue.programme.code, number: issue.number });
   const needs = (what: PossibleMove['requires'][number]): boolean => move.requires.includes(what);
-  const builds = useBuildOptions(issue, needs('build'));
+  const { builds, unread } = useBuildOptions(issue, needs('build'));
   const [given, setGiven] = useState({ reason: '', buildId: '', endsOn: '', partyId: '', ask: '', due: '' });
   const set = (name: keyof typeof given) => (e: { target: { value: string } }): void => setGiven((g) => ({ ...g, [name]: e.target.value }));
 
@@ -46,7 +47,7 @@ export function MoveForm({ issue, move, parties, close }: { issue: Issue; move: 
     }, { onSuccess: close });
   };
   return (
-    <form className="panel" onSubmit={send} aria-label={move.label}>
+    <OpenedForm className="panel" onSubmit={send} aria-label={move.label}>
       <h3>{move.label}: {issue.programme.code}/{issue.number} goes to {STAGE_LABELS[move.to]}</h3>
       {(needs('clean-retest') || needs('failed-retest')) && <RestsOn issue={issue} />}
       <div className="fields">
@@ -61,11 +62,11 @@ export function MoveForm({ issue, move, parties, close }: { issue: Issue; move: 
         {given.partyId && <TextField label="By" type="date" value={given.due} onChange={set('due')} />}
       </fieldset>}
       {move.to === 'under-retest' && <Cautions what="the retest" />}
-      <Refused error={change.error} />
+      <Refused error={change.error ?? unread} />
       <div className="actions">
         <button type="submit" className="button button-main" disabled={change.isPending}>{move.label}</button>
         <button type="button" className="button" onClick={close}>Leave as it is</button>
       </div>
-    </form>
+    </OpenedForm>
   );
 }

@@ -3,6 +3,7 @@ import type { PartyRef } from '#shared/api/common';
 import type { Issue } from '#shared/api/issues';
 import { WAITING_CAUSES, type WaitingCause } from '#shared/vocabulary';
 import { Select, TextField } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Refused } from '../../components/ui/refused.js';
 import { useSetNextMove } from './api/set-next-move.js';
 
@@ -19,7 +20,7 @@ export function NextMoveForm({ issue, parties, close }: { issue: Issue; parties:
     change.mutate({ version: issue.version, partyId, ask, due: due || null, ...(cause ? { cause } : {}) }, { onSuccess: close });
   };
   return (
-    <form className="panel next-move-form" onSubmit={send}>
+    <OpenedForm className="panel next-move-form" onSubmit={send}>
       <Select label="Who" none="choose a party" required value={partyId} options={parties.map((p) => [p.id, p.name] as const)} onChange={(e) => setParty(e.target.value)} />
       <TextField label="Asked to" required maxLength={500} value={ask} onChange={(e) => setAsk(e.target.value)} />
       <div className="fields">
@@ -31,6 +32,6 @@ export function NextMoveForm({ issue, parties, close }: { issue: Issue; parties:
         <button type="submit" className="button button-main" disabled={change.isPending}>Pass the move</button>
         <button type="button" className="button" onClick={close}>Leave as it is</button>
       </div>
-    </form>
+    </OpenedForm>
   );
 }

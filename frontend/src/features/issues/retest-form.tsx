@@ -3,6 +3,7 @@ import { useState, type FormEvent } from 'react';
 import type { Issue } from '#shared/api/issues';
 import { Cautions } from '../../components/ui/cautions.js';
 import { Select, TextArea, type Option } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Radios } from '../../components/ui/radios.js';
 import { Refused } from '../../components/ui/refused.js';
 import { RungFields } from '../../components/ui/rungs.js';
@@ -15,7 +16,7 @@ const buildOptions = (builds: readonly { id: string; label: string }[]): Option[
 /** Records what a retest on two named builds gave; a clean one names the decode that shows it. */
 export function RetestForm({ issue, close }: { issue: Issue; close: () => void }) {
   const change = useRecordRetest({ programme: issue.programme.code, number: issue.number });
-  const { data: link } = useQuery(reading('readLink', { params: { linkId: issue.link.id } }));
+  const { data: link, error: unread } = useQuery(reading('readLink', { params: { linkId: issue.link.id } }));
   const [outcome, setOutcome] = useState<'clean' | 'failed'>('failed');
   const [buildAId, setA] = useState(issue.a.build?.id ?? '');
   const [buildBId, setB] = useState(issue.b.build?.id ?? '');
@@ -28,7 +29,7 @@ export function RetestForm({ issue, close }: { issue: Issue; close: () => void }
     change.mutate({ version: issue.version, outcome, buildAId, buildBId, decodeId: decodeId || null, note, lastRung }, { onSuccess: close });
   };
   return (
-    <form className="panel mb-4" onSubmit={send} aria-label="Record a retest">
+    <OpenedForm className="panel mb-4" onSubmit={send} aria-label="Record a retest">
       <Radios legend="Outcome" value={outcome} options={[['failed', 'failed'], ['clean', 'clean']]} onChange={setOutcome} />
       <div className="fields">
         <Select label={`Build of ${issue.a.unit.name} (side A)`} required none="choose a build" value={buildAId} options={buildOptions(link?.unitBuilds.a ?? [])} onChange={(e) => setA(e.target.value)} />
@@ -39,11 +40,11 @@ export function RetestForm({ issue, close }: { issue: Issue; close: () => void }
       </div>
       <TextArea label="Note" maxLength={2000} value={note} onChange={(e) => setNote(e.target.value)} />
       <Cautions what="the retest" />
-      <Refused error={change.error} />
+      <Refused error={change.error ?? unread} />
       <div className="actions">
         <button type="submit" className="button button-main" disabled={change.isPending}>Record the retest</button>
         <button type="button" className="button" onClick={close}>Not now</button>
       </div>
-    </form>
+    </OpenedForm>
   );
 }

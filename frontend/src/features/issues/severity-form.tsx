@@ -1,6 +1,7 @@
 import { useState, type FormEvent } from 'react';
 import type { Issue } from '#shared/api/issues';
 import { SEVERITIES, type Severity } from '#shared/vocabulary';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Radios } from '../../components/ui/radios.js';
 import { Refused } from '../../components/ui/refused.js';
 import { useChangeIssue } from './api/change-issue.js';
@@ -14,13 +15,13 @@ export function SeverityForm({ issue, close }: { issue: Issue; close: () => void
     change.mutate({ version: issue.version, severity }, { onSuccess: close });
   };
   return (
-    <form className="panel correct-form" onSubmit={send} aria-label="Change the severity">
+    <OpenedForm className="panel correct-form" onSubmit={send} aria-label="Change the severity">
       <Radios legend="Severity" value={severity} options={SEVERITIES.map((s) => [s, s] as const)} onChange={setSeverity} />
       <Refused error={change.error} />
       <div className="actions">
         <button type="submit" className="button button-main" disabled={change.isPending || severity === issue.severity}>Keep the severity</button>
         <button type="button" className="button" onClick={close}>Leave as it is</button>
       </div>
-    </form>
+    </OpenedForm>
   );
 }

@@ -2,6 +2,7 @@ import { useState, type FormEvent } from 'react';
 import type { Unit } from '#shared/api/links';
 import { INTERFACES, type LinkInterface } from '#shared/vocabulary';
 import { Select, TextField, type Option } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Refused } from '../../components/ui/refused.js';
 import { useAddLink } from './api/add-link.js';
 
@@ -22,7 +23,7 @@ export function AddLinkForm({ programme, units, close }: { programme: string; un
     add.mutate({ programme, ...rest, centreFrequencyHz: megahertz(centre) }, { onSuccess: close });
   };
   return (
-    <form className="panel mb-4" onSubmit={send} aria-label="Add a link">
+    <OpenedForm className="panel mb-4" onSubmit={send} aria-label="Add a link">
       <div className="fields">
         <TextField label="Name" required maxLength={120} hint="Where it stands, so that people know it" value={given.name} onChange={set('name')} />
         <Select label="Interface" value={given.interface} options={INTERFACES.map((i): Option => [i, i === 'wifi' ? 'Wi‑Fi' : i])} onChange={set('interface')} />
@@ -32,6 +33,6 @@ export function AddLinkForm({ programme, units, close }: { programme: string; un
       </div>
       <Refused error={add.error} />
       <div className="actions"><button type="submit" className="button button-main" disabled={add.isPending}>Add the link</button><button type="button" className="button" onClick={close}>Not now</button></div>
-    </form>
+    </OpenedForm>
   );
 }

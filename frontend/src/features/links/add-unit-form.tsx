@@ -2,6 +2,7 @@ import { useState, type FormEvent } from 'react';
 import type { PartyRef } from '#shared/api/common';
 import { PARTS } from '#shared/vocabulary';
 import { Select, TextField, type Option } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Refused } from '../../components/ui/refused.js';
 import { useAddUnit } from './api/add-unit.js';
 
@@ -10,7 +11,7 @@ export function AddUnitForm({ programme, parties, close }: { programme: string; 
   const [given, setGiven] = useState({ partyId: '', name: '', part: 'radio unit' as (typeof PARTS)[number] });
   const send = (e: FormEvent): void => { e.preventDefault(); add.mutate({ programme, ...given }, { onSuccess: close }); };
   return (
-    <form className="panel mb-4" onSubmit={send} aria-label="Add a unit">
+    <OpenedForm className="panel mb-4" onSubmit={send} aria-label="Add a unit">
       <div className="fields">
         <Select label="Party" required none="choose a party" value={given.partyId} options={parties.map((p): Option => [p.id, p.name])} onChange={(e) => setGiven({ ...given, partyId: e.target.value })} />
         <TextField label="Name" required maxLength={80} value={given.name} onChange={(e) => setGiven({ ...given, name: e.target.value })} />
@@ -18,6 +19,6 @@ export function AddUnitForm({ programme, parties, close }: { programme: string; 
       </div>
       <Refused error={add.error} />
       <div className="actions"><button type="submit" className="button button-main" disabled={add.isPending}>Add the unit</button><button type="button" className="button" onClick={close}>Not now</button></div>
-    </form>
+    </OpenedForm>
   );
 }

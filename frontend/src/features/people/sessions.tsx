@@ -2,6 +2,7 @@ import { useQuery } from '@tanstack/react-query';
 import { Refused } from '../../components/ui/refused.js';
 import { Section } from '../../components/ui/section.js';
 import { When } from '../../components/ui/when.js';
+import { browserName } from '../../lib/browsers.js';
 import { useEndMySession } from './api/end-my-session.js';
 import { listMySessions } from './api/list-my-sessions.js';
 
@@ -16,8 +17,8 @@ export function Sessions() {
         <ul className="plain-list sheet unit-list">
           {data.items.map((s) => (
             <li key={s.id} className="session-row">
-              <span>{s.agent || 'A browser that gives no name'} {s.current && <b>this one</b>}<span className="small block">signed in <When at={s.createdAt} as="full" /> · last seen <When at={s.lastSeenAt} as="full" /></span></span>
-              {!s.current && <button type="button" className="text-button" disabled={end.isPending} onClick={() => end.mutate(s.id)}>End<span className="hidden-text"> the session on {s.agent}</span></button>}
+              <span><span title={s.agent}>{browserName(s.agent)}</span> {s.current && <b>this one</b>}<span className="small block">signed in <When at={s.createdAt} as="full" /> · last seen <When at={s.lastSeenAt} as="full" /></span></span>
+              {!s.current && <button type="button" className="text-button" disabled={end.isPending} onClick={() => end.mutate(s.id)}>End<span className="hidden-text"> the session on {browserName(s.agent)}</span></button>}
             </li>
           ))}
         </ul>

@@ -1,6 +1,7 @@
 import { useState, type FormEvent } from 'react';
 import { PARTS } from '#shared/vocabulary';
 import { TextField } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Check } from '../../components/ui/radios.js';
 import { Refused } from '../../components/ui/refused.js';
 import { useAddParty } from './api/add-party.js';
@@ -14,7 +15,7 @@ export function AddPartyForm({ programme, close }: { programme: string; close: (
   const [parts, setParts] = useState<Part[]>([]);
   const send = (e: FormEvent): void => { e.preventDefault(); add.mutate({ name, shortName, parts }, { onSuccess: close }); };
   return (
-    <form className="panel mb-4" onSubmit={send} aria-label="Add a party">
+    <OpenedForm className="panel mb-4" onSubmit={send} aria-label="Add a party">
       <div className="fields">
         <TextField label="Name" required maxLength={80} value={name} onChange={(e) => setName(e.target.value)} />
         <TextField label="Short name" required maxLength={24} hint="Stands in the register’s columns" value={shortName} onChange={(e) => setShort(e.target.value)} />
@@ -24,6 +25,6 @@ export function AddPartyForm({ programme, close }: { programme: string; close: (
       </fieldset>
       <Refused error={add.error} />
       <div className="actions"><button type="submit" className="button button-main" disabled={add.isPending || parts.length === 0}>Add the party</button><button type="button" className="button" onClick={close}>Not now</button></div>
-    </form>
+    </OpenedForm>
   );
 }

@@ -2,6 +2,7 @@ import { useState, type FormEvent } from 'react';
 import type { Programme } from '#shared/api/people';
 import { ROLES, type Role } from '#shared/vocabulary';
 import { Select, TextField, type Option } from '../../components/ui/field.js';
+import { OpenedForm } from '../../components/ui/opened-form.js';
 import { Refused } from '../../components/ui/refused.js';
 import { ROLE_LABELS } from '../../lib/roles.js';
 import { instant } from '../../lib/times.js';
@@ -24,7 +25,7 @@ export function InviteForm({ programme, close }: { programme: Programme; close: 
     );
   }
   return (
-    <form className="panel mb-4" onSubmit={send} aria-label="Invite a person">
+    <OpenedForm className="panel mb-4" onSubmit={send} aria-label="Invite a person">
       <div className="fields">
         <TextField label="Address" type="email" required maxLength={254} value={email} onChange={(e) => setEmail(e.target.value)} />
         <Select label="Party" required none="choose a party" value={partyId} options={programme.parties.map((p): Option => [p.id, p.name])} onChange={(e) => setParty(e.target.value)} />
@@ -32,6 +33,6 @@ export function InviteForm({ programme, close }: { programme: Programme; close: 
       </div>
       <Refused error={invite.error} />
       <div className="actions"><button type="submit" className="button button-main" disabled={invite.isPending}>Invite</button><button type="button" className="button" onClick={close}>Not now</button></div>
-    </form>
+    </OpenedForm>
   );
 }
