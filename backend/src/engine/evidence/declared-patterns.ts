@@ -19,7 +19,8 @@ export function declaredPatterns(look: Look, declared: { readonly a: DeclaredSet
   const band = prepare(look.window, { occupied, on: null });
   const window = { iq: band.iq, startSample: band.startSample / band.decimation, sampleRateHz: band.rateHz };
   const noise = noisePower > 0 && occupied ? (noisePower * band.rateHz) / (occupied.highHz - occupied.lowHz) : null;
-  const levels = symbolLevels(window, { startSample: frameStartS * band.rateHz, spacingHz: grid.subcarrierSpacingHz, noisePower: noise });
+  const symbolsPerSlot = grid.prefixSamples.length / (grid.subcarrierSpacingHz / 30e3);
+  const levels = symbolLevels(window, { startSample: frameStartS * band.rateHz, spacingHz: grid.subcarrierSpacingHz, symbolsPerSlot: Math.round(symbolsPerSlot), noisePower: noise });
   return (['a', 'b'] as const).flatMap((side) => {
     const pattern = declared[side]?.tddPattern;
     return pattern ? [{ side, ...patternLikelihood(levels, pattern) }] : [];

@@ -13,6 +13,8 @@ export interface TddPattern {
 /** Level of every symbol of a frame-timed capture: on or off, and where it stands. */
 export interface SymbolLevels {
   readonly spacingHz: number;
+  /** 14, or 12 with the extended prefix. */
+  readonly symbolsPerSlot: number;
   /** Index of each symbol, counted from a frame's start; may begin after 0. */
   readonly indices: readonly number[];
   readonly on: readonly boolean[];
@@ -22,7 +24,9 @@ export interface SymbolLevels {
   readonly decided: boolean;
 }
 
-const SYMBOLS = 14;
+/** Symbols of a slot (TS 38.211 Tables 4.3.2-1 and 4.3.2-2). */
+const NORMAL = 14;
+const EXTENDED_HZ = 60e3;
 /** Less between the two levels is fading or load, not a pause. */
 const LEAST_CONTRAST_DB = 6;
 
@@ -30,13 +34,14 @@ export interface Frame {
   /** Start of a frame, in samples of the window's rate from the capture's start. */
   readonly startSample: number;
   readonly spacingHz: number;
+  readonly symbolsPerSlot: number;
   /** Power of the noise alone within the window's band; null where it is not known. */
   readonly noisePower: number | null;
 }
 
 /** Splits the window into symbols from a frame's start on and decides which are on. */
 export function symbolLevels(window: Window, frame: Frame): SymbolLevels {
-  const symbolS = (15e3 / frame.spacingHz) * (1e-3 / SYMBOLS);
+  const symbolS = (15e3 / frame.spacingHz) * (1e-3 / frame.symbolsPerSlot);
   const first = Math.ceil((window.startSample - frame.startSample) / (symbolS * window.sampleRateHz));
   const indices: number[] = [];
   const levels: number[] = [];
@@ -48,7 +53,7 @@ export function symbolLevels(window: Window, frame: Frame): SymbolLevels {
     indices.push(k);
     levels.push(power(window.iq, Math.floor(from), Math.floor(to)));
   }
-  return { spacingHz: frame.spacingHz, indices, ...onOrOff(levels, frame.noisePower) };
+  return { spacingHz: frame.spacingHz, symbolsPerSlot: frame.symbolsPerSlot, indices, ...onOrOff(levels, frame.noisePower) };
 }
 
 function power(iq: Float32Array, from: number, to: number): number {
@@ -114,7 +119,7 @@ function reasonOf(outside: number, quiet: number): string {
 interface Position { readonly index: number; readonly kind: 'downlink' | 'uplink' | 'flexible'; readonly onShare: number; readonly count: number }
 
 function byPosition(levels: SymbolLevels, pattern: TddPattern): Position[] {
-  const perPeriod = Math.round((pattern.periodS / 1e-3) * (levels.spacingHz / 15e3) * SYMBOLS);
+  const perPeriod = Math.round((pattern.periodS / 1e-3) * (levels.spacingHz / 15e3) * levels.symbolsPerSlot);
   const on = new Float64Array(perPeriod);
   const count = new Float64Array(perPeriod);
   levels.indices.forEach((k, i) => {
@@ -125,13 +130,19 @@ function byPosition(levels: SymbolLevels, pattern: TddPattern): Position[] {
   return Array.from(count, (n, index) => ({ index, kind: kindAt(index, perPeriod, { pattern, levels }), onShare: n > 0 ? on[index]! / n : 0, count: n })).filter((p) => p.count > 0);
 }
 
+/** Of a symbol, for what rounding does to whole ones. */
+const HAIR = 1e-6;
+
 /** Downlink, uplink or left open, for a symbol of the carrier's spacing within the pattern's period. */
 function kindAt(index: number, perPeriod: number, { pattern, levels }: { pattern: TddPattern; levels: SymbolLevels }): Position['kind'] {
-  const ratio = levels.spacingHz / pattern.referenceSpacingHz;
-  const downlink = (pattern.downlinkSlots * SYMBOLS + pattern.downlinkSymbols) * ratio;
-  const uplink = (pattern.uplinkSlots * SYMBOLS + pattern.uplinkSymbols) * ratio;
-  if (index < downlink) return 'downlink';
-  return index >= perPeriod - uplink ? 'uplink' : 'flexible';
+  const perSlot = (levels.spacingHz / pattern.referenceSpacingHz) * levels.symbolsPerSlot;
+  // The pattern's own symbols: those of its reference spacing, which the extended prefix has at 60 kHz alone.
+  const perReference = pattern.referenceSpacingHz === EXTENDED_HZ ? levels.symbolsPerSlot : NORMAL;
+  const downlink = (pattern.downlinkSlots + pattern.downlinkSymbols / perReference) * perSlot;
+  const uplink = (pattern.uplinkSlots + pattern.uplinkSymbols / perReference) * perSlot;
+  // A symbol that a boundary cuts is neither's.
+  if (index + 1 <= downlink + HAIR) return 'downlink';
+  return index >= perPeriod - uplink - HAIR ? 'uplink' : 'flexible';
 }
 
 /** Silent symbols in a row at the end of the downlink, seen in at least two periods. */

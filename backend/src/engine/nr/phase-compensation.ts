@@ -43,8 +43,11 @@ const STEPS = 40;
 const SURE_LAW = 0.99;
 /** Natural logarithm of the odds from which one law is believed. */
 const ODDS = 2;
-/** Largest χ² per degree of freedom that still counts as a fit. */
-const WORST_FIT = 6;
+/** By so much (χ², scaled to the scatter found) a law may fit worse than the best slope of all. */
+const WORST_FIT = 25;
+/** Slopes tried around the circle, and steps between two of them. */
+const SLOPES = 256;
+const FINER = 8;
 
 /** Compares the two explanations over all blocks; `null` with a reason where they cannot be told apart or neither fits. */
 export function judgePhases(cell: Cell, question: PhaseQuestion): PhaseCompensation {
@@ -56,11 +59,13 @@ export function judgePhases(cell: Cell, question: PhaseQuestion): PhaseCompensat
   const present = explain(cell, question.present, { driftHz, sigmaHz });
   const absent = explain(cell, question.absent, { driftHz, sigmaHz });
   const better = present.logLikelihood > absent.logLikelihood ? present : absent;
-  const degrees = cell.blocks.length * (BLOCK_SYMBOLS - 1);
-  const fits = better.misfit <= WORST_FIT * degrees + 20;
+  // Phase noise and fading scatter the phases about whatever slope they have: what no slope explains is no law's fault.
+  const freest = bestSlopeMisfit(cell);
+  const scale = Math.max(1, freest / Math.max(1, cell.blocks.length * (BLOCK_SYMBOLS - 1) - 1));
+  const fits = (better.misfit - freest) / scale <= WORST_FIT;
   const single = question.present.length === 1 && question.absent.length === 1;
-  const odds = Math.abs(present.logLikelihood - absent.logLikelihood) / Math.max(1, better.misfit / degrees);
-  const separation = single ? separationOf(cell, { from: present.hz, to: absent.hz, sigmaHz }) : Math.sqrt(2 * odds);
+  const odds = Math.abs(present.logLikelihood - absent.logLikelihood) / scale;
+  const separation = single ? separationOf(cell, { from: present.hz, to: absent.hz, sigmaHz }) / Math.sqrt(scale) : Math.sqrt(2 * odds);
   const verdict = { confidence: 1 / (1 + Math.exp(-Math.min(odds, 9))), separation };
   const reference = (law: Explanation) => (law.share > SURE_LAW ? { hz: question.reference.hz + law.offset.hz, sigmaHz: law.offset.sigmaHz } : null);
   if (single && separation < SIGMAS) {
@@ -134,6 +139,14 @@ function misfitOf(cell: Cell, hz: number): number {
     left.forEach((angle, l) => { total += weights[l] * wrapped(angle - middle) ** 2; });
   }
   return total;
+}
+
+/** χ² under the best of all slopes, whatever would cause it. */
+function bestSlopeMisfit(cell: Cell): number {
+  const step = 1 / (SLOPES * symbolS(cell));
+  const at = (from: number, by: number, count: number) => Array.from({ length: count }, (_, i) => ({ hz: from + i * by, misfit: misfitOf(cell, from + i * by) })).reduce((a, b) => (b.misfit < a.misfit ? b : a));
+  const coarse = at(0, step, SLOPES);
+  return at(coarse.hz - step, step / FINER, 2 * FINER + 1).misfit;
 }
 
 function wrapped(angle: number): number {
