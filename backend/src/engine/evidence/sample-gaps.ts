@@ -21,6 +21,8 @@ export interface Gap {
 const LEAST_CORRELATION = 0.25;
 /** Stretches on each side of a jump that have to agree. */
 const WITNESSES = 3;
+/** Deviations of the timing that a step has to exceed. */
+const CLEAR = 6;
 /** Samples: less is the channel's or the clock's doing. */
 const LEAST_STEP = 4;
 /** Changes from which on the drift of two unlike clocks is read. */
@@ -87,7 +89,7 @@ function stepAt(timings: readonly Timing[], i: number, symbol: number): Omit<Ste
   const left = before.map((shift) => around(shift, before[0]!, symbol));
   const step = around(median(after) - median(left), 0, symbol);
   const doubt = Math.max(0.5, spread(left), spread(after));
-  return Math.abs(step) > Math.max(LEAST_STEP, 8 * doubt) ? { step, doubt, left: median(left) } : null;
+  return Math.abs(step) > Math.max(LEAST_STEP, CLEAR * doubt) ? { step, doubt, left: median(left) } : null;
 }
 
 /** The representative of `value` nearest to `centre`, modulo `period`. */
