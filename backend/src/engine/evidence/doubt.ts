@@ -3,9 +3,11 @@ import { look, type Look, type LookOptions } from './look.js';
 import { from, type Recording } from './recording.js';
 import { suspectRate } from './rate-label.js';
 import { plausible } from './plausible.js';
-import { chooseWindows } from '../level/windows.js';
+import { chooseWindows, readWindow } from '../level/windows.js';
+import { spectrumOf } from '../spectrum/spectrum.js';
+import { meanPower } from '../vector/power.js';
 import { estimateOfdm } from '../sync/estimate.js';
-import type { SampleSource, Tried } from '../types.js';
+import type { SampleSource, Tried, Window } from '../types.js';
 
 /** A label that had to be changed before the capture decoded. */
 export interface ChangedLabel {
@@ -42,11 +44,23 @@ const FURTHER_PLACES = 2;
 function lookAround(source: SampleSource, facts: CaptureFacts, options: LookOptions): Look {
   const first = look(source, facts, options);
   if (first.choice.finding !== null) return first;
+  // Where no window showed a repetition, the same windows would show none again.
+  const known = first.repetition.found ? options : { ...options, repetition: first.repetition };
   for (const start of chooseWindows(source).slice(1, 1 + FURTHER_PLACES)) {
-    const later = look(from(source, start), facts, options);
+    if (isAlike(first, readWindow(source, start))) continue;
+    const later = look(from(source, start), facts, known);
     if (later.choice.finding !== null || (first.choice.technology === null && later.choice.technology !== null)) return later;
   }
   return first;
+}
+
+/** Levels this near are one, for a window of noise. */
+const ALIKE = 0.03;
+
+/** Nothing stands out there either, and the level is the same: another window of the same noise. */
+function isAlike({ window, spectrum }: Look, later: Window): boolean {
+  const level = meanPower(window.iq);
+  return Math.abs(meanPower(later.iq) - level) < ALIKE * level && spectrumOf(later.iq, later.sampleRateHz).occupied === null && spectrum.occupied === null;
 }
 
 /** Spacings of the standards, Hz, that a wrong rate label would hide. */

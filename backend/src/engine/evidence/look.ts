@@ -28,6 +28,8 @@ export interface Look {
 }
 
 export interface LookOptions {
+  /** What any OFDM's repetition showed, where that is known already. */
+  readonly repetition?: BlindResult | undefined;
   readonly onProgress?: ((step: string, fraction: number) => void) | undefined;
 }
 

@@ -3,7 +3,7 @@ import { activity } from '../level/activity.js';
 import { chooseWindows, readWindow } from '../level/windows.js';
 import { spectrumOf } from '../spectrum/spectrum.js';
 import type { BlindOfdm, SampleSource, SymbolGrid, Window } from '../types.js';
-import { decibels } from '../vector/power.js';
+import { decibels, meanPower } from '../vector/power.js';
 import { choose, type Choice } from './choose.js';
 import { credibility } from './credible.js';
 import { lagCurve, symbolCurve } from './curves.js';
@@ -45,14 +45,21 @@ export function estimateOfdm(source: SampleSource, options: EstimateOptions = {}
 export function analyseOfdm(source: SampleSource, options: EstimateOptions = {}): BlindResult {
   let first: BlindResult | null = null;
   const windowS = lengthFor(source, options.occupied ?? null);
+  let level = 0;
   for (const start of chooseWindows(source, { windowS, further: options.further ?? 3 })) {
-    const result = analyseWindow(readWindow(source, start, windowS), options);
+    const window = readWindow(source, start, windowS);
+    const here = meanPower(window.iq);
+    // Another window of the same level shows no more of what never pauses.
+    if (first && Math.abs(here - level) < ALIKE * level) continue;
+    const result = analyseWindow(window, options);
     if (result.found) return result;
-    first ??= result;
+    if (!first) [first, level] = [result, here];
   }
   return first ?? { found: null, prefixCorrelation: null, reason: 'the capture is empty' };
 }
 
+/** Levels this near are one. */
+const ALIKE = 0.03;
 const FEWEST_SAMPLES = 512;
 /** Independent samples of the signal that a window should hold, and how long and large it may grow for that. */
 const WANTED = 20_000;

@@ -33,9 +33,9 @@ export function scanLags(working: Working, { from, to, count }: { from: number; 
 const MOST_PRODUCTS = 3e7;
 const PER_LAG = 40_000;
 /** Symbols that a scan of one lag needs: a prefix of three independent samples then stands at some hundred times chance. */
-const SYMBOLS = 160;
-/** Symbol-period strength that chance reaches at one of some 10⁵ lags and periods once in some hundred windows: what passes is scored in full. */
-const WORTH = 9;
+const SYMBOLS = 240;
+/** Symbol-period strength that chance reaches at about one of 10⁵ pairs of lag and period: what passes is scored in full, where chance is excluded. */
+const WORTH = 6;
 
 /**
  * Lags from the shortest on, as far as the budget reaches, each with the strongest symbol period

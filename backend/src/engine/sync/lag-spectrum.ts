@@ -42,7 +42,7 @@ export function lagSpectrum({ iq, rateHz }: Working, maxLag: number): LagSpectru
 }
 
 /** The longest single transform; a longer window is averaged piece by piece. */
-const MOST_POINTS = 1 << 19;
+const MOST_POINTS = 1 << 18;
 /** A line stands this far above its neighbourhood; noise exceeds it once in 400 bins. */
 const LINE = 6;
 

@@ -30,6 +30,7 @@ const GATED = 0.8;
 /** Enough for thousands of symbols at the widest spacings; more would only take time. */
 const MOST_BLOCKS = 140_000;
 const MOST_BURSTS = 12;
+const NEVER_PAUSES = 0.99;
 /** Preamble of a Wi-Fi frame: training and signalling symbols with a prefix that is not the data's. */
 const PREAMBLE_S = 44e-6;
 
@@ -154,7 +155,8 @@ function scoreListed(products: Products, h: Hypothesis, { whole, gated, bursts }
   }
   const skip = (PREAMBLE_S * products.rateHz) / products.sums.hop;
   const data = bursts.map((s) => (s.to - s.from > 1.5 * skip ? { from: Math.floor(s.from + skip), to: s.to } : s));
-  return better(scoreCoherent(products, h, whole), scoreBursts(products, h, data.map((s) => stretchOf(products.sums, [s]))));
+  const continuous = scoreCoherent(products, h, whole);
+  return data.length === 0 ? continuous : better(continuous, scoreBursts(products, h, data.map((s) => stretchOf(products.sums, [s]))));
 }
 
 function scoreFree(products: Products, { whole, bursts }: Stretches): Scored[] {
@@ -197,7 +199,10 @@ function onSpans(window: Prepared, sums: LagSums): Span[] | null {
   return total > 0 && total < GATED * limit ? spans : null;
 }
 
+/** None where the signal never pauses: the whole says the same. */
 function burstSpans(window: Prepared, sums: LagSums): Span[] {
+  const [first] = window.on;
+  if (window.on.length === 1 && first && first.end - first.start > NEVER_PAUSES * (window.iq.length >> 1)) return [];
   return window.on
     .map(({ start, end }) => ({ from: Math.max(0, Math.ceil(start / sums.hop)), to: Math.min(sums.re.length, Math.floor((end - sums.lag) / sums.hop)) }))
     .filter((s) => s.to - s.from > (2.5 * sums.lag) / sums.hop)
