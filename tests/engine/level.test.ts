@@ -42,6 +42,8 @@ describe('level', () => {
     expect(plausible(asSource(iq))).toBe(true);
     // IEEE 754: the exponent then stands in mantissa bits, so that magnitudes run over all decades.
     expect(plausible(asSource(swapped.map((v) => (Number.isFinite(v) ? v : 0))))).toBe(false);
+    // Overdriven by 9 dB: two rails, and a signal all the same.
+    expect(plausible(asSource(iq.map((v) => Math.max(-0.025, Math.min(0.025, v)))))).toBe(true);
     // A pause of four fifths of the time, 60 dB down, is a signal all the same.
     expect(plausible(asSource(iq.map((v, i) => (i % 10_000 < 2000 ? v : 1e-3 * v))))).toBe(true);
   });

@@ -1,6 +1,8 @@
+import { clippedFraction } from '../level/clipping.js';
 import type { SampleSource } from '../types.js';
 
 const SAMPLES = 32_768;
+const OVERDRIVEN = 0.02;
 
 /**
  * Do the values look like a received signal? I and Q of any modulation that fills its band are
@@ -15,7 +17,9 @@ export function plausible(source: SampleSource): boolean {
   const q = shape(iq, 1);
   if (!(i.power > 0) || !(q.power > 0)) return false;
   const alike = Math.abs(Math.log(i.power / q.power)) < Math.log(2);
-  return alike && oneScale(iq) && [i, q].every(({ kurtosis }) => kurtosis > 1.9 && kurtosis < 300);
+  // An overdriven receiver flattens the peaks: the rails show it.
+  const least = clippedFraction(iq) > OVERDRIVEN ? 0 : 1.9;
+  return alike && oneScale(iq) && [i, q].every(({ kurtosis }) => kurtosis > least && kurtosis < 300);
 }
 
 /** Widest range of magnitudes, from the lowest tenth to the highest: 160 dB is beyond any receiver, pauses included. */
