@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { lteUplink, type UplinkSpec } from '#backend/generator/lte/uplink';
+import { spreadDemodulation } from '#engine/ofdm/spread-demodulation';
 import { surveyLte } from '#engine/lte/detect';
 import { capture, context, type Reception } from './air-capture.js';
 
@@ -30,6 +31,17 @@ describe('uplink of one terminal from the project\'s own generator', () => {
       });
     }
   }
+
+  it.each(['qpsk', '16qam'] as const)('closes on %s after the transform back over the allocation (TS 36.211 clause 5.3.3)', (modulation) => {
+    const { source } = capture(lteUplink({ ...SPEC, modulation }), { ...AIR, snrDb: 22 });
+    const { spreadPoints } = surveyLte(context(source)).finding!;
+    const { evmPercent, evmRandomPercent, order, closes } = spreadDemodulation(spreadPoints!, { subcarrierSpacingHz: 15e3, cyclicPrefix: 'normal' });
+    expect(order).toBe(modulation);
+    expect(closes).toBe(true);
+    // 22 dB are 8 %; the channel estimate adds a seventh of that power.
+    expect(evmPercent!).toBeLessThan(11);
+    expect(evmRandomPercent!).toBeGreaterThan(2 * evmPercent!);
+  });
 
   it('leaves the shift open where two clocks\' error may explain it, and where the centre is not stated', () => {
     const high = value({ ...SPEC, carrierHz: 3.7e9 }, AIR, 3.7e9)!;

@@ -72,6 +72,8 @@ export interface TechnologyFinding {
   readonly announced: Readonly<Record<string, string | number | boolean>>;
   readonly grid: SymbolGrid | null;
   readonly tried: readonly Tried[];
+  /** Data points of a single carrier, interleaved, unit mean power: its subcarriers show no constellation. */
+  readonly spreadPoints?: Float64Array;
 }
 
 export interface LevelFacts {

@@ -6,6 +6,7 @@ import { prefixSamples, SPACING_HZ, symbolStart, symbolsPerSlot } from './numero
 import type { PrefixFit } from './prefix-search.js';
 import { symbolRows } from './rows.js';
 import type { Rows } from './rows.js';
+import { spreadPoints } from './spread-points.js';
 import { allocated, searchUplink } from './uplink-search.js';
 import type { UplinkFit } from './uplink-search.js';
 
@@ -53,10 +54,19 @@ function uplinkFinding(context: DetectionContext, window: NativeWindow, found: F
     ...quality(found, known, absent),
   };
   return {
-    technology: 'lte', confidence, spectrumInverted: false, air, announced: {},
+    technology: 'lte', confidence, spectrumInverted: false, air, announced: {}, spreadPoints: dataPoints(window, found),
     grid: grid(context, window, { ...found, residue }),
     tried: [{ what: 'LTE uplink', result: `reference symbols of group ${uplink.group}, ${uplink.score.toFixed(0)} standard deviations above chance` }],
   };
+}
+
+/** Cut anew where the slot turned out to begin at another symbol: the longer prefix then stands where it is sent. */
+function dataPoints(window: NativeWindow, { fit, rows, uplink }: Found): Float64Array {
+  const away = uplink.symbol - (fit.prefix === 'normal' ? 3 : 2);
+  if (away === 0 || fit.prefix === 'extended') return spreadPoints(rows, uplink);
+  const slotStart = rows.cut.slotStart + symbolStart(fit.prefix, away, window.size);
+  const moved = symbolRows(window, { ...rows.cut, slotStart });
+  return spreadPoints(moved, { ...uplink, symbol: 3, symbols: uplink.symbols.map((s) => s - away) });
 }
 
 function wrapped(hz: number): number {

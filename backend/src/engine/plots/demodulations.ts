@@ -3,6 +3,7 @@ import type { AnalyseOptions, DeclaredSettings } from '../analyse.js';
 import type { Look } from '../evidence/look.js';
 import type { Order } from '../ofdm/constellation.js';
 import { demodulateUnder } from '../ofdm/demodulate.js';
+import { spreadDemodulation } from '../ofdm/spread-demodulation.js';
 import type { DemodulationSettings } from '../ofdm/settings.js';
 
 /**
@@ -11,7 +12,7 @@ import type { DemodulationSettings } from '../ofdm/settings.js';
  */
 export function demodulations(look: Look, air: Readonly<Record<string, AirValue>>, { declared, onProgress }: AnalyseOptions): Demodulation[] {
   const own = ownSettings(air);
-  const best = own ? under(look, own, { name: 'air', order: null }) : null;
+  const best = own ? spreadUnder(look, own) ?? under(look, own, { name: 'air', order: null }) : null;
   const order = (best?.order ?? 'qpsk') as Order;
   const done: Demodulation[] = best ? [best] : [];
   (['a', 'b'] as const).forEach((side, i) => {
@@ -22,6 +23,12 @@ export function demodulations(look: Look, air: Readonly<Record<string, AirValue>
     done.push(same ? { ...same, under: side } : under(look, settings, { name: side, order }));
   });
   return [...done.filter((d) => d.under !== 'air'), ...done.filter((d) => d.under === 'air')];
+}
+
+/** A single carrier's points, which its subcarriers do not show; null for any other signal. */
+function spreadUnder({ choice }: Look, settings: DemodulationSettings): Demodulation | null {
+  const points = choice.finding?.spreadPoints;
+  return points && points.length > 0 ? spreadDemodulation(points, settings) : null;
 }
 
 function under(look: Look, settings: DemodulationSettings, as: { name: 'a' | 'b' | 'air'; order: Order | null }): Demodulation {
