@@ -2,6 +2,8 @@ import { describe, expect, it } from 'vitest';
 import { nrCarrier } from '#backend/generator/nr/carrier';
 import type { NrSpec } from '#backend/generator/nr/spec';
 import { look } from '#engine/evidence/look';
+import { detectNr } from '#engine/nr/detect';
+import { estimateOfdm } from '#engine/sync/estimate';
 import { withoutDc } from '#engine/level/without-dc';
 import { capture, context, memory, noise, type Reception } from './air-capture.js';
 
@@ -43,6 +45,13 @@ describe('a cell of the project\'s own generator', () => {
       expect(Math.abs((air.sampleClockOffsetPpm.value as number) - clockPpm)).toBeLessThan(0.5);
     });
   }
+
+  it('whose block lies outside what stands out, as behind a fade', () => {
+    const { source } = capture(nrCarrier(CELL), { ...AIR, durationS: 0.004 });
+    const tuned = { ...source, centreFrequencyHz: CELL.carrierHz };
+    const finding = detectNr({ ...context(tuned), blind: estimateOfdm(tuned), occupied: { lowHz: -6.8e6, highHz: -2.5e6 } });
+    expect(finding?.air.physicalCellId.value).toBe(322);
+  });
 
   it('whose first block lost samples within a symbol', () => {
     const blockS = (2 * 4384 + 208) / 61.44e6;

@@ -4,7 +4,7 @@ import { goldBits } from '#engine/coding/gold';
 import { broadcastLayout } from '#engine/nr/block-layout';
 import { BLOCK_PATTERNS } from '#engine/nr/block-pattern';
 import { prefixTs, usefulStartTs, usefulTs } from '#engine/nr/numerology';
-import { globalRasterWithin, nearestOnGlobalRaster, syncRasterWithin } from '#engine/nr/raster';
+import { globalRasterWithin, nearestOnGlobalRaster, syncRasterDistanceHz, syncRasterWithin } from '#engine/nr/raster';
 import { broadcastReference, primarySequence, secondarySequence } from '#engine/nr/sequences';
 
 const chips = (sequence: ArrayLike<number>) => Array.from(sequence, (value) => (value > 0 ? '0' : '1')).join('');
@@ -105,6 +105,8 @@ describe('rasters', () => {
     // GSCN 5279 to 5281 are three of one cluster, 100 kHz apart; the next cluster is 1.2 MHz on.
     expect(syncRasterWithin(2111.9e6, 2112.4e6)).toEqual([2112.05e6, 2112.15e6, 2112.25e6]);
     expect(syncRasterWithin(3554.41e6, 3555.83e6)).toEqual([]);
+    expect(syncRasterDistanceHz(3554.4e6 + 4321)).toBeCloseTo(4321, 3);
+    expect(syncRasterDistanceHz(2112.05e6 + 60e3)).toBeCloseTo(40e3, 3);
   });
   it('know the global raster (Table 5.4.2.1-1)', () => {
     expect(nearestOnGlobalRaster(3489.42e6 + 3000)).toBe(3489.42e6);

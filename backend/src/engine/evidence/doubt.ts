@@ -1,5 +1,6 @@
 import type { CaptureFacts } from '#shared/decode';
 import { look, type Look, type LookOptions } from './look.js';
+import { syncRasterDistanceHz } from '../nr/raster.js';
 import { from, type Recording } from './recording.js';
 import { suspectRate } from './rate-label.js';
 import { plausible } from './plausible.js';
@@ -72,7 +73,10 @@ const DOUBLINGS = [2, 1 / 2];
 
 function otherRate(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
   const suspicion = suspectRate(plain.blind);
-  if (suspicion) return relabelled(recording, { plain, ...suspicion, sure: true }, options);
+  if (suspicion) {
+    const other = relabelled(recording, { plain, ...suspicion, sure: true }, options);
+    return other && standsBetter(plain, other.look) ? null : other;
+  }
   if (plain.choice.technology !== 'ofdm' || !plain.blind) return null;
   const spacing = plain.blind.subcarrierSpacingHz;
   const ratio = RATE_RATIOS.find((r) => isOneOf(STANDARD_HZ, spacing * r));
@@ -89,6 +93,27 @@ function doubled(recording: Recording, plain: Look, options: LookOptions): Doubt
     if (found) return found;
   }
   return null;
+}
+
+/** Parts per million by which one reading's block has to stand nearer to its raster than the other's. */
+const NEARER_PPM = 3;
+
+/**
+ * A cell of 15 kHz decodes at twice its rate too, as one of 30 kHz, and the other way round: its
+ * block then stands at twice its distance from the tuner, and off the raster. True where the
+ * reading as labelled decodes and stands nearer to it.
+ */
+function standsBetter(plain: Look, other: Look): boolean {
+  const here = offRasterPpm(plain);
+  const there = offRasterPpm(other);
+  return here !== null && (there === null || here + NEARER_PPM < there);
+}
+
+/** How far a decoded NR cell's block stands from the synchronisation raster; null without one, or without a stated centre. */
+function offRasterPpm({ choice }: Look): number | null {
+  const block = choice.finding?.air['ssbFrequencyHz']?.value;
+  if (choice.finding?.air['mib']?.value == null || typeof block !== 'number') return null;
+  return (1e6 * syncRasterDistanceHz(block)) / block;
 }
 
 function isOneOf(list: readonly number[], hz: number): boolean {

@@ -2,6 +2,7 @@ import type { DetectionContext } from '../types.js';
 import { BlockReader } from './block-reader.js';
 import { BothSenses, searchBlock, type FoundBlock } from './block-search.js';
 import { blockSpacings } from './block-search-plan.js';
+import { numerologyOf } from './numerology.js';
 import { PrimaryScan } from './primary-scan.js';
 import { planWindows } from './search-windows.js';
 import { planWork, readWork, type WorkSignal } from './work-signal.js';
@@ -18,14 +19,29 @@ export interface BlockFinding {
   readonly work: WorkSignal;
 }
 
-/** The first synchronisation block that stands up to its three signals, at any spacing, frequency and sense. */
+/** Above this data spacing nothing but NR comes into question, so that a second search is worth its cost. */
+const NR_ALONE_HZ = 25e3;
+const TRUSTED = 0.9;
+
+/**
+ * The first synchronisation block that stands up to its three signals, at any spacing, frequency
+ * and sense: in the occupied band, then, for data that only NR has, in all that was recorded: a
+ * fade may hide the part of the carrier that holds the block.
+ */
 export function findBlock(context: DetectionContext): BlockFinding | null {
+  const { occupied, blind } = context;
+  const found = searchIn(context, occupied);
+  const mu = blind && blind.confidence >= TRUSTED && blind.subcarrierSpacingHz > NR_ALONE_HZ ? numerologyOf(blind.subcarrierSpacingHz) : null;
+  return found ?? (occupied && mu !== null ? searchIn(context, null) : null);
+}
+
+function searchIn(context: DetectionContext, occupied: DetectionContext['occupied']): BlockFinding | null {
   const { source, blind } = context;
   const whole = { lowHz: -source.sampleRateHz / 2, highHz: source.sampleRateHz / 2 };
   const spacings = blockSpacings({ sampleRateHz: source.sampleRateHz, centreHz: source.centreFrequencyHz, blind });
   for (const [i, spacingHz] of spacings.entries()) {
     context.onProgress?.(`NR synchronisation block, ${spacingHz / 1000} kHz`, i / spacings.length);
-    const band = searchBand(context, spacingHz) ?? whole;
+    const band = searchBand(occupied, source.sampleRateHz, spacingHz) ?? whole;
     const plan = planWork(source.sampleRateHz, band, 256 * spacingHz);
     const work = readWork(source, plan, { startS: 0, durationS: WINDOW_S });
     const scan = new PrimaryScan(work, spacingHz, { lowHz: band.lowHz - plan.centreHz, highHz: band.highHz - plan.centreHz });
@@ -39,10 +55,10 @@ export function findBlock(context: DetectionContext): BlockFinding | null {
 }
 
 /** The occupied band and some subcarriers more, no narrower than a block; null where nothing stands out. */
-function searchBand({ occupied, source }: DetectionContext, spacingHz: number): { lowHz: number; highHz: number } | null {
+function searchBand(occupied: DetectionContext['occupied'], sampleRateHz: number, spacingHz: number): { lowHz: number; highHz: number } | null {
   if (!occupied) return null;
   const middle = (occupied.lowHz + occupied.highHz) / 2;
   const half = Math.max((occupied.highHz - occupied.lowHz) / 2 + 8 * spacingHz, 124 * spacingHz);
-  const edge = source.sampleRateHz / 2;
+  const edge = sampleRateHz / 2;
   return { lowHz: Math.max(-edge, middle - half), highHz: Math.min(edge, middle + half) };
 }

@@ -14,6 +14,12 @@ export function syncRasterWithin(lowHz: number, highHz: number): number[] {
     .filter((hz) => hz >= lowHz && hz <= highHz);
 }
 
+/** Distance to the nearest of them. */
+export function syncRasterDistanceHz(frequencyHz: number): number {
+  const { step } = syncSpan(frequencyHz);
+  return Math.min(...syncRasterWithin(frequencyHz - step, frequencyHz + step).map((hz) => Math.abs(hz - frequencyHz)));
+}
+
 /** Mean distance of its places. */
 export function syncRasterStepHz(frequencyHz: number): number {
   const { step, offsets } = syncSpan(frequencyHz);
