@@ -4,7 +4,7 @@ import type { Gap } from './sample-gaps.js';
 
 /** Little less than half a frame of LTE: the least that is likely to hold a synchronisation signal. */
 const LEAST_S = 3.5e-3;
-/** A loss's place is known to a stretch of about this length. */
+/** A place is the first stretch that is timed anew: the loss lies up to this much before it. */
 const DOUBT_S = 0.5e-3;
 const MOST_PARTS = 3;
 
@@ -31,8 +31,8 @@ function isComplete({ choice }: Look): boolean {
 function partsOf(source: SampleSource, { places }: Gap): SampleSource[] {
   const { sampleRateHz, centreFrequencyHz, samples } = source;
   const doubt = Math.round(DOUBT_S * sampleRateHz);
-  const edges = [-doubt, ...places, samples + doubt];
-  return edges.slice(1).map((to, i) => ({ start: edges[i]! + doubt, count: to - edges[i]! - 2 * doubt }))
+  const edges = [0, ...places, samples + doubt];
+  return edges.slice(1).map((to, i) => ({ start: edges[i]!, count: to - edges[i]! - doubt }))
     .filter(({ count }) => count > LEAST_S * sampleRateHz)
     .sort((a, b) => b.count - a.count)
     .map(({ start, count }) => ({ sampleRateHz, centreFrequencyHz, samples: count, read: (at, wanted) => source.read(start + at, Math.max(0, Math.min(wanted, count - at))) }));

@@ -22,7 +22,7 @@ const LEAST_CORRELATION = 0.25;
 /** Stretches on each side of a jump that have to agree. */
 const WITNESSES = 3;
 /** Deviations of the timing that a step has to exceed. */
-const CLEAR = 6;
+const CLEAR = 7;
 /** Samples: less is the channel's or the clock's doing. */
 const LEAST_STEP = 4;
 /** Changes from which on the drift of two unlike clocks is read. */
@@ -72,15 +72,26 @@ function firstAfter(timings: readonly Timing[], { index, step, left }: Step & { 
   return index;
 }
 
-/** Two clocks drift apart evenly: the mean of the small changes is theirs, a loss is not small. */
+/**
+ * Two clocks drift apart evenly: the rate that leaves the least sum of changes (their median,
+ * weighted by the time between), which a few losses do not move, then the mean of those near it.
+ */
 function withoutDrift(timings: readonly Timing[]): Timing[] {
   const changes = timings.slice(1).map((t, i) => ({ shift: t.shift - timings[i]!.shift, samples: t.atSample - timings[i]!.atSample }));
   if (changes.length < DRIFT_SPAN) return [...timings];
-  const usual = median(changes.map((c) => c.shift));
-  const reach = Math.max(3, 4.5 * median(changes.map((c) => Math.abs(c.shift - usual))));
-  const small = changes.filter((c) => Math.abs(c.shift - usual) <= reach);
-  const slope = small.reduce((sum, c) => sum + c.shift, 0) / small.reduce((sum, c) => sum + c.samples, 0);
+  const usual = weightedMedian(changes);
+  const near = changes.filter((c) => Math.abs(c.shift - usual * c.samples) <= NEAR);
+  const slope = near.length < changes.length / 3 ? usual : near.reduce((sum, c) => sum + c.shift, 0) / near.reduce((sum, c) => sum + c.samples, 0);
   return timings.map((t) => ({ ...t, shift: t.shift - slope * t.atSample }));
+}
+
+/** Timings are whole samples: a change within this of the usual one is no jump. */
+const NEAR = 1.5;
+
+function weightedMedian(changes: readonly { shift: number; samples: number }[]): number {
+  const sorted = changes.map((c) => ({ rate: c.shift / c.samples, weight: c.samples })).sort((a, b) => a.rate - b.rate);
+  let left = sorted.reduce((sum, c) => sum + c.weight, 0) / 2;
+  return (sorted.find((c) => (left -= c.weight) <= 0) ?? sorted[0]!).rate;
 }
 
 function stepAt(timings: readonly Timing[], i: number, symbol: number): Omit<Step, 'at'> | null {
