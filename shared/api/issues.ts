@@ -3,7 +3,7 @@ import { day, id, instant, issueNumber, linkInterface, pageQuery, partyRef, pers
 import { decodeSummary, issueHint } from './decodes.js';
 import { storedFile, veiledFile } from './files.js';
 import { linkEnd } from './links.js';
-import { HINT_CODES, HINT_SIDES, SEVERITIES, STAGES, WAITING_CAUSES } from '../vocabulary.js';
+import { HINT_CODES, HINT_SIDES, SEVERITIES, SIDES, STAGES, WAITING_CAUSES } from '../vocabulary.js';
 
 export const SIGNAL_PATHS = ['cabled', 'radiated', 'shielded chamber'] as const;
 export const signalPath = z.object({
@@ -81,7 +81,11 @@ export type ChangeIssue = z.infer<typeof changeIssue>;
 
 /** A move of the stage that the caller may make now, and what it asks for. */
 export const REQUIREMENTS = ['build', 'clean-retest', 'failed-retest', 'reason', 'end-date'] as const;
-export const possibleMove = z.object({ to: stage, label: z.string(), requires: z.array(z.enum(REQUIREMENTS)), blockedBy: z.string().nullable() });
+export const possibleMove = z.object({
+  to: stage, label: z.string(), requires: z.array(z.enum(REQUIREMENTS)), blockedBy: z.string().nullable(),
+  /** Sides of whose unit a build may be named. */
+  buildSides: z.array(z.enum(SIDES)),
+});
 export type PossibleMove = z.infer<typeof possibleMove>;
 export const newMove = z.object({
   to: stage, version: z.number().int(), reason: z.string().trim().max(2000).optional(), buildId: id.optional(),

@@ -72,6 +72,9 @@ describe('an issue from filing to settled', () => {
     expect((await move('rao', { to: 'cause-agreed' })).status).toBe(422);
     expect((await move('rao', { to: 'cause-agreed', reason: 'The terminal reads the wrong file.' })).status).toBe(200);
     expect((await move('rao', { to: 'change-offered' })).status).toBe(422);
+    expect((await world.as('rao').get(path)).body.moves.find(({ to }: { to: string }) => to === 'change-offered').buildSides).toEqual(['b']);
+    const others = await move('rao', { to: 'change-offered', buildId: world.builds.radio1 });
+    expect([others.status, JSON.stringify(others.body)]).toEqual([422, expect.stringContaining('its own party or the test lab offers it')]);
     expect((await move('rao', { to: 'change-offered', buildId: world.builds.device2 })).status).toBe(200);
     expect((await move('rao', { to: 'under-retest' })).status).toBe(403);
     expect((await move('mara', { to: 'under-retest' })).status).toBe(200);

@@ -9,7 +9,7 @@ import { isOnASide } from '../moves/move-issue.js';
 import { freshOutcome } from '../moves/retest.js';
 import { movesFrom } from '../moves/stage-table.js';
 import { currentMove, followingOf, issueRow, partiesOn, retestsOf, waitedByCause, waiverOf, type IssueRow } from './issue-queries.js';
-import { mayChange, standingOnLink } from './standing.js';
+import { mayChange, offersBuildsOf, standingOnLink } from './standing.js';
 
 const NO_PATH = { path: null, attenuationDb: null, levelDbm: null, clockSource: null, lateCounters: null };
 
@@ -68,7 +68,7 @@ async function waiver(services: Services, issue: GrantedIssue): Promise<Issue['w
 /** The moves with what still blocks each, so that the page can say it before anyone tries. */
 function possibleMoves(issue: GrantedIssue, row: IssueRow, outcome: 'clean' | 'failed' | null): PossibleMove[] {
   return movesFrom(row.stage, issue.standing.role, standingOnLink(issue)).map(({ to, label, requires }) => ({
-    to, label, requires: [...requires],
+    to, label, requires: [...requires], buildSides: requires.includes('build') ? offersBuildsOf(issue) : [],
     blockedBy: requires.includes('clean-retest') && outcome !== 'clean' ? 'needs a clean retest on named builds'
       : requires.includes('failed-retest') && outcome !== 'failed' ? 'needs a failed retest' : null,
   }));

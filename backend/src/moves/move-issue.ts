@@ -5,7 +5,7 @@ import type { GrantedIssue } from '../access/rules.js';
 import { conflict, forbidden, invalid, notFound, Refusal } from '../http/problems.js';
 import type { Caller, Services } from '../http/services.js';
 import { queueMail, recordEvent } from '../issues/record.js';
-import { standingOnLink } from '../issues/standing.js';
+import { offersBuildsOf, standingOnLink } from '../issues/standing.js';
 import { endNextMove, setNextMove } from './next-move.js';
 import { freshOutcome } from './retest.js';
 import { movesFrom, type StageMove } from './stage-table.js';
@@ -60,6 +60,7 @@ async function offerBuild(services: Services, issue: GrantedIssue, asked: NewMov
     select b.label, u.name as unit, case when l.unit_a_id = u.id then 'a' else 'b' end as side
     from builds b join units u on u.id = b.unit_id join links l on l.id = $2 and u.id in (l.unit_a_id, l.unit_b_id) where b.id = $1`, [asked.buildId, issue.linkId]);
   if (!build) throw invalid('buildId', 'this build is on neither unit of the link');
+  if (!offersBuildsOf(issue).includes(build.side)) throw invalid('buildId', `this build is side ${build.side.toUpperCase()}'s: its own party or the test lab offers it`);
   await services.database.change(`update issues set build_${build.side === 'a' ? 'a' : 'b'}_id = $2 where id = $1`, [issue.issueId, asked.buildId]);
   return ` with build ${build.label} of ${build.unit}${asked.reason ? `: ${asked.reason}` : ''}`;
 }

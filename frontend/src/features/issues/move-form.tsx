@@ -3,7 +3,7 @@ import { useState, type FormEvent } from 'react';
 import { Link } from 'react-router-dom';
 import type { PartyRef } from '#shared/api/common';
 import type { Issue, PossibleMove } from '#shared/api/issues';
-import { STAGE_LABELS, type Stage } from '#shared/vocabulary';
+import { STAGE_LABELS, type Side, type Stage } from '#shared/vocabulary';
 import { Cautions } from '../../components/ui/cautions.js';
 import { Select, TextArea, TextField, type Option } from '../../components/ui/field.js';
 import { OpenedForm } from '../../components/ui/opened-form.js';
@@ -12,10 +12,10 @@ import { reading } from '../../lib/query.js';
 import { instant } from '../../lib/times.js';
 import { useMoveIssue } from './api/move-issue.js';
 
-/** Builds of the two units, each under its side. */
-function useBuildOptions(issue: Issue, wanted: boolean): { builds: readonly Option[]; unread: unknown } {
-  const { data, error } = useQuery({ ...reading('readLink', { params: { linkId: issue.link.id } }), enabled: wanted });
-  const builds = data ? (['a', 'b'] as const).flatMap((side) => data.unitBuilds[side].map((b): Option => [b.id, `${issue[side].unit.name} ${b.label} (side ${side.toUpperCase()})`])) : [];
+/** Builds that the move may name, each under its side. */
+function useBuildOptions(issue: Issue, sides: readonly Side[]): { builds: readonly Option[]; unread: unknown } {
+  const { data, error } = useQuery({ ...reading('readLink', { params: { linkId: issue.link.id } }), enabled: sides.length > 0 });
+  const builds = data ? sides.flatMap((side) => data.unitBuilds[side].map((b): Option => [b.id, `${issue[side].unit.name} ${b.label} (side ${side.toUpperCase()})`])) : [];
   return { builds, unread: error };
 }
 
@@ -33,7 +33,7 @@ const ENDS: readonly Stage[] = ['settled', 'withdrawn'];
 export function MoveForm({ issue, move, parties, close }: { issue: Issue; move: PossibleMove; parties: readonly PartyRef[]; close: () => void }) {
   const change = useMoveIssue({ programme: issue.programme.code, number: issue.number });
   const needs = (what: PossibleMove['requires'][number]): boolean => move.requires.includes(what);
-  const { builds, unread } = useBuildOptions(issue, needs('build'));
+  const { builds, unread } = useBuildOptions(issue, move.buildSides);
   const [given, setGiven] = useState({ reason: '', buildId: '', endsOn: '', partyId: '', ask: '', due: '' });
   const set = (name: keyof typeof given) => (e: { target: { value: string } }): void => setGiven((g) => ({ ...g, [name]: e.target.value }));
 
