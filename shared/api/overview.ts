@@ -4,7 +4,7 @@ import { registerRow } from './issues.js';
 import { WAITING_CAUSES } from '../vocabulary.js';
 
 export const daySheet = z.object({
-  waitingForParty: z.array(registerRow),
+  waitingForParty: z.array(registerRow.extend({ ask: z.string().nullable() })),
   changed: z.array(z.object({ at: instant, programme: programmeCode, number: z.string(), title: z.string(), text: z.string(), person: z.string().nullable() })),
   running: z.array(z.object({ programme: programmeCode, number: z.string(), title: z.string(), decodeId: id, decodeNumber: z.number().int(), step: z.string(), progress: z.number() })),
   lastLookedAt: instant.nullable(),

@@ -1,10 +1,23 @@
+import { registerQuery } from '#shared/api/issues';
 import type { DaySheet, Found } from '#shared/api/overview';
 import { IS_FOUND } from '../access/is-found.js';
 import type { Services } from '../http/services.js';
+import { registerRows } from '../issues/register-repository.js';
 
 export async function lookedAt(services: Services): Promise<Date | null> {
   const row = await services.database.row<{ at: Date | null }>('select day_sheet_looked_at as at from people where id = access.person()');
   return row?.at ?? null;
+}
+
+/** The issues whose next move is my party's, the soonest due first, each with what is asked. */
+export async function waitingForParty(services: Services): Promise<DaySheet['waitingForParty']> {
+  const rows = await registerRows(services, registerQuery.parse({ move: 'mine', sort: 'due', size: 100 }));
+  const asks = await services.database.rows<{ programme: string; number: string; ask: string }>(`
+    select g.code as programme, i.number, n.ask
+    from issues i join next_moves n on n.issue_id = i.id and n.ended_at is null join programmes g on g.id = i.programme_id
+    where i.open and i.move_party_id = any((select access.my_parties())::uuid[])`);
+  const askOf = new Map(asks.map(({ programme, number, ask }) => [`${programme}/${number}`, ask]));
+  return rows.map((row) => ({ ...row, ask: askOf.get(`${row.programme}/${row.number}`) ?? null }));
 }
 
 /** What others did since I looked, newest first; without a look, the last week. */

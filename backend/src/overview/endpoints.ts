@@ -1,15 +1,13 @@
-import { registerQuery } from '#shared/api/issues';
 import { inProgramme, signedIn } from '../access/rules.js';
 import { endpoint, question, type Mounted } from '../http/endpoint.js';
-import { registerRows } from '../issues/register-repository.js';
-import { changedSince, countsFor, foundIssues, lookedAt, runningDecodes } from './day-sheet-queries.js';
+import { changedSince, countsFor, foundIssues, lookedAt, runningDecodes, waitingForParty } from './day-sheet-queries.js';
 import { ages, byPair, bySeverityAndStage, flowByWeek, waitingByCause, waitingByParty } from './overview-queries.js';
 
 export const overviewEndpoints: Mounted[] = [
   endpoint('readDaySheet', signedIn, async ({ services }) => {
     const since = await lookedAt(services);
     return {
-      waitingForParty: await registerRows(services, registerQuery.parse({ move: 'mine', sort: 'due', size: 100 })),
+      waitingForParty: await waitingForParty(services),
       changed: await changedSince(services, since),
       running: await runningDecodes(services),
       lastLookedAt: since?.toISOString() ?? null,

@@ -1,5 +1,6 @@
 import { Link } from 'react-router-dom';
 import type { RegisterRow } from '#shared/api/issues';
+import type { DaySheet } from '#shared/api/overview';
 import { MiniStage } from '../../../components/marks/mini-stage.js';
 import { MiniTie } from '../../../components/marks/mini-tie.js';
 import { SideMark } from '../../../components/marks/side-mark.js';
@@ -15,12 +16,13 @@ function Due({ row }: { row: RegisterRow }) {
 }
 
 /** One issue that waits for the reader's party: enough to decide whether to open it now. */
-export function WaitingItem({ row }: { row: RegisterRow }) {
+export function WaitingItem({ row }: { row: DaySheet['waitingForParty'][number] }) {
   return (
     <li className="waiting-item">
       <MiniTie state={row.decodeState} side={row.hint?.side ?? null} />
       <div>
         <p><span className="fig soft">{row.programme}/{row.number}</span> <Link className="bare-link waiting-title" to={addressOf(row)}>{row.title}</Link></p>
+        {row.ask && <p className="waiting-ask"><span className="soft">asked to</span> {row.ask}</p>}
         <p className="small waiting-facts">
           <span className={row.severity === 'critical' ? 'hot severe' : ''}>{row.severity}</span>
           <SideMark side="a">{row.a.shortName}</SideMark><SideMark side="b">{row.b.shortName}</SideMark>
