@@ -44,8 +44,9 @@ export interface Analysis {
  * Samples in, evidence out: read (through doubt of the label), measure, hold the declared settings
  * against what was read, and draw. No declared value enters `air`.
  */
-export function analyse(recording: Recording, options: AnalyseOptions): Analysis {
-  options.onProgress?.('reading', 0.02);
+export function analyse(recording: Recording, given: AnalyseOptions): Analysis {
+  const options = { ...given, onProgress: forwards(given.onProgress) };
+  options.onProgress('reading', 0.02);
   const doubted = readThroughDoubt(recording, options);
   const gaps = gapsIn(recording, doubted.look);
   const look = betweenGaps(doubted.look, gaps, options);
@@ -65,6 +66,18 @@ export function analyse(recording: Recording, options: AnalyseOptions): Analysis
     patterns,
     tried: doubted.tried,
     plots,
+  };
+}
+
+/** Steps as they are first reached: a second reading under another label is no step back. */
+function forwards(onProgress: AnalyseOptions['onProgress']): (step: string, fraction: number) => void {
+  const behind = new Set<string>();
+  let current: string | null = null;
+  return (step, fraction) => {
+    if (step !== current && behind.has(step)) return;
+    behind.add(step);
+    current = step;
+    onProgress?.(step, fraction);
   };
 }
 

@@ -45,13 +45,19 @@ function withoutDoubles(findings: readonly Finding[]): Finding[] {
 
 function causeOf(finding: Finding, all: readonly Finding[]): Finding | undefined {
   const causes = FOLLOWS_FROM[finding.code] ?? [];
-  return all.find((other) => other !== finding && other.probability > 0.5 && spacingExplains(other, finding)) ?? all.find((other) => other !== finding && other.probability > 0.5 && sidesMeet(other, finding)
+  return all.find((other) => other !== finding && other.probability > 0.5 && (spacingExplains(other, finding) || technologyExplains(other, finding))) ?? all.find((other) => other !== finding && other.probability > 0.5 && sidesMeet(other, finding)
     && (rateComesFirst(other, finding) && causes.includes(other.code) || listed(other, finding) || sameSetting(other, finding)));
 }
 
 /** A combination is off standard because the spacing that size and rate imply is. */
 function spacingExplains(cause: Finding, finding: Finding): boolean {
   return finding.code === 'not-permitted' && ['fft-size', 'sample-rate', 'subcarrier-spacing'].includes(cause.code) && (finding.restsOn ?? []).some((name) => name.endsWith('ubcarrierSpacing'));
+}
+
+/** What is off standard was judged by the standard of a technology that its own side should not have declared. */
+function technologyExplains(cause: Finding, finding: Finding): boolean {
+  if (cause.code !== 'technology' || finding.code !== 'not-permitted') return false;
+  return cause.side === finding.side || cause.basis.pattern === 'agree-contradicted' || cause.basis.pattern === 'neither';
 }
 
 /** A wrong label of the recording's rate explains a spacing; a declared rate is explained by a declared spacing. */

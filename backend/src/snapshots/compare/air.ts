@@ -20,6 +20,7 @@ const MEASURED: Readonly<Record<string, (air: Air, options: CompareOptions) => S
   carrierFrequency: carrierHz,
   nrArfcn: (air, options) => nearestArfcn(carrierHz(air, options)),
   resourceBlocks: (air) => value(air, 'resourceBlocks'),
+  channelBandwidth: (air) => value(air, 'channelBandwidthHz'),
   physicalCellId: (air) => value(air, 'physicalCellId'),
   ssbSubcarrierSpacing: (air) => value(air, 'ssbSubcarrierSpacingHz'),
   ssbFrequency: (air) => value(air, 'ssbFrequencyHz'),
