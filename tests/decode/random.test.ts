@@ -14,6 +14,12 @@ const CASES: readonly (readonly [number, Parameters<typeof randomScenario>[1]])[
   [13, { kind: 'lte', relation: 'one-wrong', snrDb: [15, 25], maxRateHz: 31e6 }],
   [14, { kind: 'wifi', relation: 'one-wrong', snrDb: [15, 25], maxRateHz: 41e6 }],
   [15, { kind: 'ofdm', relation: 'clean', snrDb: [15, 25], maxRateHz: 31e6 }],
+  [16, { kind: 'nr', relation: 'both-wrong', snrDb: [15, 25], maxRateHz: 21e6 }],
+  [17, { kind: 'nr', relation: 'capture', fault: 'format label', snrDb: [15, 25], maxRateHz: 21e6 }],
+  [18, { kind: 'lte', relation: 'capture', fault: 'overdriven', snrDb: [15, 25], maxRateHz: 21e6 }],
+  [19, { kind: 'nr', relation: 'capture', fault: 'clock', snrDb: [15, 25], maxRateHz: 21e6 }],
+  // Twice the rate on the label: the cell of 15 kHz decodes as one of 30 kHz.
+  [20105, { kind: 'nr', relation: 'capture', fault: 'rate label', maxRateHz: 32e6 }],
 ];
 
 describe('a decode from bytes to its first hint', () => {

@@ -6,6 +6,8 @@ import { PRIORS } from './priors.js';
 export interface Measurement {
   readonly value: SettingValue;
   readonly method: string | null;
+  /** The value stands for all that lie whole numbers of these from it. */
+  readonly periodHz?: number | null;
   /** Natural logarithm of the probability of what was measured, were `setting` the true one. */
   logLikelihood(setting: SettingValue): number;
   /** The same, were it some other setting than the one declared. */

@@ -64,6 +64,8 @@ export interface Basis {
   /** Who declares the parameter at all (also known to readers who may not see the value). */
   readonly declaredBy: readonly Side[];
   readonly air: SettingValue;
+  /** `air` may also lie any whole number of these from what it says; null where it is one value. */
+  readonly airPeriodHz: number | null;
   /** What `air` is a value of, where that is not `parameter` itself (the spacing, for a transform size). */
   readonly airParameter: string;
   readonly method: string | null;

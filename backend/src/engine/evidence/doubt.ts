@@ -1,7 +1,7 @@
 import type { CaptureFacts } from '#shared/decode';
 import { look, type Look, type LookOptions } from './look.js';
-import { syncRasterDistanceHz } from '../nr/raster.js';
 import { from, type Recording } from './recording.js';
+import { fitsItsMib, inItsRange, misfitOf, standsBetter } from './doubled-cell.js';
 import { suspectRate } from './rate-label.js';
 import { plausible } from './plausible.js';
 import { chooseWindows, readWindow } from '../level/windows.js';
@@ -69,13 +69,18 @@ const STANDARD_HZ = [15e3, 30e3, 60e3, 120e3, 312.5e3, 78.125e3];
 const RATE_RATIOS = [3 / 4, 4 / 3, 2 / 3, 3 / 2, 4 / 5, 5 / 4];
 /** Under these a spacing of the cellular tables stays one. */
 const CELLULAR_HZ = [15e3, 30e3, 60e3, 120e3];
-const DOUBLINGS = [2, 1 / 2];
+const DOUBLINGS = [1 / 2, 2];
 
 function otherRate(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
   const suspicion = suspectRate(plain.blind);
   if (suspicion) {
     const other = relabelled(recording, { plain, ...suspicion, sure: true }, options);
     return other && standsBetter(plain, other.look) ? null : other;
+  }
+  const misfit = misfitOf(plain);
+  if (misfit) {
+    const other = relabelled(recording, { plain, ...misfit, sure: false }, options);
+    if (other && fitsItsMib(other.look)) return other;
   }
   if (plain.choice.technology !== 'ofdm' || !plain.blind) return null;
   const spacing = plain.blind.subcarrierSpacingHz;
@@ -90,30 +95,9 @@ function doubled(recording: Recording, plain: Look, options: LookOptions): Doubt
   for (const ratio of DOUBLINGS.filter((r) => isOneOf(CELLULAR_HZ, spacing * r))) {
     const proof = `at the stated rate the symbols look like those of ${(spacing / 1e3).toFixed(3)} kHz, but nothing of a cell is found; at ${ratio} times the rate a cell's own signals decode`;
     const found = relabelled(recording, { plain, ratio, sure: false, proof }, options);
-    if (found) return found;
+    if (found && inItsRange(found.look)) return found;
   }
   return null;
-}
-
-/** Parts per million by which one reading's block has to stand nearer to its raster than the other's. */
-const NEARER_PPM = 3;
-
-/**
- * A cell of 15 kHz decodes at twice its rate too, as one of 30 kHz, and the other way round: its
- * block then stands at twice its distance from the tuner, and off the raster. True where the
- * reading as labelled decodes and stands nearer to it.
- */
-function standsBetter(plain: Look, other: Look): boolean {
-  const here = offRasterPpm(plain);
-  const there = offRasterPpm(other);
-  return here !== null && (there === null || here + NEARER_PPM < there);
-}
-
-/** How far a decoded NR cell's block stands from the synchronisation raster; null without one, or without a stated centre. */
-function offRasterPpm({ choice }: Look): number | null {
-  const block = choice.finding?.air['ssbFrequencyHz']?.value;
-  if (choice.finding?.air['mib']?.value == null || typeof block !== 'number') return null;
-  return (1e6 * syncRasterDistanceHz(block)) / block;
 }
 
 function isOneOf(list: readonly number[], hz: number): boolean {

@@ -1,7 +1,7 @@
 import type { AirValue } from '#shared/decode';
 import type { Cell } from './cell.js';
 import type { ClockDrift } from './clock-drift.js';
-import type { CellMeasurements } from './measure-cell.js';
+import type { CellMeasurements, CommonGrid } from './measure-cell.js';
 import type { PhaseCompensation } from './phase-compensation.js';
 
 /** Standard deviation above which a clock difference is not reported, parts per million. */
@@ -31,8 +31,20 @@ export function carrierValues({ data, placement, placed, share, fullEdges, commo
     : 'the carrier’s edges do not stand out in the capture');
   values.carrierOffsetHz = spacingHz === null || (!commonGrid && !data)
     ? unknown('the data’s spacing is not known')
-    : { value: residue(commonGrid ? commonGrid.edgeHz : data!.residue.hz, spacingHz), confidence: 0.97, method: `fractional: residue modulo ${spacingHz / 1000} kHz; ${reference.method}`, sigmaHz };
+    : {
+      value: residue(commonGrid ? commonGrid.edgeHz : data!.residue.hz, spacingHz), confidence: 0.97, method: `fractional: residue modulo ${spacingHz / 1000} kHz; ${reference.method}`, sigmaHz,
+      ...(commonGrid && data ? besideBlocks(commonGrid, data.spacingHz) : {}),
+    };
   return values;
+}
+
+/**
+ * Subcarrier 6·N_RB is the edge or the middle of a block of the data's grid, and that grid's edges are some
+ * of the common one's: the carrier is known but for so many Hz, though not where its power ends.
+ */
+function besideBlocks(common: CommonGrid, spacingHz: number): { blockResidueHz: number; blockPeriodHz: number } {
+  const blockPeriodHz = Math.min(6 * spacingHz, 12 * common.spacingHz);
+  return { blockResidueHz: residue(common.edgeHz, blockPeriodHz), blockPeriodHz };
 }
 
 function residue(hz: number, spacingHz: number): number {

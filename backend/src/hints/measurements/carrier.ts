@@ -1,5 +1,6 @@
-import type { SettingValue } from '#shared/decode';
+import type { AirValue, SettingValue } from '#shared/decode';
 import { CLOCK_BEYOND_PPM, CLOCK_LIMIT_PPM, RECORDER_PPM, SCATTER } from '../priors.js';
+import { gscnToHz } from '../../snapshots/standards/nrRaster.js';
 import type { Measurement } from '../model.js';
 import type { Evidence } from '../types.js';
 import { certainty, normal } from './likelihoods.js';
@@ -10,30 +11,68 @@ import { airNumber, airWord } from './numbers.js';
  * only the residue modulo the spacing is known, and every whole number of spacings fits.
  */
 export function carrierFrequency(evidence: Evidence): Measurement | null {
-  return carrierWithClock(evidence, BEYOND_LIMITS);
+  return carrierWithClock(evidence, blockInStep(evidence) ? BEYOND_LIMITS * CHANCE_OF_RASTER : BEYOND_LIMITS);
 }
 
 /** Share of links whose clocks are beyond their limits. */
 const BEYOND_LIMITS = 0.03;
+/** How often a clock beyond its limits leaves a block on another place of the raster: its width in places of 400 kHz and more. */
+const CHANCE_OF_RASTER = 0.03;
+
+/** A block that is received on the synchronisation raster shows that the clocks are within their limits. */
+function blockInStep(evidence: Evidence): boolean {
+  const block = airNumber(evidence, 'ssbFrequencyHz');
+  return block !== null && besideBlockRaster(block.value) < clockPpm(evidence) * 1e-6 * block.value + SCATTER.ssbFrequencyHz;
+}
+
+interface Place {
+  readonly air: AirValue;
+  /** Against the stated centre. */
+  readonly offsetHz: number;
+  /** The carrier may stand at any whole number of these from it; null where its place is known. */
+  readonly periodHz: number | null;
+}
+
+/** What the air shows of the carrier's place: a whole offset, one on the grid of resource blocks, or a residue modulo the spacing. */
+function placeOf(evidence: Evidence): Place | null {
+  const offset = airNumber(evidence, 'carrierOffsetHz');
+  if (!offset) return null;
+  const { air } = offset;
+  if (!air.method?.startsWith('fractional')) return { air, offsetHz: offset.value, periodHz: null };
+  const { blockResidueHz, blockPeriodHz } = air;
+  if (typeof blockResidueHz === 'number' && typeof blockPeriodHz === 'number') return { air, offsetHz: blockResidueHz, periodHz: blockPeriodHz };
+  return { air, offsetHz: offset.value, periodHz: airNumber(evidence, 'subcarrierSpacingHz')?.value ?? null };
+}
+
+/** Hz after which another carrier would be received alike; null where the carrier's place is known. */
+export function carrierPeriodHz(evidence: Evidence): number | null {
+  return placeOf(evidence)?.periodHz ?? null;
+}
 
 /** The same for a stated share of clocks beyond their limits: 0 where the clock was excluded otherwise. */
 export function carrierWithClock(evidence: Evidence, share: number): Measurement | null {
-  const offset = airNumber(evidence, 'carrierOffsetHz');
+  const place = placeOf(evidence);
   const centre = evidence.capture?.centreFrequencyHz ?? null;
-  if (!offset || centre === null) return null;
+  if (!place || centre === null) return null;
   // The half subcarrier of an uplink is a setting of its own, not a part of the carrier's frequency.
   const shifted = evidence.air['halfSubcarrierShift']?.value === true ? 7500 : 0;
-  const value = centre + offset.value - shifted;
-  const method = offset.air.method ?? null;
-  const spacing = method?.startsWith('fractional') ? airNumber(evidence, 'subcarrierSpacingHz')?.value : undefined;
-  const range = spacing ?? evidence.capture?.sampleRateHz ?? 1e7;
-  const within = normal({ value, method, sigma: Math.hypot(SCATTER.carrierFrequencyHz, (clockPpm(evidence) / 3) * 1e-6 * centre), range, confidence: certainty(offset.air) });
+  const value = centre + place.offsetHz - shifted;
+  const method = place.air.method ?? null;
+  const range = place.periodHz ?? evidence.capture?.sampleRateHz ?? 1e7;
+  const within = normal({ value, method, sigma: Math.hypot(SCATTER.carrierFrequencyHz, (clockPpm(evidence) / 3) * 1e-6 * centre), range, confidence: certainty(place.air) });
   const beyond = normal({ value, method, sigma: CLOCK_BEYOND_PPM * 1e-6 * centre, range, confidence: 1 });
-  const fold = (setting: SettingValue): number => (spacing ? value + folded(Number(setting) - value, spacing) : Number(setting));
+  const fold = (setting: SettingValue): number => (place.periodHz ? value + folded(Number(setting) - value, place.periodHz) : Number(setting));
   return {
-    value, method, otherLogLikelihood: Math.log(1 / range),
+    value, method, periodHz: place.periodHz, otherLogLikelihood: Math.log(1 / range),
     logLikelihood: (setting) => Math.log((1 - share) * Math.exp(within.logLikelihood(fold(setting))) + share * Math.exp(beyond.logLikelihood(fold(setting)))),
   };
+}
+
+/** How far a frequency is from the synchronisation raster, Hz (TS 38.104 table 5.4.3.1-1). */
+export function besideBlockRaster(hz: number): number {
+  const guess = hz >= 24_250.08e6 ? 22_256 + (hz - 24_250.08e6) / 17.28e6 : hz >= 3000e6 ? 7499 + (hz - 3000e6) / 1.44e6 : hz / 400e3;
+  const around = [-2, -1, 0, 1, 2].map((step) => gscnToHz(Math.round(guess) + step)).filter((at) => at !== null);
+  return Math.min(...around.map((at) => Math.abs(hz - at)), Infinity);
 }
 
 /** The nearest distance, where whole numbers of `period` do not count. */

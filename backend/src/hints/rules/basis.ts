@@ -20,6 +20,7 @@ export function basisOf(row: ComparisonRow, evidence: Evidence, given: { pattern
     declared,
     declaredBy: declaredBy(row),
     air: given.measurement?.value ?? null,
+    airPeriodHz: given.measurement?.periodHz ?? null,
     airParameter: row.parameter,
     method: given.measurement?.method ?? null,
     announced: row.announced,
@@ -42,5 +43,5 @@ function constellationFacts(parameter: string, evidence: Evidence): Basis['sideF
 
 /** The basis of a finding about the recording: the first fact is its summary. */
 export function recordingBasis(facts: readonly string[], clause: string | null = null): Basis {
-  return { pattern: 'capture', parameter: '', declared: {}, declaredBy: [], air: null, airParameter: '', method: null, announced: null, clause, transmitter: null, facts, sideFacts: {} };
+  return { pattern: 'capture', parameter: '', declared: {}, declaredBy: [], air: null, airPeriodHz: null, airParameter: '', method: null, announced: null, clause, transmitter: null, facts, sideFacts: {} };
 }

@@ -1,7 +1,5 @@
 import type { ComparisonRow } from '#shared/decode';
-import { gscnToHz } from '../../snapshots/standards/nrRaster.js';
-import { carrierFrequency, folded, ssbFrequency } from '../measurements/carrier.js';
-import { airNumber } from '../measurements/numbers.js';
+import { carrierFrequency, carrierPeriodHz, folded, ssbFrequency } from '../measurements/carrier.js';
 import { SCATTER } from '../priors.js';
 import type { Evidence } from '../types.js';
 import { declaredBy } from './basis.js';
@@ -16,17 +14,17 @@ export function shiftFromDeclared(evidence: Evidence): Shift | null {
   if (!ofBlock) return ofCarrier;
   if (!ofCarrier) return carrierFrequency(evidence) ? null : ofBlock;
   // A clock moves both alike; of a carrier whose grid was not placed only the residue is seen.
-  const alike = ofCarrier.spacingHz !== null && Math.abs(folded(ofBlock.hz - ofCarrier.hz, ofCarrier.spacingHz)) < 3 * SCATTER.ssbFrequencyHz;
+  const alike = ofCarrier.periodHz !== null && Math.abs(folded(ofBlock.hz - ofCarrier.hz, ofCarrier.periodHz)) < 3 * SCATTER.ssbFrequencyHz;
   return alike ? ofBlock : ofCarrier;
 }
 
-function carrierShift(evidence: Evidence): Shift & { spacingHz: number | null } | null {
+function carrierShift(evidence: Evidence): Shift & { periodHz: number | null } | null {
   const row = carrierRow(evidence);
   const measured = carrierFrequency(evidence);
   if (!row || !measured) return null;
-  const spacingHz = measured.method?.startsWith('fractional') ? airNumber(evidence, 'subcarrierSpacingHz')?.value ?? null : null;
-  const hz = nearest(row, Number(measured.value), (away) => (spacingHz ? folded(away, spacingHz) : away));
-  return hz === null ? null : { hz, fc: Number(measured.value), blockHz: null, spacingHz };
+  const periodHz = carrierPeriodHz(evidence);
+  const hz = nearest(row, Number(measured.value), (away) => (periodHz ? folded(away, periodHz) : away));
+  return hz === null ? null : { hz, fc: Number(measured.value), blockHz: null, periodHz };
 }
 
 function blockShift(evidence: Evidence): Shift | null {
@@ -42,13 +40,6 @@ function blockShift(evidence: Evidence): Shift | null {
 function nearest(row: ComparisonRow, measuredHz: number, fold: (away: number) => number): number | null {
   const shifts = declaredBy(row).map((side) => measuredHz - Number(row[side]!.value)).filter(Number.isFinite).map(fold).sort((x, y) => Math.abs(x) - Math.abs(y));
   return shifts[0] ?? null;
-}
-
-/** How far a frequency is from the synchronisation raster, Hz (TS 38.104 table 5.4.3.1-1). */
-export function besideBlockRaster(hz: number): number {
-  const guess = hz >= 24_250.08e6 ? 22_256 + (hz - 24_250.08e6) / 17.28e6 : hz >= 3000e6 ? 7499 + (hz - 3000e6) / 1.44e6 : hz / 400e3;
-  const around = [-2, -1, 0, 1, 2].map((step) => gscnToHz(Math.round(guess) + step)).filter((at) => at !== null);
-  return Math.min(...around.map((at) => Math.abs(hz - at)), Infinity);
 }
 
 /**

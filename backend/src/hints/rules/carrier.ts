@@ -1,10 +1,10 @@
-import { carrierWithClock, clockPpm, folded } from '../measurements/carrier.js';
+import { besideBlockRaster, carrierWithClock, clockPpm, folded } from '../measurements/carrier.js';
 import { airNumber } from '../measurements/numbers.js';
 import { judgeContradiction } from '../model.js';
 import { CLOCK_BEYOND_PPM, SCATTER } from '../priors.js';
 import type { Evidence, Finding, Rule } from '../types.js';
 import { basisOf, declaredBy, recordingBasis } from './basis.js';
-import { besideBlockRaster, carrierRow, shiftFromDeclared, type Shift } from './carrier-shift.js';
+import { carrierRow, shiftFromDeclared, type Shift } from './carrier-shift.js';
 
 /**
  * The carrier that agreeing snapshots (or the one that speaks) declare, against the one on the

@@ -2,7 +2,7 @@ import type { EvidenceItem, Hint } from '#shared/decode';
 import type { Side } from '#shared/vocabulary';
 import type { Basis, Finding, View } from '../types.js';
 import { wouldDisprove } from './disprove.js';
-import { named, shown } from './values.js';
+import { hertz, named, shown } from './values.js';
 
 /** Puts a finding in words for a reader who may see this much of either snapshot. */
 export function writeHint(finding: Finding, view: View): Hint {
@@ -65,8 +65,14 @@ function value(basis: Basis, side: Side): string {
   return known === undefined ? 'a value of its own' : shown(basis.parameter, known);
 }
 
+/** What the air shows, and between what it cannot tell. */
+function shownAir({ airParameter, air: seen, airPeriodHz }: Basis): string {
+  const text = shown(airParameter, seen);
+  return airPeriodHz ? `${text} or a whole number of ${hertz(airPeriodHz)} beside it` : text;
+}
+
 function air(basis: Basis): string {
-  const text = shown(basis.airParameter, basis.air);
+  const text = shownAir(basis);
   return basis.airParameter === basis.parameter ? text : `${named(basis.airParameter)} ${text}`;
 }
 
@@ -86,7 +92,7 @@ function evidence(basis: Basis): EvidenceItem[] {
     items.push({ text: known === undefined ? `declared by side ${side.toUpperCase()}` : `Side ${side.toUpperCase()} declares ${named(basis.parameter)} ${shown(basis.parameter, known)}`, kind: 'declared', side });
   }
   if (basis.announced !== null) items.push({ text: `The unit announces ${named(basis.parameter)} ${shown(basis.parameter, basis.announced)}`, kind: 'announced', ...clause });
-  if (basis.air !== null) items.push({ text: `The air shows ${named(basis.airParameter)} ${shown(basis.airParameter, basis.air)}${basis.method ? `: ${basis.method}` : ''}`, kind: 'measured', ...clause });
+  if (basis.air !== null) items.push({ text: `The air shows ${named(basis.airParameter)} ${shownAir(basis)}${basis.method ? `: ${basis.method}` : ''}`, kind: 'measured', ...clause });
   for (const text of basis.facts.slice(basis.pattern === 'capture' ? 1 : 0)) items.push({ text, kind: 'measured' });
   if (basis.pattern === 'capture' && basis.facts.length > 0) items.unshift({ text: `${basis.facts[0]}`, kind: 'measured' });
   for (const side of ['a', 'b'] as const) for (const text of basis.sideFacts[side] ?? []) items.push({ text, kind: 'declared', side });
