@@ -102,8 +102,21 @@ export function patternLikelihood(levels: SymbolLevels, pattern: TddPattern): Pa
   const downlink = seen.filter((p) => p.kind === 'downlink');
   const filled = downlink.filter((p) => p.onShare > 0.5).length / Math.max(1, downlink.length);
   const quietEdge = levels.contrastDb > 0 && filled > 0.6 ? edgeRun(downlink) : 0;
-  const logLikelihood = Math.max(-40, penalty(ENERGY_OUTSIDE, outside.length) + penalty(QUIET_INSIDE, quietEdge));
+  const quiet = Math.max(penalty(QUIET_INSIDE, quietEdge), quietByChance(downlink, { quietEdge, symbolsPerSlot: levels.symbolsPerSlot }));
+  const logLikelihood = Math.max(-40, penalty(ENERGY_OUTSIDE, outside.length) + quiet);
   return { logLikelihood, reason: reasonOf(outside.length, quietEdge) };
+}
+
+/** A slot that ends early is given to users this much more seldom than a whole one (common practice). */
+const SHORT_SLOT = 0.8;
+
+/** Natural logarithm of the chance that a loaded downlink leaves its last symbols empty in every period all the same. */
+function quietByChance(downlink: readonly Position[], { quietEdge, symbolsPerSlot }: { quietEdge: number; symbolsPerSlot: number }): number {
+  if (quietEdge === 0) return 0;
+  const rest = downlink.slice(0, downlink.length - quietEdge);
+  const fill = rest.reduce((sum, { onShare }) => sum + onShare, 0) / Math.max(1, rest.length);
+  const slots = Math.ceil(quietEdge / symbolsPerSlot) * downlink.at(-1)!.count;
+  return slots * Math.log(1 - SHORT_SLOT * fill);
 }
 
 function penalty([first, further]: readonly [number, number], count: number): number {
