@@ -3,16 +3,17 @@ import type { BlindOfdm, LevelFacts, TechnologyFinding } from '../types.js';
 import type { BlindEstimate } from '../sync/estimate.js';
 import { halfShift } from './half-shift.js';
 import type { Look } from './look.js';
+import { occupiedBandwidth } from './occupied-value.js';
 
 /** The contract's values from one look: a technology's own first, then what any OFDM shows. */
 export function airFrom(look: Look, level: LevelFacts): Record<string, AirValue> {
-  const { choice, blind, spectrum } = look;
+  const { choice, blind } = look;
   if (choice.technology === null) return { technology: { value: null, reason: choice.reason } };
   const shown = blind && choice.finding === null ? ofAnyOfdm(blind) : {};
   return {
     ...shown,
     technology: { value: choice.technology, confidence: choice.confidence, method: choice.reason },
-    occupiedBandwidthHz: spectrum.occupiedBandwidthHz === null ? missing('nothing stands out of a flat floor') : { value: spectrum.occupiedBandwidthHz, confidence: 0.9, method: '99 % of the power above the floor' },
+    occupiedBandwidthHz: occupiedBandwidth(look),
     ...signalToNoise(look),
     ...(level.dcOffsetDb !== null && { dcOffsetDb: { value: level.dcOffsetDb, confidence: 0.95, method: 'mean of the samples against the rest of their power' } }),
     ...(level.iqImbalanceDb !== null && { iqImbalanceDb: { value: level.iqImbalanceDb, confidence: 0.95, method: 'mean square of the complex samples: zero for a balanced receiver' } }),
