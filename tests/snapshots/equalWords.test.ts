@@ -28,6 +28,7 @@ const PAIRS: [string, string, string, ('air' | 'fronthaul')?][] = [
   ['extended prefix and duration', 'technology: nr\nnumerology: 2\ncyclic_prefix: extended\n', 'technology: nr\nnumerology: 2\nguard_interval_ns: 4167\n'],
   ['Wi-Fi guard interval and word', 'technology: wifi\nguard_interval_ns: 400\n', 'technology: wifi\ncyclic_prefix: short\n'],
   ['Wi-Fi HE guard interval', 'technology: wifi\nsubcarrier_spacing_khz: 78.125\nguard_interval_us: 1.6\n', 'technology: wifi\nsubcarrier_spacing_hz: 78125\ncyclic_prefix: double\n'],
+  ['a Wi-Fi guard interval in a file that names no technology', 'technology: wifi\nsubcarrier_spacing_khz: 312.5\ncyclic_prefix: normal\n', 'subcarrier_spacing_khz: 312.5\nguard_interval_ns: 800\n'],
   ['a fraction of the symbol', 'technology: ofdm\nsubcarrier_spacing_khz: 25\nguard_interval: 1/8\n', 'technology: ofdm\nsubcarrier_spacing_khz: 25\nguard_interval_us: 5\n'],
   ['an absent cyclicPrefix and the word normal', servingCell(), 'technology: nr\ncyclic_prefix: normal\nsubcarrier_spacing_khz: 30\n'],
   ['block by channel number, GSCN and MHz', 'technology: nr\nssb_arfcn: 636960\n', 'technology: nr\ngscn: 7884\n'],

@@ -151,6 +151,8 @@ export function prefixOfGuard(view: View): Statement<string> | null {
   const guard = guardS(view);
   if (guard === null) return null;
   const spacing = spacingHz(view);
-  const word = view.technology === 'wifi' ? wifiPrefixOf(guard.value, spacing) : spacing === null ? null : cellularPrefixOf(guard.value, spacing);
+  // A file that names no technology says by its spacing which words its guard intervals have.
+  const isWifi = view.technology === 'wifi' || (view.technology === null && spacing !== null && isWifiSpacing(spacing));
+  const word = isWifi ? wifiPrefixOf(guard.value, spacing) : spacing === null ? null : cellularPrefixOf(guard.value, spacing);
   return word === null ? null : { ...guard, value: word, derived: true, how: 'the guard interval at this spacing' };
 }
