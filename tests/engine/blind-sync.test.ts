@@ -162,7 +162,7 @@ describe('no OFDM', () => {
     for (let n = 0; n < samples; n++) iq.set(f(n, random), 2 * n);
     return noisy(iq, 10 ** (-snrDb / 10), random);
   };
-  const claims = (iq: Float32Array) => analyseWindow({ iq, startSample: 0, sampleRateHz: rate }).found;
+  const claims = (iq: Float32Array, sampleRateHz = rate) => analyseWindow({ iq, startSample: 0, sampleRateHz }).found;
 
   it('is claimed of white noise', () => {
     for (let seed = 1; seed <= 24; seed++) expect(claims(white(samples, seed))).toBeNull();
@@ -176,6 +176,23 @@ describe('no OFDM', () => {
       expect(claims(make((n) => sum(polar(f * n), polar((f + 0.123) * n)), snr, seed))).toBeNull();
       expect(claims(make((n) => polar(((n % 768) ** 2 / 768) * 0.4), snr, seed))).toBeNull();
       expect(claims(make((n) => polar(9 * Math.sin((2 * Math.PI * n * 1500) / rate)), snr, seed))).toBeNull();
+    }
+  });
+
+  it('is claimed of a spread carrier, with echoes or without', () => {
+    // IEEE 802.11 clause 15.4.5.3: one data symbol is this run of 11 chips, so that chips resemble each other within it.
+    const barker = [1, -1, 1, 1, -1, 1, 1, 1, -1, -1, -1];
+    for (let seed = 1; seed <= 5; seed++) {
+      const random = mulberry(seed + 300);
+      const bits = Array.from({ length: samples / 22 + 12 }, () => [random() < 0.5 ? -1 : 1, random() < 0.5 ? -1 : 1]);
+      const chips = Array.from({ length: 11 * bits.length }, (_, n) => bits[Math.floor(n / 11)].map((bit) => bit * barker[n % 11]));
+      // Nine echoes, up to three symbols late, each with a phase of its own.
+      const echoes = Array.from({ length: 9 }, (_, k) => [Math.floor(random() * 33), polar(random()).map((part) => part * 0.85 ** k)] as const);
+      const echoed = chips.map(([i, q], n) => echoes.reduce(([re, im], [late, [a, b]]) => {
+        const [ei, eq] = chips[n - late] ?? [0, 0];
+        return [re + a * ei - b * eq, im + a * eq + b * ei];
+      }, [i, q]));
+      for (const data of [chips, echoed]) expect(claims(make((n) => shaped(data, n / 2.1), 10 + seed, seed), 2.1 * 11e6)?.subcarrierSpacingHz ?? null).toBeNull();
     }
   });
 

@@ -8,7 +8,7 @@ import type { Finding } from './types.js';
  */
 const FOLLOWS_FROM: Readonly<Partial<Record<HintCode, readonly HintCode[]>>> = {
   'subcarrier-spacing': ['technology', 'sample-rate'],
-  'cyclic-prefix': ['technology', 'subcarrier-spacing', 'sample-rate'],
+  'cyclic-prefix': ['technology', 'subcarrier-spacing', 'fft-size', 'sample-rate'],
   'fft-size': ['technology', 'subcarrier-spacing', 'sample-rate'],
   'sample-rate': ['technology', 'subcarrier-spacing'],
   'channel-bandwidth': ['technology', 'subcarrier-spacing', 'sample-rate'],

@@ -3,7 +3,7 @@ import { look, type Look, type LookOptions } from './look.js';
 import { from, type Recording } from './recording.js';
 import { fitsItsMib, inItsRange, misfitOf, standsBetter } from './doubled-cell.js';
 import { suspectRate } from './rate-label.js';
-import { plausible } from './plausible.js';
+import { oneScale, plausible } from './plausible.js';
 import { chooseWindows, readWindow } from '../level/windows.js';
 import { spectrumOf } from '../spectrum/spectrum.js';
 import { meanPower } from '../vector/power.js';
@@ -137,10 +137,11 @@ function otherFormat(recording: Recording, plain: Look, options: LookOptions): D
     const decodes = { confidence: found.choice.finding ? 0.97 : 0.93, proof: 'nothing repeats as a symbol does', result: `${found.choice.technology} decodes`, reads: 'it decodes' };
     return relabelledFormat(recording, { plain, found, datatype, ...decodes });
   }
-  // Nothing decodes, but the stated format makes no signal of the bytes and one other does.
-  if (formats.length !== 1 || plausible(recording.source)) return null;
+  // Nothing decodes, but the stated format makes values of every size of the bytes, and one other as wide does not.
+  const [datatype] = formats.filter((each) => widthOf(each) === widthOf(recording.facts.datatype ?? ''));
+  if (formats.length !== 1 || datatype === undefined || oneScale(recording.source)) return null;
   const looks = { confidence: 0.8, proof: 'the values are no received signal\'s', result: 'values like a received signal\'s', reads: 'they are' };
-  return relabelledFormat(recording, { plain, found: readAs(recording, formats[0], options), datatype: formats[0], ...looks });
+  return relabelledFormat(recording, { plain, found: readAs(recording, datatype, options), datatype, ...looks });
 }
 
 /** Readings worth a full look, likeliest first: in which symbols repeat, then, where the stated one makes no sense, any that does. */

@@ -11,22 +11,30 @@ const OVERDRIVEN = 0.02;
  * floats of every size, or I and Q unlike each other.
  */
 export function plausible(source: SampleSource): boolean {
-  const count = Math.min(SAMPLES, source.samples);
-  const iq = source.read(Math.floor((source.samples - count) / 2), count);
+  const iq = middleOf(source);
   const i = shape(iq, 0);
   const q = shape(iq, 1);
   if (!(i.power > 0) || !(q.power > 0)) return false;
   const alike = Math.abs(Math.log(i.power / q.power)) < Math.log(2);
   // An overdriven receiver flattens the peaks: the rails show it.
   const least = clippedFraction(iq) > OVERDRIVEN ? 0 : 1.9;
-  return alike && oneScale(iq) && [i, q].every(({ kurtosis }) => kurtosis > least && kurtosis < 300);
+  return alike && isOneScale(iq) && [i, q].every(({ kurtosis }) => kurtosis > least && kurtosis < 300);
 }
 
 /** Widest range of magnitudes, from the lowest tenth to the highest: 160 dB is beyond any receiver, pauses included. */
 const WIDEST = 1e8;
 
-/** Floats in the wrong byte order have exponents at random, from the least to the greatest. */
-function oneScale(iq: Float32Array): boolean {
+/** False for floats in the wrong byte order: they have exponents at random, from the least to the greatest. */
+export function oneScale(source: SampleSource): boolean {
+  return isOneScale(middleOf(source));
+}
+
+function middleOf(source: SampleSource): Float32Array {
+  const count = Math.min(SAMPLES, source.samples);
+  return source.read(Math.floor((source.samples - count) / 2), count);
+}
+
+function isOneScale(iq: Float32Array): boolean {
   const magnitudes = iq.map(Math.abs).filter((x) => x > 0).sort();
   const at = (share: number): number => magnitudes[Math.floor(share * (magnitudes.length - 1))] ?? 0;
   return at(0.9) < WIDEST * at(0.1);

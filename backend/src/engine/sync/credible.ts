@@ -44,6 +44,7 @@ export function credibility(window: Prepared, scored: Scored): Credibility {
   const bandwidth = effectiveBandwidth(window);
   if (bandwidth * scored.hypothesis.usefulS < FEWEST_SUBCARRIERS) return no('the band is too narrow for several subcarriers');
   if (scored.rho < (scored.hypothesis.family === 'free' ? LEAST_FREE_RHO : LEAST_RHO)) return no('too little of the signal repeats');
+  if (isSpread(window, scored)) return no('the symbols show at many lags, as those of a spread carrier do');
   const besides = beside(window, scored, bandwidth);
   if (besides > BESIDE) return no('the correlation does not belong to one lag');
   return { credible: true, reason: null };
@@ -87,6 +88,22 @@ function evenPower(window: Prepared, { best, sums, hypothesis, rho, spans }: Sco
   }
   const ratio = (inside / insideWeight) / (all / (to - from));
   return ratio > 1 / MOST_UNEVEN && ratio < MOST_UNEVEN;
+}
+
+/** Useful symbols this short are as long as the symbols of spread carriers, 11 chips in 1 us (IEEE 802.11 clause 15). */
+const SPREAD_S = 5e-6;
+/** Parts of the lag, away from the simple fractions at which pilots on every third or fourth subcarrier repeat. */
+const ELSEWHERE = [0.083, 0.21, 0.417, 0.583, 0.79, 0.917];
+/** Part of the score, and what chance reaches at one of so few lags less than once in ten thousand windows. */
+const MOST_ELSEWHERE = 0.1;
+const CHANCE_ELSEWHERE = 12;
+
+/** Chips of one data symbol resemble each other at every lag within it, at the symbol rate; an OFDM symbol repeats at one. */
+function isSpread(window: Prepared, scored: Scored): boolean {
+  const { hypothesis, sums } = scored;
+  if (hypothesis.family !== 'free' || hypothesis.usefulS > SPREAD_S) return false;
+  const scores = ELSEWHERE.map((part) => rescore({ sums: lagSums(window, Math.max(2, part * sums.lag), sums.hop), rateHz: window.rateHz }, scored).score);
+  return scores.filter((score) => score > Math.max(CHANCE_ELSEWHERE, MOST_ELSEWHERE * scored.score)).length >= ELSEWHERE.length / 2;
 }
 
 /**
