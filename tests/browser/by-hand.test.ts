@@ -1,44 +1,28 @@
 import { readFile } from 'node:fs/promises';
-import type { Browser, BrowserContext, Page } from 'playwright-core';
+import type { Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { plainConf, plainYaml } from '#backend/demo/story';
 import type { Declared } from '#backend/generator/snapshots/declared';
 import { writeSnapshot } from '#backend/generator/snapshots/snapshot';
 import { DEMO_PASSWORD } from '#dev-idp/accounts';
-import { launchBrowser } from '../support/chromium.js';
-import { enter, openField, type Field, type Who } from '../support/field.js';
-import { watchPage } from '../support/watch-page.js';
+import { openField, visit, type Field, type Visitors, type Who } from '../support/field.js';
 
 /** A page that waits for a busy server. */
 const PATIENT = { timeout: 20_000 };
 const SABLE = 'sable.orrindale@outside.example';
 let field: Field;
-let browser: Browser;
-const contexts: BrowserContext[] = [];
-const complaints: (() => string[])[] = [];
+let visitors: Visitors;
 
 beforeAll(async () => {
   field = await openField();
-  browser = await launchBrowser();
+  visitors = await visit(field, { alsoAt: [field.stack.mailUrl] });
 }, 180_000);
 afterAll(async () => {
-  await browser?.close();
+  await visitors?.leave();
   await field?.stop();
 });
 
-async function newPage(): Promise<Page> {
-  const context = await browser.newContext({ viewport: { width: 1440, height: 900 }, acceptDownloads: true });
-  contexts.push(context);
-  const page = await context.newPage();
-  page.setDefaultTimeout(30_000);
-  complaints.push(watchPage(page, [field.stack.url, field.stack.issuer, field.stack.mailUrl]).complaints);
-  return page;
-}
-async function openAs(who: Who, path = '/account'): Promise<Page> {
-  const page = await newPage();
-  await enter(page, field, { who, path });
-  return page;
-}
+const openAs = (who: Who, path?: string): Promise<Page> => visitors.openAs(who, path);
 
 /** Files an issue on the crane's link without a file, as the page itself calls the server; answers its address. */
 async function plant(page: Page, title: string): Promise<string> {
@@ -251,7 +235,7 @@ describe('an invitation', { timeout: 120_000 }, () => {
     await form.getByRole('button', { name: 'Invite', exact: true }).click();
     await tobin.getByText(`${SABLE} is invited.`).waitFor();
 
-    const sable = await newPage();
+    const sable = await visitors.newPage();
     await expect.poll(async () => {
       await sable.goto(field.stack.mailUrl);
       return sable.getByRole('link', { name: /Invitation to/ }).count();
@@ -289,6 +273,6 @@ describe('the register', { timeout: 120_000 }, () => {
 
 describe('what was used by hand', () => {
   it('kept to its own content security policy, without uncaught errors', () => {
-    expect(complaints.flatMap((each) => each())).toEqual([]);
+    expect(visitors.complaints()).toEqual([]);
   });
 });

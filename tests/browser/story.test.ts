@@ -1,38 +1,25 @@
-import type { Browser, BrowserContext, Page } from 'playwright-core';
+import type { Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { crane, craneRadio } from '#backend/demo/signals';
 import { plainConf, plainYaml } from '#backend/demo/story';
 import { captureFiles, type CaptureSpec } from '#backend/generator/scenarios/capture';
 import type { Declared } from '#backend/generator/snapshots/declared';
 import { writeSnapshot } from '#backend/generator/snapshots/snapshot';
-import { launchBrowser } from '../support/chromium.js';
-import { addressOf, enter, openField, partyName, type Field, type Who } from '../support/field.js';
-import { watchPage } from '../support/watch-page.js';
+import { addressOf, openField, partyName, visit, type Field, type Visitors, type Who } from '../support/field.js';
 
 let field: Field;
-let browser: Browser;
-const contexts: BrowserContext[] = [];
-const complaints: (() => string[])[] = [];
+let visitors: Visitors;
 
 beforeAll(async () => {
   field = await openField();
-  browser = await launchBrowser();
+  visitors = await visit(field);
 }, 180_000);
 afterAll(async () => {
-  await browser?.close();
+  await visitors?.leave();
   await field?.stop();
 });
 
-/** A browser of one's own, signed in, watched for policy violations to the end. */
-async function openAs(who: Who, path: string): Promise<Page> {
-  const context = await browser.newContext({ viewport: { width: 1440, height: 900 } });
-  contexts.push(context);
-  const page = await context.newPage();
-  page.setDefaultTimeout(60_000);
-  complaints.push(watchPage(page, [field.stack.url, field.stack.issuer]).complaints);
-  await enter(page, field, { who, path });
-  return page;
-}
+const openAs = (who: Who, path: string): Promise<Page> => visitors.openAs(who, path);
 
 interface Upload { name: string; mimeType: string; buffer: Buffer }
 const upload = (name: string, bytes: Uint8Array | string): Upload => ({ name, mimeType: 'application/octet-stream', buffer: Buffer.from(bytes) });
@@ -156,6 +143,6 @@ describe('a capture of each kind', { timeout: 240_000 }, () => {
 
 describe('every page of the story', () => {
   it('kept to its own content security policy, without uncaught errors', () => {
-    expect(complaints.flatMap((each) => each())).toEqual([]);
+    expect(visitors.complaints()).toEqual([]);
   });
 });

@@ -1,5 +1,6 @@
 import type { SampleSource } from '../types.js';
 import { look, type Look, type LookOptions } from './look.js';
+import { from } from './recording.js';
 import type { Gap } from './sample-gaps.js';
 
 /** Little less than half a frame of LTE: the least that is likely to hold a synchronisation signal. */
@@ -29,11 +30,11 @@ function isComplete({ choice }: Look): boolean {
 
 /** The longest first. */
 function partsOf(source: SampleSource, { places }: Gap): SampleSource[] {
-  const { sampleRateHz, centreFrequencyHz, samples } = source;
+  const { sampleRateHz, samples } = source;
   const doubt = Math.round(DOUBT_S * sampleRateHz);
   const edges = [0, ...places, samples + doubt];
   return edges.slice(1).map((to, i) => ({ start: edges[i]!, count: to - edges[i]! - doubt }))
     .filter(({ count }) => count > LEAST_S * sampleRateHz)
     .sort((a, b) => b.count - a.count)
-    .map(({ start, count }) => ({ sampleRateHz, centreFrequencyHz, samples: count, read: (at, wanted) => source.read(start + at, Math.max(0, Math.min(wanted, count - at))) }));
+    .map(({ start, count }) => from(source, start, count));
 }

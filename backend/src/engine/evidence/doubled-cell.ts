@@ -13,7 +13,8 @@ const NEARER_PPM = 3;
 /** Beyond this no clock of a working link explains a block beside its raster; within the other it stands on it. */
 const OFF_PPM = 6;
 const ON_PPM = 4;
-const DOUBLINGS = [2, 1 / 2];
+/** Ratios of a rate to its label under which a cellular spacing stays one. */
+export const DOUBLINGS = [1 / 2, 2];
 
 /** True where the reading as labelled decodes and stands nearer to the synchronisation raster. */
 export function standsBetter(plain: Look, other: Look): boolean {

@@ -1,10 +1,10 @@
 import type { CaptureFacts } from '#shared/decode';
 import { look, type Look, type LookOptions } from './look.js';
 import { from, type Recording } from './recording.js';
-import { fitsItsMib, inItsRange, misfitOf, standsBetter } from './doubled-cell.js';
+import { DOUBLINGS, fitsItsMib, inItsRange, misfitOf, standsBetter } from './doubled-cell.js';
 import { suspectRate } from './rate-label.js';
 import { oneScale, plausible } from './plausible.js';
-import { chooseWindows, readWindow } from '../level/windows.js';
+import { chooseWindows, isSameLevel, readWindow } from '../level/windows.js';
 import { spectrumOf } from '../spectrum/spectrum.js';
 import { meanPower } from '../vector/power.js';
 import { estimateOfdm } from '../sync/estimate.js';
@@ -55,21 +55,15 @@ function lookAround(source: SampleSource, facts: CaptureFacts, options: LookOpti
   return first;
 }
 
-/** Levels this near are one, for a window of noise. */
-const ALIKE = 0.03;
-
 /** Nothing stands out there either, and the level is the same: another window of the same noise. */
 function isAlike({ window, spectrum }: Look, later: Window): boolean {
-  const level = meanPower(window.iq);
-  return Math.abs(meanPower(later.iq) - level) < ALIKE * level && spectrumOf(later.iq, later.sampleRateHz).occupied === null && spectrum.occupied === null;
+  return isSameLevel(meanPower(window.iq), meanPower(later.iq)) && spectrumOf(later.iq, later.sampleRateHz).occupied === null && spectrum.occupied === null;
 }
 
 /** Spacings of the standards, Hz, that a wrong rate label would hide. */
 const STANDARD_HZ = [15e3, 30e3, 60e3, 120e3, 312.5e3, 78.125e3];
 const RATE_RATIOS = [3 / 4, 4 / 3, 2 / 3, 3 / 2, 4 / 5, 5 / 4];
-/** Under these a spacing of the cellular tables stays one. */
 const CELLULAR_HZ = [15e3, 30e3, 60e3, 120e3];
-const DOUBLINGS = [1 / 2, 2];
 
 function otherRate(recording: Recording, plain: Look, options: LookOptions): Doubted | null {
   const suspicion = suspectRate(plain.blind);

@@ -20,13 +20,14 @@ export interface Recording {
   readonly announcedGaps: readonly { readonly atSample: number; readonly missing: number }[];
 }
 
-/** The samples from `startSample` on, as a capture of its own. */
-export function from(source: SampleSource, startSample: number): SampleSource {
-  if (startSample === 0) return source;
+/** The samples from `startSample` on, all or so many, as a capture of its own. */
+export function from(source: SampleSource, startSample: number, samples = source.samples - startSample): SampleSource {
+  if (startSample === 0 && samples === source.samples) return source;
+  const most = Math.max(0, samples);
   return {
     sampleRateHz: source.sampleRateHz,
     centreFrequencyHz: source.centreFrequencyHz,
-    samples: Math.max(0, source.samples - startSample),
-    read: (start, count) => source.read(startSample + start, count),
+    samples: most,
+    read: (start, count) => source.read(startSample + start, Math.max(0, Math.min(count, most - start))),
   };
 }

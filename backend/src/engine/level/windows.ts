@@ -11,6 +11,14 @@ export interface WindowPlan {
 const PROBES = 128;
 const PROBE_SAMPLES = 2048;
 
+/** Mean powers this near are one level. */
+const SAME_LEVEL = 0.03;
+
+/** True where a window's power is another's: of what never pauses it then shows no more. */
+export function isSameLevel(power: number, other: number): boolean {
+  return Math.abs(other - power) < SAME_LEVEL * power;
+}
+
 /**
  * Where to look, in order: the first 20 ms, then the places further on where the level is
  * highest. Reads at most 128 probes beside them, whatever the capture's length. Starts in samples.

@@ -1,6 +1,6 @@
 import type { Curve } from '#shared/decode';
 import { activity } from '../level/activity.js';
-import { chooseWindows, readWindow } from '../level/windows.js';
+import { chooseWindows, isSameLevel, readWindow } from '../level/windows.js';
 import { spectrumOf } from '../spectrum/spectrum.js';
 import type { BlindOfdm, SampleSource, SymbolGrid, Window } from '../types.js';
 import { decibels, meanPower } from '../vector/power.js';
@@ -49,8 +49,7 @@ export function analyseOfdm(source: SampleSource, options: EstimateOptions = {})
   for (const start of chooseWindows(source, { windowS, further: options.further ?? 3 })) {
     const window = readWindow(source, start, windowS);
     const here = meanPower(window.iq);
-    // Another window of the same level shows no more of what never pauses.
-    if (first && Math.abs(here - level) < ALIKE * level) continue;
+    if (first && isSameLevel(level, here)) continue;
     const result = analyseWindow(window, options);
     if (result.found) return result;
     if (!first) [first, level] = [result, here];
@@ -58,8 +57,6 @@ export function analyseOfdm(source: SampleSource, options: EstimateOptions = {})
   return first ?? { found: null, prefixCorrelation: null, reason: 'the capture is empty' };
 }
 
-/** Levels this near are one. */
-const ALIKE = 0.03;
 const FEWEST_SAMPLES = 512;
 /** Independent samples of the signal that a window should hold, and how long and large it may grow for that. */
 const WANTED = 20_000;

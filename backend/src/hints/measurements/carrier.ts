@@ -1,6 +1,6 @@
 import type { AirValue, SettingValue } from '#shared/decode';
 import { CLOCK_BEYOND_PPM, CLOCK_LIMIT_PPM, RECORDER_PPM, SCATTER } from '../priors.js';
-import { gscnToHz } from '../../snapshots/standards/nrRaster.js';
+import { besideSyncRaster } from '../../snapshots/standards/nrRaster.js';
 import type { Measurement } from '../model.js';
 import type { Evidence } from '../types.js';
 import { certainty, normal } from './likelihoods.js';
@@ -22,7 +22,7 @@ const CHANCE_OF_RASTER = 0.03;
 /** A block that is received on the synchronisation raster shows that the clocks are within their limits. */
 function blockInStep(evidence: Evidence): boolean {
   const block = airNumber(evidence, 'ssbFrequencyHz');
-  return block !== null && besideBlockRaster(block.value) < clockPpm(evidence) * 1e-6 * block.value + SCATTER.ssbFrequencyHz;
+  return block !== null && besideSyncRaster(block.value) < clockPpm(evidence) * 1e-6 * block.value + SCATTER.ssbFrequencyHz;
 }
 
 interface Place {
@@ -66,13 +66,6 @@ export function carrierWithClock(evidence: Evidence, share: number): Measurement
     value, method, periodHz: place.periodHz, otherLogLikelihood: Math.log(1 / range),
     logLikelihood: (setting) => Math.log((1 - share) * Math.exp(within.logLikelihood(fold(setting))) + share * Math.exp(beyond.logLikelihood(fold(setting)))),
   };
-}
-
-/** How far a frequency is from the synchronisation raster, Hz (TS 38.104 table 5.4.3.1-1). */
-export function besideBlockRaster(hz: number): number {
-  const guess = hz >= 24_250.08e6 ? 22_256 + (hz - 24_250.08e6) / 17.28e6 : hz >= 3000e6 ? 7499 + (hz - 3000e6) / 1.44e6 : hz / 400e3;
-  const around = [-2, -1, 0, 1, 2].map((step) => gscnToHz(Math.round(guess) + step)).filter((at) => at !== null);
-  return Math.min(...around.map((at) => Math.abs(hz - at)), Infinity);
 }
 
 /** The nearest distance, where whole numbers of `period` do not count. */

@@ -1,4 +1,5 @@
-import { besideBlockRaster, carrierWithClock, clockPpm, folded } from '../measurements/carrier.js';
+import { besideSyncRaster } from '../../snapshots/standards/nrRaster.js';
+import { carrierWithClock, clockPpm, folded } from '../measurements/carrier.js';
 import { airNumber } from '../measurements/numbers.js';
 import { judgeContradiction } from '../model.js';
 import { CLOCK_BEYOND_PPM, SCATTER } from '../priors.js';
@@ -27,7 +28,7 @@ export const carrier: Rule = (evidence) => {
 function clockShare(evidence: Evidence, shift: Shift): number {
   const ppm = (shift.hz / shift.fc) * 1e6;
   const free = Math.exp(-0.5 * (ppm / (2.5 * CLOCK_BEYOND_PPM)) ** 2);
-  const toRaster = shift.blockHz === null ? besideCarrierRaster(shift) : besideBlockRaster(shift.blockHz);
+  const toRaster = shift.blockHz === null ? besideCarrierRaster(shift) : besideSyncRaster(shift.blockHz);
   const onRaster = Math.exp(-0.5 * (toRaster / (2 * SCATTER.carrierFrequencyHz + 1e-7 * shift.fc)) ** 2);
   const sampled = airNumber(evidence, 'sampleClockOffsetPpm');
   const sigma = sampled ? Math.max(0.5, Number(sampled.air['sigmaPpm'] ?? 1)) : Infinity;

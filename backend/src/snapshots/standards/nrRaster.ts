@@ -36,16 +36,25 @@ export function gscnToHz(gscn: number): number | null {
   return Math.round(1.2e6 * n + 50e3 * m);
 }
 
-/** Synchronisation channel number of a frequency, Hz; null off the synchronisation raster (to 1 Hz). */
-export function hzToGscn(hz: number): number | null {
+/** Places of the synchronisation raster about a frequency, Hz: the nearest is among them. */
+function syncRasterAround(hz: number): { gscn: number; hz: number }[] {
   const guess = hz >= 24_250.08e6 ? 22_256 + (hz - 24_250.08e6) / 17.28e6
     : hz >= 3000e6 ? 7499 + (hz - 3000e6) / 1.44e6
-      : 3 * Math.round((hz - 150e3) / 1.2e6);
-  for (const gscn of [Math.round(guess) - 1, Math.round(guess), Math.round(guess) + 1]) {
-    const back = gscnToHz(gscn);
-    if (back !== null && Math.abs(back - hz) <= 1) return gscn;
-  }
-  return null;
+      : hz / 400e3;
+  return [-2, -1, 0, 1, 2].map((step) => Math.round(guess) + step).flatMap((gscn) => {
+    const at = gscnToHz(gscn);
+    return at === null ? [] : [{ gscn, hz: at }];
+  });
+}
+
+/** Synchronisation channel number of a frequency, Hz; null off the synchronisation raster (to 1 Hz). */
+export function hzToGscn(hz: number): number | null {
+  return syncRasterAround(hz).find((place) => Math.abs(place.hz - hz) <= 1)?.gscn ?? null;
+}
+
+/** How far a frequency is from the synchronisation raster, Hz. */
+export function besideSyncRaster(hz: number): number {
+  return Math.min(...syncRasterAround(hz).map((place) => Math.abs(place.hz - hz)), Infinity);
 }
 
 /** TS 38.104 table 5.1-1: frequency ranges. Null between and beyond them. */
