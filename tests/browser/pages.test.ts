@@ -55,12 +55,25 @@ const PAGES: readonly (readonly [name: string, who: Who, path: () => string, lan
   ['programme', 'administrator', () => '/programme', /Skerry Harbour/], ['account', 'vendor', () => '/account', /Account|Ines Torvald/], ['missing', 'vendor', () => '/issues/SKH/none', /./],
 ];
 
-async function openAs(who: Who, look: { theme: 'light' | 'dark'; width: number }): Promise<{ context: BrowserContext; page: Page; complaints: () => string[] }> {
+/** What nobody has to sign in for: the way in, the provider's own page, and an invitation. */
+const WAY_IN: readonly (readonly [name: string, path: string])[] = [
+  ['sign-in', '/'], ['sign-in-at-provider', '/api/auth/sign-in?returnTo=%2F'], ['invitation', '/invitations/0000000000000000000000000000000000000000000'],
+];
+
+interface Look { theme: 'light' | 'dark'; width: number }
+interface Opened { context: BrowserContext; page: Page; complaints: () => string[] }
+
+async function openAs(who: Who, look: Look): Promise<Opened> {
+  const opened = await open(look);
+  await signInAs(opened.page, stack.url, { email: ADDRESS[who], path: '/account' });
+  return opened;
+}
+
+async function open(look: Look): Promise<Opened> {
   const context = await browser.newContext({ viewport: { width: look.width, height: 900 }, colorScheme: look.theme, reducedMotion: 'reduce' });
   const page = await context.newPage();
   page.setDefaultTimeout(60_000);
   const { complaints } = watchPage(page, [stack.url, stack.issuer]);
-  await signInAs(page, stack.url, { email: ADDRESS[who], path: '/account' });
   return { context, page, complaints };
 }
 
@@ -83,19 +96,35 @@ async function picture(page: Page, name: string): Promise<void> {
   await page.screenshot(options).catch(() => page.screenshot(options));
 }
 
+/** Leaves a picture, and holds the page to accessibility and its width. */
+async function looked(page: Page, { name, theme, width }: Look & { name: string }): Promise<void> {
+  await picture(page, `${name}-${theme}-${width}`);
+  expect(await seriousFindings(page), `${name}, ${theme}, ${width}`).toEqual([]);
+  expect(await page.evaluate(() => document.documentElement.scrollWidth - document.documentElement.clientWidth), `${name} is wider than ${width}`).toBeLessThanOrEqual(0);
+}
+
 describe.each([['light', 1440], ['dark', 1440], ['light', 390], ['dark', 390], ['light', 1920]] as const)('every page, %s, %i wide', (theme, width) => {
   it.each(['engineer', 'vendor', 'manager', 'administrator'] as const)('as the %s: no serious finding, no violation, nothing wider than the screen', async (who) => {
     const { context, page, complaints } = await openAs(who, { theme, width });
     for (const [name, , path, landmark] of PAGES.filter((each) => each[1] === who)) {
       await page.goto(`${stack.url}${path()}`);
       await settled(page, landmark);
-      await picture(page, `${name}-${theme}-${width}`);
-      expect(await seriousFindings(page), `${name}, ${theme}, ${width}`).toEqual([]);
-      expect(await page.evaluate(() => document.documentElement.scrollWidth - document.documentElement.clientWidth), `${name} is wider than ${width}`).toBeLessThanOrEqual(0);
+      await looked(page, { name, theme, width });
     }
     expect(complaints()).toEqual([]);
     await context.close();
   }, 300_000);
+
+  it('before anyone has signed in: the same', async () => {
+    const { context, page, complaints } = await open({ theme, width });
+    for (const [name, path] of WAY_IN) {
+      await page.goto(`${stack.url}${path}`);
+      await settled(page, /./);
+      await looked(page, { name, theme, width });
+    }
+    expect(complaints()).toEqual([]);
+    await context.close();
+  }, 120_000);
 });
 
 describe('the issue page', { timeout: 180_000 }, () => {
